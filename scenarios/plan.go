@@ -1,0 +1,167 @@
+// Package scenarios says what a plan, a treatment and a result are, and runs a plan:
+// stand -> light -> ledger -> compare. It holds the order of steps and no physics.
+package scenarios
+
+import (
+	"time"
+
+	"shadeledger/canopy"
+	"shadeledger/leaf"
+	"shadeledger/radiation"
+	"shadeledger/radiation/weather"
+	"shadeledger/scenarios/ledger"
+)
+
+// Plan is a sound plan: every value resolved, in metres, radians and SI, nothing optional.
+type Plan struct {
+	Title   string
+	File    string // where it came from, as the user named it; "" for the built-in example
+	Example bool   // the built-in example: "built-in example, invented data"
+	Units   Units  // of tables; CSV and JSON are always metric
+
+	Site        radiation.Site
+	Ground      canopy.Ground
+	Horizon     canopy.Horizon
+	Declination float64 // rad, magnetic, east positive
+	Frost       Frost
+
+	Weather weather.Source
+	Par     weather.Par
+	Snow    Snow
+	Season  Period // period of light figures, both days in
+
+	Stand      Stand
+	Seedlings  []Seedling
+	Treatments []Treatment
+	Stations   []Station // empty: the default stations of each treatment
+	Sampling   Sampling
+	Record     Record
+	Cautions   []Caution // all sixteen, in order, with their state
+
+	Assumed  []Assumed
+	Warnings []Warning
+}
+
+// Units of tables.
+type Units int
+
+// The unit systems of tables.
+const (
+	Metric Units = iota
+	US
+)
+
+// Date is a month and day of any year.
+type Date struct {
+	Month time.Month
+	Day   int
+}
+
+// Period runs from one date to another, both in; From after To crosses New Year.
+type Period struct{ From, To Date }
+
+// Frost holds the usual last and first frost; zero Dates where not given.
+type Frost struct{ Last, First Date }
+
+// Snow keeps light off plants lower than Depth from From to To. Depth 0 is no snow.
+type Snow struct {
+	Period
+	Depth float64 // m
+}
+
+// Stand is the uncut stand.
+type Stand struct {
+	Height      float64 // m, dominant height, H in every treatment
+	CrownBase   float64 // m
+	CrownRadius float64 // m, of border trees
+	Layers      []Layer // the overstory, cut by openings
+	Understory  []Understory
+	// Facts as given, for "Read as" lines; NaN where not given.
+	BasalArea float64 // m2/ha
+	Area      float64 // ha
+	Age       float64 // y
+}
+
+// Layer is a canopy layer with its leaf calendar. canopy.Layer.Phenology is filled by Run.
+type Layer struct {
+	canopy.Layer
+	Species  string
+	Calendar leaf.Calendar
+}
+
+// Understory is a separate layer that stays in openings unless a treatment removes it.
+type Understory struct {
+	Name string
+	Layer
+}
+
+// Seedling is a plant to bring up, with the names it goes by.
+type Seedling struct {
+	Name      string // unique; by default the species
+	Botanical string // "" for a full trait set of the user's own
+	ledger.Plant
+}
+
+// Treatment is one alternative.
+type Treatment struct {
+	Name       string
+	Matrix     []Layer // the stand between openings after the treatment, understory not in
+	Understory []Understory
+	Opening    Opening
+}
+
+// Opening is a Cleared plan outline or NoOpening.
+type Opening interface{ opening() }
+
+// NoOpening leaves the stand whole.
+type NoOpening struct{}
+
+// Cleared is an opening in which none of the stand's layers exists.
+type Cleared struct {
+	Stems  canopy.Outline // legal area
+	Crowns canopy.Outline // bounds foliage: light, stations, zones, shares
+	Inside []Layer        // bare where empty
+}
+
+func (NoOpening) opening() {}
+func (Cleared) opening()   {}
+
+// Station is a named spot: bearing and horizontal distance from the opening's centre.
+type Station struct {
+	Name     string
+	Bearing  float64 // rad from true north
+	Distance float64 // m
+}
+
+// Sampling says how finely time and space are sampled.
+type Sampling struct {
+	Step    time.Duration
+	Grid    float64   // m
+	Heights []float64 // m, further heights for `light`
+	Sky     radiation.Sky
+}
+
+// Record is who prepared the plan for what.
+type Record struct{ Forest, Stand, OwnerGoal, Preparer, Licence, Date string }
+
+// Caution is one of the cautions with what the plan says of it.
+type Caution struct {
+	Key   string // windthrow, felling safety, ...
+	Text  string // what to watch
+	State string // OPEN, addressed, not applicable, to check
+	By    string
+	Note  string
+}
+
+// Assumed is a value the plan left out, filled by a default, the region or the library.
+type Assumed struct {
+	Key    string // path in the plan, stand.layers[0].chi
+	Value  string // with unit
+	Source string // where the value comes from
+}
+
+// Warning is a doubt that travels with the results and prints as a footnote.
+type Warning struct {
+	Key  string
+	Text string
+}

@@ -1,0 +1,37 @@
+package scenarios
+
+import (
+	"shadeledger/scenarios/ledger"
+)
+
+// Results is what a run found, in the plan's order of treatments, stations, seedlings.
+type Results struct {
+	Plan     *Plan
+	Light    []LightRow
+	Balance  []BalanceRow
+	Warnings []Warning // of the plan and of the run
+	Assumed  []Assumed
+}
+
+// LightRow is one row of `light`.
+type LightRow struct {
+	Treatment, Station string
+	X, Y, Height       float64 // m
+	Period             string  // season, year, leaf-on, 2025-07, 07, 07-14
+	Light              float64 // percent of full light
+	PAR                float64 // mol m-2 d-1
+	Sunfleck           float64 // percent of PAR that comes as unscattered beam
+	SkyView            float64 // percent
+}
+
+// BalanceRow is one row of `balance`: one seedling at one station for one period.
+type BalanceRow struct {
+	Treatment, Station, Species, Botanical, Period string
+
+	Light       float64 // percent of full light over the season
+	LightLeafOn float64 // percent over the leaf-on period
+	PAR         float64 // mol m-2 d-1 over the season
+	Lines       ledger.Lines
+	BreakEven   ledger.BreakEven
+	Class       ledger.Class
+}
