@@ -1,0 +1,103 @@
+package leaf
+
+import (
+	"fmt"
+	"math"
+)
+
+// Temperature is how rates follow leaf temperature (deg C). Phi and Theta do not change.
+type Temperature struct {
+	Ref         float64 // T_ref of every Set
+	Opt         float64 // T_opt (June, Evans & Farquhar 2004)
+	Width       float64 // w of the same, deg C, > 0
+	Q10         float64 // of leaf respiration, used by ConstantQ10
+	Respiration RespirationCurve
+}
+
+// RespirationCurve is the shape of leaf respiration over temperature.
+type RespirationCurve int
+
+// The curves.
+const (
+	// ConstantQ10 is Rd = Rd_ref Q10^((T - T_ref)/10).
+	ConstantQ10 RespirationCurve = iota
+	// Heskel is ln Rd = a + 0.1012 T - 0.0005 T^2 (Heskel et al. 2016, PNAS 113:3832-3837), the
+	// mean curve of 231 species, whose Q10 falls as leaves warm. Measured 10..45 deg C.
+	Heskel
+)
+
+// Coefficients of Heskel et al. (2016): per deg C and per deg C squared.
+const (
+	heskelLinear = 0.1012
+	heskelSquare = -0.0005
+)
+
+// NewTemperature checks the numbers of a temperature response with a constant Q10.
+func NewTemperature(ref, opt, width, q10 float64) (Temperature, error) {
+	t := Temperature{Ref: ref, Opt: opt, Width: width, Q10: q10}
+	return t, t.Check()
+}
+
+// Check tells what is out of range: Ref -10..50, Opt 5..50, Width 4..60 deg C, Q10 1..4.
+func (t Temperature) Check() error {
+	for _, c := range []struct {
+		name         string
+		v, low, high float64
+	}{
+		{"reference temperature", t.Ref, -10, 50}, {"temperature optimum", t.Opt, 5, 50},
+		{"temperature width", t.Width, 4, 60}, {"q10 of leaf respiration", t.Q10, 1, 4},
+	} {
+		if !(c.v >= c.low && c.v <= c.high) {
+			return fmt.Errorf("%s is %g; it must be %g to %g", c.name, c.v, c.low, c.high)
+		}
+	}
+	if t.Respiration != ConstantQ10 && t.Respiration != Heskel {
+		return fmt.Errorf("respiration curve %d is not known; it must be ConstantQ10 or Heskel", t.Respiration)
+	}
+	return nil
+}
+
+// AgFactor is Ag(T)/Ag(T_ref) = f(T)/f(T_ref), f = exp(-((T - T_opt)/w)^2)
+// (June, Evans & Farquhar 2004, Funct Plant Biol 31:275-283).
+func (t Temperature) AgFactor(celsius float64) float64 {
+	a, b := (celsius-t.Opt)/t.Width, (t.Ref-t.Opt)/t.Width
+	return math.Exp(b*b - a*a)
+}
+
+// RdFactor is Rd(T)/Rd(T_ref) by the curve chosen.
+func (t Temperature) RdFactor(celsius float64) float64 { return t.rdFrom(t.Ref, celsius) }
+
+func (t Temperature) rdFrom(from, to float64) float64 {
+	if t.Respiration == Heskel {
+		return math.Exp((to - from) * (heskelLinear + heskelSquare*(to+from)))
+	}
+	return math.Pow(t.Q10, (to-from)/10)
+}
+
+// At is the set at a leaf temperature: Ag and Rd change, the rest stays.
+func (t Temperature) At(s Set, celsius float64) Set {
+	s.Ag *= t.AgFactor(celsius)
+	s.Rd *= t.RdFactor(celsius)
+	return s
+}
+
+// Response is the light response of the set at a leaf temperature.
+func (t Temperature) Response(s Set, celsius float64) Response { return t.At(s, celsius).Response() }
+
+// Measured is a leaf as studies print it: net saturated rate at T_ref and dark respiration at its
+// own temperature.
+type Measured struct {
+	Amax   float64 // net, umol CO2 m-2 s-1 at T_ref
+	Rd     float64 // positive, umol CO2 m-2 s-1
+	RdTemp float64 // deg C of Rd
+	Phi    float64
+	Theta  float64
+	LMA    float64
+}
+
+// Set brings the measured respiration to T_ref and adds it to the net rate: Ag = Amax + Rd, both at T_ref.
+func (t Temperature) Set(m Measured) (Set, error) {
+	rd := m.Rd * t.rdFrom(m.RdTemp, t.Ref)
+	s := Set{Ag: m.Amax + rd, Rd: rd, Phi: m.Phi, Theta: m.Theta, LMA: m.LMA}
+	return s, s.Check()
+}
