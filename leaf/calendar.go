@@ -122,3 +122,6 @@ func (d Deciduous) Shift(days int) Deciduous {
 func (d Deciduous) ShiftSpring(days int) (Deciduous, error) {
 	return NewDeciduous(d.Out.Shift(days), d.Full.Shift(days), d.Colour, d.Bare)
 }
+
+// DayOfYear is the date of a place 1..365 in the year, wrapped round it.
+func DayOfYear(n int) Date { return dateOf(n - 1) }
