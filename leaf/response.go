@@ -87,11 +87,14 @@ func (r *Response) MeanGross(diffuse, normal float64) float64 {
 	u0, u1 := p0/r.ag, p1/r.ag
 	rest0, rest1 := r.unsaturated(x0), r.unsaturated(x0+dx)
 	du := dx * rest1 / (r.ag + x0 - r.theta*(p0+p1))
-	log := 0.0
-	if r.theta < 1 {
-		log = math.Log(rest1 / rest0)
+	area := r.theta * du * (u0 + u1) / 2
+	switch {
+	case r.theta >= 1:
+	case du < 0.5*rest0:
+		area -= (1 - r.theta) * (du + math.Log1p(-du/rest0))
+	default:
+		area -= (1 - r.theta) * (du + math.Log(rest1/rest0))
 	}
-	area := r.theta*du*(u0+u1)/2 - (1-r.theta)*(du+log)
 	return p1 - r.ag*(r.ag*area-x0*du)/dx
 }
 

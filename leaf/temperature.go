@@ -24,6 +24,9 @@ const (
 	// Heskel is ln Rd = a + 0.1012 T - 0.0005 T^2 (Heskel et al. 2016, PNAS 113:3832-3837), the
 	// mean curve of 231 species, whose Q10 falls as leaves warm. Measured 10..45 deg C.
 	Heskel
+	// Tjoelker is a Q10 of 3.22 - 0.046 (T + T_ref)/2 (Tjoelker, Oleksyn & Reich 2001, Global
+	// Change Biol 7:223-230).
+	Tjoelker
 )
 
 // Coefficients of Heskel et al. (2016): per deg C and per deg C squared.
@@ -51,8 +54,8 @@ func (t Temperature) Check() error {
 			return fmt.Errorf("%s is %g; it must be %g to %g", c.name, c.v, c.low, c.high)
 		}
 	}
-	if t.Respiration != ConstantQ10 && t.Respiration != Heskel {
-		return fmt.Errorf("respiration curve %d is not known; it must be ConstantQ10 or Heskel", t.Respiration)
+	if t.Respiration < ConstantQ10 || t.Respiration > Tjoelker {
+		return fmt.Errorf("respiration curve %d is not known; it must be ConstantQ10, Heskel or Tjoelker", t.Respiration)
 	}
 	return nil
 }
@@ -68,8 +71,11 @@ func (t Temperature) AgFactor(celsius float64) float64 {
 func (t Temperature) RdFactor(celsius float64) float64 { return t.rdFrom(t.Ref, celsius) }
 
 func (t Temperature) rdFrom(from, to float64) float64 {
-	if t.Respiration == Heskel {
+	switch t.Respiration {
+	case Heskel:
 		return math.Exp((to - from) * (heskelLinear + heskelSquare*(to+from)))
+	case Tjoelker:
+		return math.Pow(3.22-0.046*(to+from)/2, (to-from)/10)
 	}
 	return math.Pow(t.Q10, (to-from)/10)
 }
@@ -100,4 +106,14 @@ func (t Temperature) Set(m Measured) (Set, error) {
 	rd := m.Rd * t.rdFrom(m.RdTemp, t.Ref)
 	s := Set{Ag: m.Amax + rd, Rd: rd, Phi: m.Phi, Theta: m.Theta, LMA: m.LMA}
 	return s, s.Check()
+}
+
+// LightRespiration is respiration in the light over that in the dark, 0.5 - 0.05 ln I above
+// 10 umol m-2 s-1 and 1 below (Brooks & Farquhar 1985, Planta 165:397-406, as parameterised by
+// Lloyd et al. 1995). It never falls below 0.
+func LightRespiration(ppfd float64) float64 {
+	if ppfd <= 10 {
+		return 1
+	}
+	return math.Max(0, 0.5-0.05*math.Log(ppfd))
 }
