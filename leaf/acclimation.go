@@ -119,3 +119,25 @@ func (p PowerLaw) Rule() string {
 	return fmt.Sprintf("one set at %.3g %% light; LMA ~ light^%.3g, level above 50 %%, Amax ~ LMA^%.3g, Rd ~ LMA^%.3g", p.RefLight, p.B, p.AmaxExponent, p.RdExponent)
 }
 func (PowerLaw) acclimation() {}
+
+// Applied is the rule together with the clamp that took hold at a growth light, for the list of assumptions.
+func Applied(a Acclimation, light float64) string {
+	note := a.Rule()
+	if c := ClampLight(light); c != light {
+		note += fmt.Sprintf("; %.3g %% taken as %.3g %%", light, c)
+	}
+	switch a := a.(type) {
+	case TwoSets:
+		switch a.SunShare(light) {
+		case 0:
+			note += "; the shade set as it stands"
+		case 1:
+			note += "; the sun set as it stands"
+		}
+	case PowerLaw:
+		if light > levelOff {
+			note += fmt.Sprintf("; as at %g %%", levelOff)
+		}
+	}
+	return note
+}

@@ -146,3 +146,21 @@ func BenchmarkAt(b *testing.B) {
 		}
 	})
 }
+
+func TestTheClampThatAppliedIsTold(t *testing.T) {
+	two := TwoSets{oakSun, oakShade, 50, 5}
+	power := PowerLaw{oakSun, 50, 0.25, 1, 1.4}
+	for _, c := range []struct {
+		a     Acclimation
+		light float64
+		want  string // what follows the rule
+	}{
+		{two, 20, ""}, {two, 3, "; the shade set as it stands"}, {two, 80, "; the sun set as it stands"},
+		{two, 0.4, "; 0.4 % taken as 1 %; the shade set as it stands"}, {power, 20, ""}, {power, 70, "; as at 50 %"},
+		{power, 105, "; 105 % taken as 100 %; as at 50 %"}, {Constant{oakSun}, 0.5, "; 0.5 % taken as 1 %"},
+	} {
+		if got := Applied(c.a, c.light); got != c.a.Rule()+c.want {
+			t.Errorf("at %g: %q, want the rule and %q", c.light, got, c.want)
+		}
+	}
+}

@@ -33,13 +33,13 @@ func (s Set) Response() Response {
 }
 
 // Rd is dark respiration, umol CO2 m-2 s-1.
-func (r *Response) Rd() float64 { return r.rd }
+func (r Response) Rd() float64 { return r.rd }
 
 // Ag is the gross light-saturated rate, umol CO2 m-2 s-1.
-func (r *Response) Ag() float64 { return r.ag }
+func (r Response) Ag() float64 { return r.ag }
 
 // Gross is gross assimilation at incident PPFD, umol CO2 m-2 s-1, as the function Gross.
-func (r *Response) Gross(ppfd float64) float64 {
+func (r Response) Gross(ppfd float64) float64 {
 	x := r.phi * ppfd
 	if x <= 0 {
 		return 0
@@ -49,7 +49,7 @@ func (r *Response) Gross(ppfd float64) float64 {
 }
 
 // Net is Gross less Rd, umol CO2 m-2 s-1.
-func (r *Response) Net(ppfd float64) float64 { return r.Gross(ppfd) - r.rd }
+func (r Response) Net(ppfd float64) float64 { return r.Gross(ppfd) - r.rd }
 
 // CompensationPoint is the exact root of Net, Rd (Ag - theta Rd) / (phi (Ag - Rd)), umol m-2 s-1.
 // Where Rd is not below Ag the leaf never reaches zero: +Inf.
@@ -77,7 +77,7 @@ const narrow = 1e-4
 //	<P> = P1 - int (x - x0) dP / (x1 - x0).
 //
 // Relative error below 1e-9 for theta <= 0.999. diffuse >= 0 and normal >= 0 in umol m-2 s-1.
-func (r *Response) MeanGross(diffuse, normal float64) float64 {
+func (r Response) MeanGross(diffuse, normal float64) float64 {
 	dx := r.phi * normal
 	if dx <= narrow*r.ag {
 		return r.meanNarrow(diffuse, normal)
@@ -99,7 +99,7 @@ func (r *Response) MeanGross(diffuse, normal float64) float64 {
 }
 
 // unsaturated is 1 - P/Ag at x = phi I, without loss near saturation.
-func (r *Response) unsaturated(x float64) float64 {
+func (r Response) unsaturated(x float64) float64 {
 	d := x - r.ag
 	root := math.Sqrt(d*d + r.bend*x)
 	if d <= 0 {
@@ -109,7 +109,7 @@ func (r *Response) unsaturated(x float64) float64 {
 }
 
 // meanNarrow is the three-point Gauss-Legendre mean.
-func (r *Response) meanNarrow(diffuse, normal float64) float64 {
+func (r Response) meanNarrow(diffuse, normal float64) float64 {
 	const half = 0.38729833462074168852 // sqrt(3/5)/2
 	mid := r.Gross(diffuse + 0.5*normal)
 	ends := r.Gross(diffuse+(0.5-half)*normal) + r.Gross(diffuse+(0.5+half)*normal)

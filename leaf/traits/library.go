@@ -1,5 +1,11 @@
 // Package traits is the species library: measured leaf traits, plant budgets and calendars with
 // unit, range, source and basis, and named group rules for what was not measured. It knows no plans.
+//
+// Measured leaves are one set per species: understory or lower-crown and upper-crown leaves of one
+// study where it has both, else the row lowest in the crown of the light-curve studies, else the sunlit leaf of
+// Wright et al. (2004). Rates and leaf mass per area of needles stand per area as their studies give
+// it, which is the projected area; both scale alike, so carbon per leaf mass is not affected.
+// Low and High of a measured value span all rows known for the species in that crown position.
 package traits
 
 import (
