@@ -43,9 +43,22 @@ type Dome struct {
 	Azimuths int
 }
 
-// Outline is a closed plan outline round the origin or centred as drawn: Circle, Ellipse, Strip or Polygon.
-// Crown outlines bound foliage. Its methods are the canopy owner's.
-type Outline interface{ outline() }
+// Outline is a closed plan outline about its centre, the origin: Circle, Ellipse, Strip or Polygon.
+// Crown outlines bound foliage.
+type Outline interface {
+	Contains(x, y float64) bool
+	Area() float64         // m2
+	MeanDiameter() float64 // m
+	// cross appends the distances s > 0, ascending, at which a ray from (x, y) along the unit vector
+	// (ux, uy) passes the outline.
+	cross(x, y, ux, uy float64, dst []float64) []float64
+	grow(d float64) (Outline, error)
+	corners() []vertex
+	outline()
+}
+
+// vertex is a corner of an outline.
+type vertex struct{ x, y float64 }
 
 // Horizon is the terrain horizon: elevation by azimuth, linear between points, none when empty.
 type Horizon struct {
