@@ -3,7 +3,7 @@
 //
 // Measured leaves are one set per species: understory or lower-crown and upper-crown leaves of one
 // study where it has both, else the row lowest in the crown of the light-curve studies, else the sunlit leaf of
-// Wright et al. (2004). Rates and leaf mass per area of needles stand per area as their studies give
+// Wright et al. (2004). Respiration seen in another record of Wright et al. goes before a rule. Rates and leaf mass per area of needles stand per area as their studies give
 // it, which is the projected area; both scale alike, so carbon per leaf mass is not affected.
 // Low and High of a measured value span all rows known for the species in that crown position.
 package traits
