@@ -1,16 +1,25 @@
 package scenarios
 
 import (
+	"shadeledger/radiation/weather"
 	"shadeledger/scenarios/ledger"
 )
 
 // Results is what a run found, in the plan's order of treatments, stations, seedlings.
 type Results struct {
 	Plan     *Plan
+	Series   *weather.Series
+	Stations []TreatmentStations // by treatment
 	Light    []LightRow
 	Balance  []BalanceRow
 	Warnings []Warning // of the plan and of the run
 	Assumed  []Assumed
+}
+
+// TreatmentStations names the stations of a treatment in their order.
+type TreatmentStations struct {
+	Treatment *Treatment
+	Names     []string
 }
 
 // LightRow is one row of `light`.
@@ -22,6 +31,8 @@ type LightRow struct {
 	PAR                float64 // mol m-2 d-1
 	Sunfleck           float64 // percent of PAR that comes as unscattered beam
 	SkyView            float64 // percent
+	// Years holds the percent of full light over the season of every calendar year, in order.
+	Years []float64
 }
 
 // BalanceRow is one row of `balance`: one seedling at one station for one period.
@@ -33,5 +44,7 @@ type BalanceRow struct {
 	PAR         float64 // mol m-2 d-1 over the season
 	Lines       ledger.Lines
 	BreakEven   ledger.BreakEven
-	Class       ledger.Class
+	Class       ledger.Class // by the year's net and the leaf-on light, the same for every period
+	// Years holds the year's net of every calendar year, g C, in order.
+	Years []float64
 }
