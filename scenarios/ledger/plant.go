@@ -12,7 +12,9 @@ type Plant struct {
 	CrownLAI    float64 // L_c
 	Chi         float64 // chi_s
 	Absorptance float64 // alpha_s
-	Organs      []Organ // stem and root; woody plants given as one have Stem only
+	// Organs are stem and root. A plant whose wood is given as one mass has Stem only, and then no fine-root
+	// replacement: the mass of its roots is not known.
+	Organs      []Organ
 	Leaves      leaf.Calendar
 	Traits      leaf.Acclimation
 	Temperature leaf.Temperature
@@ -20,8 +22,11 @@ type Plant struct {
 	LightRespiration float64
 	Ledger           Kind
 	Turnover         Turnover
-	Factor           float64 // working threshold over break-even
-	SnowDays         func(day int) bool
+	// MadeAt is the growth light (percent of full light, leaf-on) of the leaves as measured, for the first-season
+	// ledger; 0 takes the light whose LMA is nearest to LeafMass / LeafArea.
+	MadeAt   float64
+	Factor   float64            // working threshold over break-even
+	SnowDays func(day int) bool // series days under snow; nil for none
 }
 
 // Kind is Acclimated or FirstSeason.

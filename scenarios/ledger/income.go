@@ -1,0 +1,126 @@
+package ledger
+
+import (
+	"math"
+
+	"shadeledger/leaf"
+	"shadeledger/scenarios/light"
+)
+
+// curve is the light response of one trait set with 4 (1 - theta) kept.
+type curve struct{ ag, phi, bend float64 }
+
+func newCurve(s leaf.Set) curve { return curve{s.Ag, s.Phi, 4 * (1 - s.Theta)} }
+
+// gross is the non-rectangular hyperbola at incident PPFD I with the rate scaled by f; see leaf.Gross.
+func (c curve) gross(I, f float64) float64 {
+	ag := c.ag * f
+	x := c.phi * I
+	X, d := x*ag, x-ag
+	return 2 * X / (x + ag + math.Sqrt(d*d+c.bend*X) + math.SmallestNonzeroFloat64)
+}
+
+// uniformMu is a rule for the mean over mu uniform on 0..1: Gauss-Legendre of five nodes in sqrt(mu), dense where
+// leaves saturate.
+var uniformMu = func() (rule struct{ node, weight [muNodes]float64 }) {
+	x := [muNodes]float64{-0.906179845938664, -0.5384693101056831, 0, 0.5384693101056831, 0.906179845938664}
+	w := [muNodes]float64{0.23692688505618908, 0.47862867049936647, 0.5688888888888889, 0.47862867049936647, 0.23692688505618908}
+	for i := range x {
+		t := (1 + x[i]) / 2
+		rule.node[i], rule.weight[i] = t*t, w[i]*t
+	}
+	return rule
+}()
+
+// rule gives the nodes (as PPFD from the beam) and weights of the incidence mean of a step.
+func (r *Prepared) rule(s *step, node *[muNodes]float64) *[muNodes]float64 {
+	if r.angle == nil {
+		for i, v := range uniformMu.node {
+			node[i] = s.normal * v
+		}
+		return &uniformMu.weight
+	}
+	scale := s.normal * s.mu
+	for i, v := range r.angle.node[s.rule] {
+		node[i] = scale * v
+	}
+	return &r.angle.weight[s.rule]
+}
+
+// scratch is one worker's working space for one plant.
+type scratch struct {
+	diffuse []float64 // by shape and depth: I_d for unit D_above
+	bins    bins
+}
+
+// shapes works out I_d for unit D_above of every ring shape of a regime.
+func (r *Prepared) shapes(g *light.Regime, w *scratch) {
+	n, rings := len(r.crown.depth), r.crown.rings
+	k := len(g.ShapeRings) / rings
+	if cap(w.diffuse) < k*n {
+		w.diffuse = make([]float64, k*n)
+	}
+	w.diffuse = w.diffuse[:k*n]
+	for s := range k {
+		r.crown.diffuse(g.ShapeRings[s*rings:(s+1)*rings], w.diffuse[s*n:(s+1)*n])
+	}
+}
+
+// rates is gross income of one step per m2 of leaf, umol m-2 s-1: of shade light and of sunflecks.
+type rates struct{ shade, fleck float64 }
+
+// moment is the light on the leaves in one step.
+type moment struct {
+	sky    []float64 // I_d from the sky by depth, umol m-2 s-1
+	sunlit []float64 // exp(-G_s l / cos theta_sun) by depth
+	beam   float64   // chance that the sun is seen
+	down   float64   // scattered beam on the level plane, umol m-2 s-1
+}
+
+// rate is the crown's mean gross income in one step.
+func (r *Prepared) rate(s *step, m *moment, c curve) (out rates) {
+	var node [muNodes]float64
+	weight := r.rule(s, &node)
+	fleck := m.beam > 0 && s.normal > 0
+	for j, wj := range r.crown.weight {
+		Id := m.sky[j] + m.down*r.crown.uniform[j]
+		P := c.gross(Id, s.factor)
+		out.shade += wj * P
+		if !fleck {
+			continue
+		}
+		mean := 0.0
+		for i, x := range node {
+			mean += weight[i] * c.gross(Id+x, s.factor)
+		}
+		out.fleck += wj * m.beam * m.sunlit[j] * (mean - P)
+	}
+	return out
+}
+
+// each walks the steps of a regime scaled by k and hands over each step's rates.
+func (r *Prepared) each(g *light.Regime, w *scratch, set leaf.Set, k float64, do func(s *step, rate rates)) {
+	n := len(r.crown.depth)
+	lit := &r.above.Series.Lit
+	c := newCurve(set)
+	var sky [8]float64
+	m := moment{sky: sky[:n]}
+	for x := range r.steps {
+		s := &r.steps[x]
+		i := s.lit
+		shape := int(g.Shape[i])
+		pattern := int(g.ShapePattern[shape])
+		D := lit.Diffuse[i]
+		unit, open := w.diffuse[shape*n:(shape+1)*n], r.open[pattern*n:(pattern+1)*n]
+		for j := range m.sky {
+			m.sky[j] = D * math.Min(k*unit[j], open[j])
+		}
+		m.beam, m.down = k*g.BeamChance[i], k*g.Scattered[i]
+		if k != 1 {
+			m.beam = math.Min(1, m.beam)
+			m.down = math.Min(m.down, lit.Beam[i]*(1-m.beam))
+		}
+		m.sunlit = r.sun[x*n : (x+1)*n]
+		do(s, r.rate(s, &m, c))
+	}
+}

@@ -1,0 +1,88 @@
+package ledger
+
+import (
+	"math"
+
+	"gonum.org/v1/gonum/integrate/quad"
+
+	"shadeledger/canopy"
+)
+
+// crown is how a seedling's crown takes in light: at Gauss-Legendre depths l over 0..L_c, the share of light from
+// each ring of the sky that a unit of leaf area gets, and the sunlit share's extinction.
+type crown struct {
+	chi    float64
+	depth  []float64 // l, m2 m-2
+	weight []float64 // sum 1
+	// ring[j*rings+r]: mean of G_s e over ring r, e = exp(-sqrt(alpha_s) G_s l / cos theta)
+	ring []float64
+	// uniform[j] = integral of (1/pi) G_s e over the hemisphere: light scattered down by the overstory
+	uniform []float64
+	rings   int
+}
+
+// depthNodes is enough for the mean over the crown to 0.05 %.
+func depthNodes(crownLAI float64) int {
+	switch {
+	case crownLAI <= 0.6:
+		return 2
+	case crownLAI <= 2:
+		return 3
+	case crownLAI <= 4:
+		return 4
+	}
+	return 6
+}
+
+func newCrown(p *Plant, zenith []float64) *crown {
+	n := depthNodes(p.CrownLAI)
+	c := &crown{chi: p.Chi, depth: make([]float64, n), weight: make([]float64, n), rings: len(zenith) - 1}
+	quad.Legendre{}.FixedLocations(c.depth, c.weight, 0, p.CrownLAI)
+	root := math.Sqrt(p.Absorptance)
+	c.ring = make([]float64, n*c.rings)
+	c.uniform = make([]float64, n)
+	for j, l := range c.depth {
+		c.weight[j] /= p.CrownLAI
+		for r := range c.rings {
+			mean, solid := ringMean(zenith[r], zenith[r+1], func(sin, cos float64) float64 {
+				G := canopy.LeafProjection(c.chi, cos, sin)
+				return G * math.Exp(-root*G*l/cos)
+			})
+			c.ring[j*c.rings+r] = mean
+			c.uniform[j] += 2 * mean * solid
+		}
+	}
+	return c
+}
+
+// ringMean is the mean of f over a ring weighted by solid angle, and the ring's integral of sin theta.
+func ringMean(from, to float64, f func(sin, cos float64) float64) (mean, solid float64) {
+	const steps = 24
+	for i := range steps {
+		sin, cos := math.Sincos(from + (float64(i)+0.5)/steps*(to-from))
+		mean += f(sin, cos) * sin
+		solid += sin
+	}
+	return mean / solid, math.Cos(from) - math.Cos(to)
+}
+
+// diffuse gives I_d at every depth for unit D_above from a ring shape.
+func (c *crown) diffuse(shape []float64, out []float64) {
+	for j := range out {
+		f := c.ring[j*c.rings : (j+1)*c.rings]
+		sum := 0.0
+		for r, v := range shape[:len(f)] {
+			sum += v * f[r]
+		}
+		out[j] = sum
+	}
+}
+
+// sunlit gives exp(-G_s l / cos theta_sun), without the beam chance, at every depth.
+func (c *crown) sunlit(β float64, out []float64) {
+	sin, cos := math.Sincos(β)
+	K := canopy.LeafProjection(c.chi, sin, cos) / math.Max(sin, 1e-9)
+	for j, l := range c.depth {
+		out[j] = math.Exp(-K * l)
+	}
+}
