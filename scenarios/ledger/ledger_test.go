@@ -101,7 +101,7 @@ func bruteIncome(p *Plant, g *light.Regime, set leaf.Set, share, k float64, radi
 		}
 		return norm * math.Sqrt(p.Chi*p.Chi*cos*cos+sin*sin)
 	}
-	const depths, sky, na, nt = 24, 900, 40, 40
+	const depths, sky, na, nt = 80, 2000, 80, 60
 	var fromSky, fromDown [depths]float64
 	for j := range depths {
 		l := (float64(j) + 0.5) / depths * p.CrownLAI
@@ -158,7 +158,7 @@ func cases() []*Plant {
 
 // The ledger's income and its sunfleck part against plain sums: 0.5 % asked for, most of the rest is the plain sums' own grid.
 func TestIncomeAgainstPlainSums(t *testing.T) {
-	s := synthetic(40)
+	s := synthetic(60)
 	_, on := masks(s)
 	for _, sky := range []struct {
 		sky      radiation.Sky

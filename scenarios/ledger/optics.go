@@ -25,8 +25,6 @@ type crown struct {
 func depthNodes(crownLAI float64) int {
 	switch {
 	case crownLAI <= 0.6:
-		return 2
-	case crownLAI <= 2:
 		return 3
 	case crownLAI <= 4:
 		return 4
@@ -37,12 +35,14 @@ func depthNodes(crownLAI float64) int {
 func newCrown(p *Plant, zenith []float64) *crown {
 	n := depthNodes(p.CrownLAI)
 	c := &crown{chi: p.Chi, depth: make([]float64, n), weight: make([]float64, n), rings: len(zenith) - 1}
-	quad.Legendre{}.FixedLocations(c.depth, c.weight, 0, p.CrownLAI)
+	quad.Legendre{}.FixedLocations(c.depth, c.weight, 0, 1)
+	for j, t := range c.depth {
+		c.depth[j], c.weight[j] = t*t*p.CrownLAI, 2*t*c.weight[j]
+	}
 	root := math.Sqrt(p.Absorptance)
 	c.ring = make([]float64, n*c.rings)
 	c.uniform = make([]float64, n)
 	for j, l := range c.depth {
-		c.weight[j] /= p.CrownLAI
 		for r := range c.rings {
 			mean, solid := ringMean(zenith[r], zenith[r+1], func(sin, cos float64) float64 {
 				G := canopy.LeafProjection(c.chi, cos, sin)
