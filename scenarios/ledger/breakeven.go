@@ -150,6 +150,33 @@ func (r *Prepared) binned(w *scratch, set leaf.Set, k float64) float64 {
 	return sum
 }
 
+// rough is binned with the middle depth standing for the whole crown: it only points the search to a bracket.
+func (r *Prepared) rough(w *scratch, set leaf.Set, k float64) float64 {
+	n := len(r.crown.depth)
+	mid := n / 2
+	c := newCurve(set)
+	var node [muNodes]float64
+	sum := 0.0
+	for x := range w.bins.list {
+		q := &w.bins.list[x]
+		at := w.bins.depth[x*3*n+3*mid:]
+		beam := math.Min(1, k*q.beam)
+		Id := math.Min(k*at[0], at[1]) + math.Min(k*q.down, q.level*(1-beam))*r.crown.uniform[mid]
+		P := c.gross(Id, 1)
+		if beam > 0 && q.normal > 0 {
+			s := step{normal: q.normal, mu: q.mu, factor: 1, rule: int32(q.rule + 0.5)}
+			weight := r.rule(&s, &node)
+			mean := 0.0
+			for i, v := range node {
+				mean += weight[i] * c.gross(Id+v, 1)
+			}
+			P += beam * at[2] * (mean - P)
+		}
+		sum += q.weight * P
+	}
+	return sum
+}
+
 // exact is the same sum over every step.
 func (r *Prepared) exact(g *light.Regime, w *scratch, set leaf.Set, k float64) float64 {
 	sum := 0.0
@@ -177,7 +204,9 @@ func (k *Keeper) BreakEven(r *Prepared) BreakEven {
 	quick := func(scale float64) float64 {
 		return net(scale, func(set leaf.Set, s float64) float64 { return r.binned(&k.scratch, set, s) })
 	}
-	scale, found := k.search(quick)
+	scale, found := k.search(func(scale float64) float64 {
+		return net(scale, func(set leaf.Set, s float64) float64 { return r.rough(&k.scratch, set, s) })
+	}, quick)
 	if !found {
 		return BreakEven{}
 	}
@@ -217,8 +246,9 @@ func (k *Keeper) bracket() (low, ratio float64) {
 	return low, math.Pow(2*high/low, 1.0/bracketSteps)
 }
 
-// search finds the lowest upward crossing of net.
-func (k *Keeper) search(net func(float64) float64) (scale float64, found bool) {
+// search finds the lowest upward crossing of net. A rough net picks the step of the bracket; the net itself then moves
+// it down or up until it holds.
+func (k *Keeper) search(rough, net func(float64) float64) (scale float64, found bool) {
 	if net(0) >= 0 {
 		return 0, true
 	}
@@ -226,13 +256,32 @@ func (k *Keeper) search(net func(float64) float64) (scale float64, found bool) {
 	if low == 0 {
 		return 0, false // no light at all to scale
 	}
-	from, s := 0.0, low
-	for range bracketSteps + 1 {
-		if net(s) >= 0 {
-			return k.close(net, from, s), true
+	at := func(i int) float64 {
+		if i < 0 {
+			return 0
 		}
-		from = s
-		s *= ratio
+		return low * math.Pow(ratio, float64(i))
+	}
+	i := 0
+	for i < bracketSteps && rough(at(i)) < 0 {
+		i++
+	}
+	if net(at(i)) >= 0 {
+		for i > 0 && net(at(i-1)) >= 0 {
+			i--
+		}
+		return k.close(net, at(i-1), at(i)), true
+	}
+	for i++; i <= bracketSteps; i++ {
+		if net(at(i)) >= 0 {
+			return k.close(net, at(i-1), at(i)), true
+		}
+	}
+	// the rough net may have stepped over a short stretch of gain
+	for i = range bracketSteps {
+		if net(at(i)) >= 0 {
+			return k.close(net, at(i-1), at(i)), true
+		}
 	}
 	return 0, false
 }
