@@ -20,6 +20,7 @@ type Results struct {
 type TreatmentStations struct {
 	Treatment *Treatment
 	Names     []string
+	Inside    []bool // within the crown outline; true without an opening
 }
 
 // LightRow is one row of `light`.

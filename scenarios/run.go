@@ -130,15 +130,17 @@ func (r *runner) treatment(t *Treatment, res *Results) error {
 		return err
 	}
 	res.Warnings = append(res.Warnings, s.warnings...)
-	names := make([]string, len(s.stations))
+	named := TreatmentStations{Treatment: t}
+	opening, cleared := t.Opening.(Cleared)
 	points := make([]canopy.Point, 0, len(s.stations)*len(r.heights))
-	for i, st := range s.stations {
-		names[i] = st.Name
+	for _, st := range s.stations {
+		named.Names = append(named.Names, st.Name)
+		named.Inside = append(named.Inside, !cleared || opening.Crowns.Contains(st.X, st.Y))
 		for _, h := range r.heights {
 			points = append(points, canopy.Point{X: st.X, Y: st.Y, Height: h})
 		}
 	}
-	res.Stations = append(res.Stations, TreatmentStations{t, names})
+	res.Stations = append(res.Stations, named)
 	if r.opts.Depth == Light {
 		r.lightRows(s, points, res)
 		return nil

@@ -1,0 +1,79 @@
+// Package report turns results into text: tables, CSV and JSON, on writers it is given. It knows no
+// files and no physics.
+package report
+
+import (
+	"fmt"
+	"io"
+
+	"shadeledger/scenarios"
+)
+
+// Format of output.
+type Format int
+
+// The formats.
+const (
+	Table Format = iota
+	CSV
+	JSON
+)
+
+// ParseFormat reads table, csv or json.
+func ParseFormat(s string) (Format, error) {
+	switch s {
+	case "table":
+		return Table, nil
+	case "csv":
+		return CSV, nil
+	case "json":
+		return JSON, nil
+	}
+	return 0, fmt.Errorf("format %q is not known; it must be table, csv or json", s)
+}
+
+// Output is where text goes and in which form. Notes takes what accompanies CSV rows.
+type Output struct {
+	Out, Notes io.Writer
+	Format     Format
+	Units      scenarios.Units
+}
+
+// Width and Height of the first screen, in columns and lines of text.
+const (
+	Width  = 80
+	Height = 24
+)
+
+// Name is the line that names the stand of a plan.
+func Name(p *scenarios.Plan) string {
+	title := p.Title
+	if title == "" {
+		title = p.File
+	}
+	if p.Example {
+		return title + " (built-in example, invented data)"
+	}
+	return title
+}
+
+// notes are what was assumed, doubted and cautioned, ready to print.
+type notes struct {
+	plan     *scenarios.Plan
+	assumed  []scenarios.Assumed
+	warnings []scenarios.Warning
+}
+
+func notesOf(r *scenarios.Results) notes { return notes{r.Plan, r.Assumed, r.Warnings} }
+
+// printer collects the first error of a run of writes.
+type printer struct {
+	w   io.Writer
+	err error
+}
+
+func (p *printer) f(format string, args ...any) {
+	if p.err == nil {
+		_, p.err = fmt.Fprintf(p.w, format, args...)
+	}
+}

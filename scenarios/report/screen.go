@@ -1,0 +1,251 @@
+package report
+
+import (
+	"math"
+	"strings"
+
+	"shadeledger/scenarios"
+	"shadeledger/scenarios/ledger"
+)
+
+// FirstScreen writes the answer of a run in at most Height lines of Width columns: the decision, then a row a
+// treatment and a column a seedling.
+func FirstScreen(o Output, r *scenarios.Results) error {
+	b := gather(r)
+	var lines []string
+	lines = append(lines, heading(r.Plan)...)
+	lines = append(lines, wrap(readAs(r.Plan, o.Units), Width, Width)...)
+	lines = append(lines, wrap(b.decision(), Width, Width)...)
+	last := footer(r)
+	lines = append(lines, b.grid(o.Units, Height-len(lines)-len(last))...)
+	lines = append(lines, last...)
+	p := &printer{w: o.Out}
+	for _, l := range lines {
+		p.f("%s\n", strings.TrimRight(l, " "))
+	}
+	return p.err
+}
+
+// heading names the stand and the season, on one line where they fit.
+func heading(p *scenarios.Plan) []string {
+	name, season := Name(p), "season "+dateText(p.Season.From)+" - "+dateText(p.Season.To)
+	if gap := Width - runes(name) - runes(season); gap >= 2 {
+		return []string{name + strings.Repeat(" ", gap) + season}
+	}
+	return append(wrap(name, Width, Width), season)
+}
+
+// readAs says what the stand was taken for.
+func readAs(p *scenarios.Plan, u scenarios.Units) string {
+	s := "Read as: "
+	if !math.IsNaN(p.Stand.BasalArea) && p.Stand.BasalArea > 0 {
+		s += basalArea(p.Stand.BasalArea, u) + ", "
+	}
+	s += "height " + length(p.Stand.Height, u) + ", leaf area " + text0(leafArea(p.Stand.Layers), 1)
+	for _, a := range p.Assumed {
+		if a.Key == "stand.lai" {
+			s += " (assumed)"
+		}
+	}
+	if n := len(p.Stand.Understory); n > 0 {
+		var names []string
+		for _, x := range p.Stand.Understory {
+			names = append(names, x.Name)
+		}
+		s += ", under it " + strings.Join(names, ", ")
+	}
+	return s
+}
+
+// footer points to what was assumed and to the cautions.
+func footer(r *scenarios.Results) []string {
+	return []string{
+		"Cell: best class inside and where (C N E S W). Light: % over the season. No range yet.",
+		itoa(open(r.Plan)) + " cautions open, " + itoa(len(r.Assumed)) + " values assumed: shadeledger check",
+	}
+}
+
+// cell is the words of an outcome.
+func (o outcome) cell() (class, at string) {
+	if o.class == ledger.Below {
+		return o.class.String(), ""
+	}
+	return o.class.String(), letters(o)
+}
+
+// row is a treatment on the screen: each field a first and a second line.
+type row [][2]string
+
+// grid lays the table out in at most the given lines: one line a treatment where cells with their stations fit, else
+// a second line for the stations.
+func (b *board) grid(u scenarios.Units, most int) []string {
+	p := b.results.Plan
+	shown := len(p.Seedlings)
+	for {
+		for _, how := range []layout{oneLineRows, twoLineRows} {
+			lines, ok := b.lay(u, how, shown)
+			if ok {
+				return b.fit(lines, most, len(p.Seedlings)-shown)
+			}
+		}
+		if shown == 1 {
+			lines, _ := b.lay(u, twoLineRows, shown)
+			return b.fit(lines, most, len(p.Seedlings)-shown)
+		}
+		shown--
+	}
+}
+
+// layout is how a row is set.
+type layout int
+
+const (
+	oneLineRows layout = iota
+	twoLineRows
+)
+
+// leastName is the narrowest column of treatment names.
+const leastName = 9
+
+// lay sets header and rows; each element is one treatment's lines. ok is false where they are too wide.
+func (b *board) lay(u scenarios.Units, how layout, seedlings int) (blocks [][]string, ok bool) {
+	rows := []row{b.header(seedlings)}
+	for t := range b.cells {
+		rows = append(rows, b.row(u, how, t, seedlings))
+	}
+	width := make([]int, len(rows[0]))
+	for _, r := range rows {
+		for i, f := range r {
+			width[i] = max(width[i], runes(f[0]), runes(f[1]))
+		}
+	}
+	rest := 0
+	for _, w := range width[1:] {
+		rest += 1 + w
+	}
+	roomy := Width - rest
+	if how == oneLineRows && width[0] > roomy || roomy < leastName {
+		return nil, false
+	}
+	if spare := roomy - width[0] - (len(width) - 1); spare > 0 { // room for a second space between columns
+		for i := 1; i < len(width)-1; i++ {
+			width[i]++
+		}
+	}
+	width[0] = min(width[0], roomy)
+	for _, r := range rows {
+		name := wrap(r[0][0], width[0], width[0])
+		block := []string{}
+		for l := 0; l < 2 || l < len(name); l++ {
+			s := ""
+			if l < len(name) {
+				s = clip(name[l], width[0])
+			}
+			s = pad(s, width[0])
+			for k, f := range r[1:] {
+				text := ""
+				if l < 2 {
+					text = f[l]
+				}
+				s += " " + pad(text, width[k+1])
+			}
+			if l == 0 || strings.TrimSpace(s) != "" {
+				block = append(block, s)
+			}
+		}
+		blocks = append(blocks, block)
+	}
+	return blocks, true
+}
+
+// fit joins blocks into lines, leaving out the last treatments where there is no room, and says so.
+func (b *board) fit(blocks [][]string, most, hidden int) []string {
+	total := 0
+	for _, x := range blocks {
+		total += len(x)
+	}
+	left := 0
+	for total+min(1, left+hidden) > most && len(blocks) > 2 {
+		total -= len(blocks[len(blocks)-1])
+		blocks = blocks[:len(blocks)-1]
+		left++
+	}
+	var out []string
+	for _, x := range blocks {
+		out = append(out, x...)
+	}
+	if left+hidden > 0 {
+		out = append(out, "Not shown for want of room: "+itoa(left)+" treatments, "+itoa(hidden)+" seedlings: --stations")
+	}
+	return out
+}
+
+func (b *board) header(seedlings int) row {
+	h := row{{"treatment"}, {"cut"}, {"light"}}
+	for _, s := range b.results.Plan.Seedlings[:seedlings] {
+		name := wrap(s.Name, 11, 11)
+		f := [2]string{clip(name[0], 14)}
+		if len(name) > 1 {
+			f[1] = clip(strings.Join(name[1:], " "), 14)
+		}
+		h = append(h, f)
+	}
+	return h
+}
+
+func (b *board) row(u scenarios.Units, how layout, t, seedlings int) row {
+	p := b.results.Plan
+	r := row{{p.Treatments[t].Name}, cutText(CutOf(p, &p.Treatments[t]), u, how), {lightText(b.low[t], b.up[t])}}
+	for s := range seedlings {
+		class, at := b.cells[t][s].cell()
+		switch {
+		case at == "":
+			r = append(r, [2]string{class})
+		case how == oneLineRows:
+			r = append(r, [2]string{class + ": " + at})
+		default:
+			r = append(r, [2]string{class, at})
+		}
+	}
+	return r
+}
+
+// cutText is what a treatment takes: percent of leaf area between openings, the opening's legal area.
+func cutText(c Cut, u scenarios.Units, how layout) [2]string {
+	matrix := whole(100*c.Matrix) + "%"
+	if c.Matrix == 0 {
+		matrix = "0"
+	}
+	if c.Opening == 0 {
+		return [2]string{matrix}
+	}
+	opening := area(c.Opening, u)
+	switch {
+	case c.Matrix > 0 && how == oneLineRows:
+		return [2]string{matrix + " + " + opening}
+	case c.Matrix > 0:
+		return [2]string{matrix, strings.ReplaceAll(opening, " ", "")}
+	case how == oneLineRows:
+		return [2]string{opening}
+	}
+	number, unit, _ := strings.Cut(opening, " ")
+	return [2]string{number, unit}
+}
+
+func lightText(low, up float64) string {
+	if whole(low) == whole(up) {
+		return whole(up)
+	}
+	return whole(low) + "-" + whole(up)
+}
+
+func pad(s string, width int) string {
+	return s + strings.Repeat(" ", max(0, width-runes(s)))
+}
+
+func clip(s string, width int) string {
+	if r := []rune(s); len(r) > width {
+		return string(r[:width-1]) + "."
+	}
+	return s
+}

@@ -1,0 +1,174 @@
+package report
+
+import (
+	"io"
+	"math"
+
+	"github.com/jedib0t/go-pretty/v6/table"
+	"github.com/jedib0t/go-pretty/v6/text"
+
+	"shadeledger/scenarios"
+	"shadeledger/scenarios/ledger"
+)
+
+// Light writes the light of a run.
+func Light(o Output, r *scenarios.Results) error {
+	n := notesOf(r)
+	switch o.Format {
+	case CSV:
+		if err := writeCSV(o.Out, lightColumns, r.Light); err != nil {
+			return err
+		}
+		return n.write(o.Notes)
+	case JSON:
+		rows, err := jsonRows(lightColumns, r.Light)
+		if err != nil {
+			return err
+		}
+		return n.writeJSON(o.Out, rows)
+	}
+	p := &printer{w: o.Out}
+	p.f("%s\n%s\n", Name(r.Plan), seasonLine(r.Plan))
+	if p.err != nil {
+		return p.err
+	}
+	t := newTable("treatment", "station", "height "+lengthUnit(o.Units), "period", "light %", "mol/m2/d", "sunfleck %", "sky %")
+	for i := range r.Light {
+		l := &r.Light[i]
+		t.AppendRow(table.Row{l.Treatment, l.Station, sig(lengthValue(l.Height, o.Units), 2), l.Period, whole(l.Light),
+			decimal(l.PAR, 1), whole(l.Sunfleck), whole(l.SkyView)})
+	}
+	if err := render(o.Out, t, 3, 5, 6, 7, 8); err != nil {
+		return err
+	}
+	p.f("light: percent of full light; sunfleck: share of PAR as unscattered beam; sky: cosine-weighted sky view.\n")
+	if p.err != nil {
+		return p.err
+	}
+	return n.write(o.Out)
+}
+
+// View is how `balance` shows a run as a table.
+type View int
+
+// The views: the first screen, every station, every line of the ledger.
+const (
+	Screen View = iota
+	Stations
+	Ledger
+)
+
+// Balance writes the ledgers of a run.
+func Balance(o Output, r *scenarios.Results, v View) error {
+	n := notesOf(r)
+	switch o.Format {
+	case CSV:
+		if err := writeCSV(o.Out, balanceColumns, r.Balance); err != nil {
+			return err
+		}
+		return n.write(o.Notes)
+	case JSON:
+		rows, err := jsonRows(balanceColumns, r.Balance)
+		if err != nil {
+			return err
+		}
+		return n.writeJSON(o.Out, rows)
+	}
+	var err error
+	switch v {
+	case Screen:
+		err = FirstScreen(o, r)
+	case Stations:
+		err = stations(o, r)
+	case Ledger:
+		err = ledgerTable(o, r)
+	}
+	if err != nil {
+		return err
+	}
+	p := &printer{w: o.Out}
+	p.f("\n")
+	if p.err != nil {
+		return p.err
+	}
+	return n.write(o.Out)
+}
+
+// stations is the table of every station.
+func stations(o Output, r *scenarios.Results) error {
+	p := &printer{w: o.Out}
+	p.f("%s\n%s\n", Name(r.Plan), seasonLine(r.Plan))
+	t := newTable("treatment", "station", "seedling", "period", "light %", "leaf-on %", "net g C", "income:cost", "break-even %", "threshold %", "class")
+	for i := range r.Balance {
+		b := &r.Balance[i]
+		t.AppendRow(table.Row{b.Treatment, b.Station, b.Species, b.Period, whole(b.Light), whole(b.LightLeafOn), sig(b.Lines.Net(), 2),
+			decimal(b.Lines.Ratio(), 2), whole(ifFound(func(x ledger.BreakEven) float64 { return x.LeafOn })(b)),
+			whole(ifFound(func(x ledger.BreakEven) float64 { return x.Threshold.LeafOn })(b)), b.Class.String()})
+	}
+	if p.err == nil {
+		p.err = render(o.Out, t, 5, 6, 7, 8, 9, 10)
+	}
+	p.f("break-even and threshold: leaf-on percent of full light; - where the year stays below zero at every light.\n")
+	p.f("Ranges: no range yet.\n")
+	return p.err
+}
+
+// ledgerTable is the table of every line.
+func ledgerTable(o Output, r *scenarios.Results) error {
+	p := &printer{w: o.Out}
+	p.f("%s\n%s\nEvery line of the ledger, g C per plant and period; costs positive.\n", Name(r.Plan), seasonLine(r.Plan))
+	t := newTable("treatment", "station", "seedling", "period", "income", "of it sunfleck", "leaf day", "leaf night", "stem", "root",
+		"leaf repl.", "root repl.", "net", "class")
+	for i := range r.Balance {
+		b := &r.Balance[i]
+		row := table.Row{b.Treatment, b.Station, b.Species, b.Period}
+		for _, v := range b.Lines {
+			row = append(row, sig(v, 3))
+		}
+		t.AppendRow(append(row, sig(b.Lines.Net(), 3), b.Class.String()))
+	}
+	if p.err == nil {
+		p.err = render(o.Out, t, 5, 6, 7, 8, 9, 10, 11, 12, 13)
+	}
+	return p.err
+}
+
+// seasonLine names the season and the sky the figures stand for.
+func seasonLine(p *scenarios.Plan) string {
+	return "season " + dateText(p.Season.From) + " - " + dateText(p.Season.To) + "; light in percent of full light over the season"
+}
+
+func dateText(d scenarios.Date) string {
+	return itoa(d.Day) + " " + d.Month.String()[:3]
+}
+
+func decimal(v float64, places int) string {
+	if math.IsNaN(v) {
+		return "-"
+	}
+	return text0(v, places)
+}
+
+// newTable starts a table with a header kept as written.
+func newTable(header ...any) table.Writer {
+	t := table.NewWriter()
+	style := table.StyleLight
+	style.Format.Header = text.FormatDefault
+	style.Options = table.OptionsNoBordersAndSeparators
+	style.Box.PaddingLeft, style.Box.PaddingRight = "", "  "
+	t.SetStyle(style)
+	t.AppendHeader(header)
+	return t
+}
+
+// render writes a table, the numbered columns (from 1) set right.
+func render(w io.Writer, t table.Writer, right ...int) error {
+	var c []table.ColumnConfig
+	for _, i := range right {
+		c = append(c, table.ColumnConfig{Number: i, Align: text.AlignRight, AlignHeader: text.AlignRight})
+	}
+	t.SetColumnConfigs(c)
+	p := &printer{w: w}
+	p.f("%s\n", t.Render())
+	return p.err
+}

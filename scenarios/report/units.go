@@ -1,0 +1,87 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"unicode/utf8"
+
+	"shadeledger/scenarios"
+)
+
+// Exact by definition: the international foot and acre.
+const (
+	metresPerFoot = 0.3048
+	m2PerAcre     = 4046.8564224
+	m2PerHectare  = 1e4
+)
+
+func length(m float64, u scenarios.Units) string {
+	if u == scenarios.US {
+		return sig(m/metresPerFoot, 3) + " ft"
+	}
+	return sig(m, 3) + " m"
+}
+
+// lengthValue is a length in the unit of tables, without the unit's name.
+func lengthValue(m float64, u scenarios.Units) float64 {
+	if u == scenarios.US {
+		return m / metresPerFoot
+	}
+	return m
+}
+
+func lengthUnit(u scenarios.Units) string {
+	if u == scenarios.US {
+		return "ft"
+	}
+	return "m"
+}
+
+func area(m2 float64, u scenarios.Units) string {
+	if u == scenarios.US {
+		return sig(m2/m2PerAcre, 2) + " ac"
+	}
+	if m2 < 1000 {
+		return sig(m2, 2) + " m2"
+	}
+	return sig(m2/m2PerHectare, 2) + " ha"
+}
+
+// basalArea takes m2/ha.
+func basalArea(v float64, u scenarios.Units) string {
+	if u == scenarios.US {
+		return sig(v*m2PerAcre/m2PerHectare/(metresPerFoot*metresPerFoot), 3) + " ft2/ac"
+	}
+	return sig(v, 3) + " m2/ha"
+}
+
+// sig prints a number to n significant digits, without an exponent.
+func sig(v float64, n int) string {
+	if v == 0 || math.IsNaN(v) || math.IsInf(v, 0) {
+		return strconv.FormatFloat(v, 'f', -1, 64)
+	}
+	places := n - 1 - int(math.Floor(math.Log10(math.Abs(v))))
+	if places < 0 {
+		scale := math.Pow(10, float64(-places))
+		return strconv.FormatFloat(math.Round(v/scale)*scale, 'f', 0, 64)
+	}
+	return strconv.FormatFloat(v, 'f', places, 64)
+}
+
+// whole prints a percent; what is above 0 but rounds to it shows as <1.
+func whole(v float64) string {
+	switch {
+	case math.IsNaN(v):
+		return "-"
+	case v > 0 && v < 0.5:
+		return "<1"
+	}
+	return strconv.FormatFloat(math.Round(v), 'f', 0, 64)
+}
+
+func itoa(i int) string { return fmt.Sprint(i) }
+
+func runes(s string) int { return utf8.RuneCountInString(s) }
+
+func text0(v float64, places int) string { return strconv.FormatFloat(v, 'f', places, 64) }
