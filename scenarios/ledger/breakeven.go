@@ -11,6 +11,7 @@ import (
 const (
 	bracketSteps = 40
 	tolerance    = 0.005 // points of full light
+	sure         = 0.1   // points: after a move this small, the bins' slope leaves a few thousandths
 	faintest     = 0.02  // percent of full light at the first step
 	mostScale    = 1 << 20
 )
@@ -323,7 +324,7 @@ func (k *Keeper) polish(scale float64, quick, exact func(float64) float64) float
 		}
 		before := k.capLeafOn.Percent(scale)
 		scale += move
-		if math.Abs(k.capLeafOn.Percent(scale)-before) < 2*tolerance {
+		if math.Abs(k.capLeafOn.Percent(scale)-before) < sure {
 			break
 		}
 	}

@@ -90,8 +90,8 @@ func plant(chi, crownLAI float64, traits leaf.Acclimation) *Plant {
 	}
 }
 
-// bruteNet is a plant's year in neutral or uneven shade by plain sums: own projection, a fine grid over leaf
-// inclination and azimuth, 60 midpoint depths, direct integral over the sky, no rules, tables or bins.
+// bruteIncome is a plant's year in neutral or uneven shade by plain sums: own projection, a fine grid over leaf
+// inclination and azimuth, 80 midpoint depths, direct integral over the sky, no rules, tables or bins.
 func bruteIncome(p *Plant, g *light.Regime, set leaf.Set, share, k float64, radiance func(cos float64) float64) (income, fleck float64) {
 	s := g.Above.Series
 	norm := 1 / (p.Chi + 1.774*math.Pow(p.Chi+1.182, -0.733))
@@ -214,6 +214,38 @@ func TestBreakEvenIsRoot(t *testing.T) {
 			if below, over := net(b.LeafOn-0.02), net(b.LeafOn+0.02); !(below < 0 && over > 0) {
 				t.Errorf("share %g chi %g L %g: net %g just below %g %%, %g just above", share, p.Chi, p.CrownLAI, below, b.LeafOn, over)
 			}
+		}
+	}
+}
+
+// Break-even against plain sums of income: net changes sign within 0.05 points, of 0.2 asked for.
+func TestBreakEvenAgainstPlainSums(t *testing.T) {
+	s := synthetic(60)
+	season, on := masks(s)
+	above := light.NewAbove(s, radiation.Uniform{}, light.Station)
+	const share = 0.2
+	g := shade(above, share)
+	k := NewKeeper(season, on)
+	k.Take(g)
+	for _, p := range cases()[1:3] {
+		r := Prepare(p, above)
+		b := k.BreakEven(r)
+		net := func(percent float64) float64 {
+			low, high := 0.0, 1e3
+			for range 60 {
+				if m := (low + high) / 2; k.capLeafOn.Percent(m) < percent {
+					low = m
+				} else {
+					high = m
+				}
+			}
+			set := p.Traits.At(percent)
+			income, _ := bruteIncome(p, g, set, share, low, func(float64) float64 { return 1 / math.Pi })
+			costs := r.yearCosts(set)
+			return income - costs.Costs()
+		}
+		if below, over := net(b.LeafOn-0.05), net(b.LeafOn+0.05); !(b.Found && below < 0 && over > 0) {
+			t.Errorf("chi %g L %g: net %g just below %g %%, %g just above", p.Chi, p.CrownLAI, below, b.LeafOn, over)
 		}
 	}
 }
