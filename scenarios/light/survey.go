@@ -1,0 +1,270 @@
+package light
+
+import (
+	"math"
+	"sync"
+	"sync/atomic"
+
+	"shadeledger/canopy"
+)
+
+// Scene is a treatment's canopy through the series: what stands, and the share of leaf present each day.
+type Scene struct {
+	above *Above
+	stand *canopy.Stand
+	rays  *canopy.Rays
+	// state of leaf by day; states[k] is a vector of shares by phenology
+	dayState []int32
+	states   [][]float64
+	recipe   []recipe
+	anchors  [][]float64
+	litState []int32
+	// shape numbering: one shape for each (state, pattern) that occurs
+	shapeState   []int32
+	shapePattern []int32
+	shape        []int32
+}
+
+// recipe makes a state's sky light from one anchor, or from two between which one share of leaf changes.
+type recipe struct {
+	a, b int
+	f    float64 // 0: all a
+}
+
+// anchorStep is how far apart the anchors of a changing share lie; between them the logarithm of each cell's light is
+// linear, to better than 0.1 % of that light.
+const anchorStep = 0.25
+
+// NewScene prepares a stand for a series; shares gives the share of leaf present by phenology on a series day.
+func NewScene(a *Above, stand *canopy.Stand, shares func(day int) []float64) *Scene {
+	s := &Scene{above: a, stand: stand}
+	series := a.Series
+	s.dayState = make([]int32, len(series.Days))
+	for d := range series.Days {
+		s.dayState[d] = s.state(shares(d))
+	}
+	directions := make([]canopy.Direction, len(series.Lit.Step))
+	s.litState = make([]int32, len(series.Lit.Step))
+	for d := range series.Days {
+		for i := series.Days[d].LitFrom; i < series.Days[d].LitTo; i++ {
+			directions[i] = canopy.Direction{Elevation: series.Lit.Elevation[i], Azimuth: series.Lit.Azimuth[i]}
+			s.litState[i] = s.dayState[d]
+		}
+	}
+	s.rays = stand.Rays(directions)
+	s.number()
+	for _, v := range s.states {
+		s.recipe = append(s.recipe, s.mix(v))
+	}
+	return s
+}
+
+// state finds or adds a vector of shares.
+func (s *Scene) state(v []float64) int32 {
+	for k := len(s.states) - 1; k >= 0; k-- {
+		if same(s.states[k], v) {
+			return int32(k)
+		}
+	}
+	s.states = append(s.states, append([]float64(nil), v...))
+	return int32(len(s.states) - 1)
+}
+
+func same(a, b []float64) bool {
+	for i := range a {
+		if a[i] != b[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// number gives every pair of leaf state and sky pattern that occurs a shape.
+func (s *Scene) number() {
+	n := len(s.above.Pattern)
+	s.shape = make([]int32, n)
+	seen := make([]int32, len(s.states)*s.above.patterns)
+	for i := range n {
+		key := int(s.litState[i])*s.above.patterns + int(s.above.Pattern[i])
+		if seen[key] == 0 {
+			s.shapeState = append(s.shapeState, s.litState[i])
+			s.shapePattern = append(s.shapePattern, s.above.Pattern[i])
+			seen[key] = int32(len(s.shapeState))
+		}
+		s.shape[i] = seen[key] - 1
+	}
+}
+
+// mix finds how a state is made of anchors.
+func (s *Scene) mix(v []float64) recipe {
+	varying, count := 0, 0
+	for g, x := range v {
+		if x > 0 && x < 1 {
+			varying, count = g, count+1
+		}
+	}
+	if count != 1 {
+		return recipe{a: s.anchor(v)}
+	}
+	low := math.Floor(v[varying]/anchorStep) * anchorStep
+	end := append([]float64(nil), v...)
+	end[varying] = low
+	a := s.anchor(end)
+	if v[varying] == low {
+		return recipe{a: a}
+	}
+	end[varying] = low + anchorStep
+	return recipe{a: a, b: s.anchor(end), f: (v[varying] - low) / anchorStep}
+}
+
+func (s *Scene) anchor(v []float64) int {
+	for k, w := range s.anchors {
+		if same(v, w) {
+			return k
+		}
+	}
+	s.anchors = append(s.anchors, append([]float64(nil), v...))
+	return len(s.anchors) - 1
+}
+
+// Survey finds the regime at every point and hands it to visit, which must not keep it. Points are shared out over
+// workers; visit is called once for each point, from one of them, with the worker's number.
+func (s *Scene) Survey(points []canopy.Point, workers int, visit func(worker, point int, r *Regime)) {
+	workers = max(1, min(workers, len(points)))
+	var next atomic.Int64
+	var group sync.WaitGroup
+	for w := range workers {
+		group.Go(func() {
+			o := s.newObserver()
+			for {
+				i := int(next.Add(1)) - 1
+				if i >= len(points) {
+					return
+				}
+				visit(w, i, o.observe(points[i]))
+			}
+		})
+	}
+	group.Wait()
+}
+
+// observer is one worker's scratch space.
+type observer struct {
+	scene   *Scene
+	tracer  *canopy.Tracer
+	scan    *canopy.SkyScan
+	beams   []canopy.Beam
+	anchors []*canopy.CellLight
+	// by leaf state: integral of T over each cell; ratio of plane to solid by ring
+	solid, cosine []float64
+	plane         []float64
+	regime        *Regime
+}
+
+func (s *Scene) newObserver() *observer {
+	a := s.above
+	o := &observer{
+		scene: s, tracer: s.stand.NewTracer(), scan: s.stand.NewSkyScan(a.dome),
+		beams: make([]canopy.Beam, len(s.litState)), regime: newRegime(a),
+		solid: make([]float64, len(s.states)*a.dome.Cells()), cosine: make([]float64, len(s.states)*a.Rings()),
+		plane: make([]float64, len(s.shapeState)),
+	}
+	for range s.anchors {
+		o.anchors = append(o.anchors, canopy.NewCellLight(a.dome))
+	}
+	o.regime.ShapeRings = make([]float64, len(s.shapeState)*a.Rings())
+	o.regime.ShapePattern = s.shapePattern
+	copy(o.regime.Shape, s.shape)
+	return o
+}
+
+// observe fills the regime of a point.
+func (o *observer) observe(p canopy.Point) *Regime {
+	s, r := o.scene, o.regime
+	lit := &s.above.Series.Lit
+	o.tracer.Trace(p, s.rays, s.litState, s.states, o.beams)
+	for i, b := range o.beams {
+		r.BeamChance[i] = b.Chance
+		r.Scattered[i] = lit.Beam[i] * (b.Transmittance - b.Chance)
+	}
+	o.scan.Scan(p)
+	r.SkyView = o.scan.SkyView()
+	for k, shares := range s.anchors {
+		o.scan.Transmit(shares, o.anchors[k])
+	}
+	for k, recipe := range s.recipe {
+		o.blend(k, recipe)
+	}
+	o.shapes()
+	for i, k := range r.Shape {
+		r.SkyPlane[i] = lit.Diffuse[i] * o.plane[k]
+	}
+	r.sumDays()
+	return r
+}
+
+// blend makes the cells of leaf state k.
+func (o *observer) blend(k int, recipe recipe) {
+	d := o.scene.above.dome
+	cells, rings := d.Cells(), d.Rings()
+	solid := o.solid[k*cells : (k+1)*cells]
+	a := o.anchors[recipe.a]
+	b, f := a, recipe.f
+	if f > 0 {
+		b = o.anchors[recipe.b]
+	}
+	for r := range rings {
+		sumS, sumP := 0.0, 0.0
+		for c := r * d.Sectors; c < (r+1)*d.Sectors; c++ {
+			S, P := a.Solid[c], a.Plane[c]
+			if f > 0 && S > 0 && b.Solid[c] > 0 {
+				k := math.Pow(b.Solid[c]/S, f)
+				P *= k
+				S *= k
+			}
+			solid[c] = S
+			sumS += S
+			sumP += P
+		}
+		if sumS > 0 {
+			o.cosine[k*rings+r] = sumP / sumS
+		} else {
+			o.cosine[k*rings+r] = 0
+		}
+	}
+}
+
+// shapes sums radiance times transmittance over each ring, for every pair of leaf state and sky pattern.
+func (o *observer) shapes() {
+	a, s := o.scene.above, o.scene
+	cells, rings, sectors := a.dome.Cells(), a.Rings(), a.dome.Sectors
+	for k, state := range s.shapeState {
+		pattern := int(s.shapePattern[k])
+		radiance := a.radiance[pattern*cells : (pattern+1)*cells]
+		solid := o.solid[int(state)*cells : (int(state)+1)*cells]
+		cosine := o.cosine[int(state)*rings : (int(state)+1)*rings]
+		out := o.regime.ShapeRings[k*rings : (k+1)*rings]
+		plane := 0.0
+		for r := range out {
+			v := dot(radiance[r*sectors:(r+1)*sectors], solid[r*sectors:(r+1)*sectors])
+			out[r] = v
+			plane += v * cosine[r]
+		}
+		o.plane[k] = plane
+	}
+}
+
+// dot is the sum of products in a fixed order, over two running sums.
+func dot(a []float32, b []float64) float64 {
+	b = b[:len(a)]
+	var x, y float64
+	i := 0
+	for ; i+1 < len(a); i += 2 {
+		x += float64(a[i]) * b[i]
+		y += float64(a[i+1]) * b[i+1]
+	}
+	if i < len(a) {
+		x += float64(a[i]) * b[i]
+	}
+	return x + y
+}
