@@ -6,6 +6,7 @@ import (
 	"testing"
 	"time"
 
+	"shadeledger/leaf"
 	"shadeledger/radiation/weather"
 	"shadeledger/scenarios"
 )
@@ -67,6 +68,9 @@ func TestAllocationsDoNotGrowWithDays(t *testing.T) {
 	p.Sampling.Step = time.Hour
 	p.Season = scenarios.Period{From: scenarios.Date{Month: 7, Day: 1}, To: scenarios.Date{Month: 7, Day: 30}}
 	p.Treatments = p.Treatments[2:]
+	for i := range p.Treatments {
+		p.Treatments[i].Matrix = []scenarios.Layer{slab(5, leaf.Evergreen{})}
+	}
 	year := p.Weather.Series(p.Site, p.Sampling.Step, p.Par)
 	count := func(s *weather.Series) float64 {
 		return testing.AllocsPerRun(2, func() {

@@ -127,26 +127,38 @@ func jsonRows[T any](columns []column[T], rows []T) (json.RawMessage, error) {
 		if r > 0 {
 			b.WriteByte(',')
 		}
-		b.WriteByte('{')
-		for i, c := range columns {
-			if i > 0 {
-				b.WriteByte(',')
-			}
-			b.WriteString(strconv.Quote(c.name) + ":")
-			if c.text != nil {
-				text, err := json.Marshal(c.text(&rows[r]))
-				if err != nil {
-					return nil, err
-				}
-				b.Write(text)
-			} else if v := c.field(&rows[r]); v == "" {
-				b.WriteString("null")
-			} else {
-				b.WriteString(v)
-			}
+		object, err := jsonObject(columns, &rows[r])
+		if err != nil {
+			return nil, err
 		}
-		b.WriteByte('}')
+		b.Write(object)
 	}
 	b.WriteByte(']')
+	return b.Bytes(), nil
+}
+
+func jsonObject[T any](columns []column[T], row *T) (json.RawMessage, error) {
+	var b bytes.Buffer
+	b.WriteByte('{')
+	for i, c := range columns {
+		if i > 0 {
+			b.WriteByte(',')
+		}
+		b.WriteString(strconv.Quote(c.name) + ":")
+		value := c.field(row)
+		switch {
+		case c.text != nil:
+			text, err := json.Marshal(value)
+			if err != nil {
+				return nil, err
+			}
+			b.Write(text)
+		case value == "":
+			b.WriteString("null")
+		default:
+			b.WriteString(value)
+		}
+	}
+	b.WriteByte('}')
 	return b.Bytes(), nil
 }

@@ -1,0 +1,145 @@
+package report
+
+import (
+	"encoding/json"
+	"fmt"
+	"io"
+	"math"
+	"strings"
+
+	"github.com/jedib0t/go-pretty/v6/table"
+
+	"shadeledger/leaf"
+	"shadeledger/leaf/traits"
+)
+
+// entry is one value of one species.
+type entry struct {
+	species *traits.Species
+	value   traits.Value
+}
+
+var entryColumns = []column[entry]{
+	words("botanical", func(e *entry) string { return e.species.Botanical }),
+	words("common", func(e *entry) string { return e.species.Common }),
+	words("name", func(e *entry) string { return e.value.Name }),
+	figure("value", func(e *entry) float64 { return e.value.Value }),
+	figure("low", func(e *entry) float64 { return e.value.Low }),
+	figure("high", func(e *entry) float64 { return e.value.High }),
+	words("unit", func(e *entry) string { return e.value.Unit }),
+	words("basis", func(e *entry) string { return string(e.value.Basis) }),
+	words("source", func(e *entry) string { return e.value.Source }),
+	words("rule", func(e *entry) string { return e.value.Rule }),
+}
+
+// speciesColumns are the fields of the list.
+var speciesColumns = []column[*traits.Species]{
+	words("botanical", func(s **traits.Species) string { return (*s).Botanical }),
+	words("common", func(s **traits.Species) string { return (*s).Common }),
+	words("group", func(s **traits.Species) string { return string((*s).Group) }),
+	figure("tolerance", func(s **traits.Species) float64 { return (*s).Tolerance() }),
+	figure("amax_umol_m2_s", func(s **traits.Species) float64 { return named(*s, "amax").Value }),
+	words("amax_basis", func(s **traits.Species) string { return string(named(*s, "amax").Basis) }),
+	figure("rd_umol_m2_s", func(s **traits.Species) float64 { return named(*s, "rd").Value }),
+	words("rd_basis", func(s **traits.Species) string { return string(named(*s, "rd").Basis) }),
+}
+
+func named(s *traits.Species, name string) traits.Value {
+	if v, ok := s.Value(name); ok {
+		return v
+	}
+	return traits.Value{Value: math.NaN()}
+}
+
+// library heads everything printed of the species library.
+const library = "Species library"
+
+// SpeciesList writes the list of the library.
+func SpeciesList(o Output, all []*traits.Species) error {
+	if o.Format == Table {
+		t := newTable("species", "name", "group", "tolerance", "Amax", "basis", "Rd", "basis")
+		for _, s := range all {
+			a, r := named(s, "amax"), named(s, "rd")
+			t.AppendRow(table.Row{s.Botanical, s.Common, s.Group, decimal(s.Tolerance(), 1), sig(a.Value, 2), a.Basis, sig(r.Value, 2), r.Basis})
+		}
+		p := &printer{w: o.Out}
+		p.f("%s: %d species. Amax (net) and Rd in umol m-2 s-1; tolerance of shade 0 to 5.\n", library, len(all))
+		if p.err == nil {
+			p.err = render(o.Out, t, 4, 5, 7)
+		}
+		p.f("One species with units, sources and basis: shadeledger species NAME\n")
+		return p.err
+	}
+	if o.Format == CSV {
+		return writeCSV(o.Out, speciesColumns, all)
+	}
+	rows, err := jsonRows(speciesColumns, all)
+	if err != nil {
+		return err
+	}
+	return writeNamed(o.Out, library, rows)
+}
+
+// SpeciesPage writes every value of one species with unit, source and basis.
+func SpeciesPage(o Output, s *traits.Species) error {
+	var entries []entry
+	for _, v := range s.Values() {
+		entries = append(entries, entry{s, v})
+	}
+	switch o.Format {
+	case CSV:
+		return writeCSV(o.Out, entryColumns, entries)
+	case JSON:
+		rows, err := jsonRows(entryColumns, entries)
+		if err != nil {
+			return err
+		}
+		return writeNamed(o.Out, s.Botanical, rows)
+	}
+	p := &printer{w: o.Out}
+	p.f("%s: %s, %s\n", library, s.Botanical, s.Common)
+	t := newTable("value", "", "low", "high", "unit", "basis", "source or rule")
+	for _, e := range entries {
+		v := e.value
+		why := v.Source
+		if v.Rule != "" {
+			why = v.Rule + " (" + v.Source + ")"
+		}
+		t.AppendRow(table.Row{v.Name, sig(v.Value, 3), sig(v.Low, 3), sig(v.High, 3), v.Unit, v.Basis, why})
+	}
+	if p.err == nil {
+		p.err = render(o.Out, t, 2, 3, 4)
+	}
+	responses(p, s)
+	return p.err
+}
+
+// ppfds are the lights at which a species page shows net assimilation, umol m-2 s-1.
+var ppfds = []float64{0, 10, 20, 50, 100, 200, 400, 800, 1600}
+
+// responses draws net assimilation of leaves grown in shade and in sun.
+func responses(p *printer, s *traits.Species) {
+	shade, sun := s.Acclimation().At(5), s.Acclimation().At(100)
+	most := math.Max(sun.Net(ppfds[len(ppfds)-1]), shade.Net(ppfds[len(ppfds)-1]))
+	p.f("\nNet assimilation at the reference temperature, umol m-2 s-1, of a leaf grown at\n")
+	p.f("%6s  %-31s %s\n", "PPFD", "5 % of full light (shade)", "100 % (sun)")
+	bar := func(set leaf.Set, I float64) string {
+		v := set.Net(I)
+		return fmt.Sprintf("%6.2f %s", v, strings.Repeat("#", max(0, int(math.Round(22*v/most)))))
+	}
+	for _, I := range ppfds {
+		p.f("%6.0f  %-31s %s\n", I, bar(shade, I), bar(sun, I))
+	}
+	p.f("compensation point %s and %s umol m-2 s-1. %s.\n", sig(shade.CompensationPoint(), 2), sig(sun.CompensationPoint(), 2), s.Acclimation().Rule())
+}
+
+// writeNamed writes rows under a name, without a plan.
+func writeNamed(w io.Writer, name string, rows json.RawMessage) error {
+	e := json.NewEncoder(w)
+	e.SetEscapeHTML(false)
+	e.SetIndent("", " ")
+	return e.Encode(struct {
+		Name string          `json:"name"`
+		Rows json.RawMessage `json:"rows"`
+	}{name, rows})
+}
