@@ -59,10 +59,7 @@ func readAs(p *scenarios.Plan, u scenarios.Units) string {
 
 // footer points to what was assumed and to the cautions.
 func footer(r *scenarios.Results) []string {
-	return []string{
-		"Cell: best class inside and where (C N E S W). Light: % over the season. No range yet.",
-		itoa(open(r.Plan)) + " cautions open, " + itoa(len(r.Assumed)) + " values assumed: shadeledger check",
-	}
+	return []string{itoa(open(r.Plan)) + " cautions open, " + itoa(len(r.Assumed)) + " values assumed: shadeledger check. No range yet."}
 }
 
 // cell is the words of an outcome.
