@@ -3,6 +3,7 @@ package report
 import (
 	"io"
 	"math"
+	"strings"
 
 	"github.com/jedib0t/go-pretty/v6/table"
 	"github.com/jedib0t/go-pretty/v6/text"
@@ -169,6 +170,8 @@ func render(w io.Writer, t table.Writer, right ...int) error {
 	}
 	t.SetColumnConfigs(c)
 	p := &printer{w: w}
-	p.f("%s\n", t.Render())
+	for _, l := range strings.Split(t.Render(), "\n") {
+		p.f("%s\n", strings.TrimRight(l, " "))
+	}
 	return p.err
 }
