@@ -25,10 +25,11 @@ type Plan struct {
 	Declination float64 // rad, magnetic, east positive
 	Frost       Frost
 
-	Weather weather.Source
-	Par     weather.Par
-	Snow    Snow
-	Season  Period // period of light figures, both days in
+	Weather     weather.Source
+	WeatherFile string // as the plan names it; "" for normals
+	Par         weather.Par
+	Snow        Snow
+	Season      Period // period of light figures, both days in
 
 	Stand      Stand
 	Seedlings  []Seedling

@@ -1,0 +1,288 @@
+package plan
+
+import (
+	"fmt"
+	"math"
+
+	"go.yaml.in/yaml/v4"
+
+	"shadeledger/leaf"
+	"shadeledger/leaf/traits"
+	"shadeledger/scenarios"
+)
+
+// region holds defaults of a forest region, all common practice: to start from, never as truth.
+type region struct {
+	lai, clumping float64
+	leaves        leaf.Calendar
+}
+
+func dates(out, full, colour, bare leaf.Date) leaf.Calendar {
+	return leaf.Deciduous{Out: out, Full: full, Colour: colour, Bare: bare}
+}
+
+// regions by name. Leaf dates are leaf-out to leaf-fall; three weeks to full leaf and for the fall.
+var regions = map[string]*region{
+	"northern-hardwood":     {5.0, 0.95, dates(leaf.Date{Month: 5, Day: 10}, leaf.Date{Month: 5, Day: 31}, leaf.Date{Month: 9, Day: 20}, leaf.Date{Month: 10, Day: 10})},
+	"oak-hickory":           {4.5, 0.95, dates(leaf.Date{Month: 4, Day: 20}, leaf.Date{Month: 5, Day: 11}, leaf.Date{Month: 9, Day: 30}, leaf.Date{Month: 10, Day: 20})},
+	"central-europe-spruce": {6.0, 0.72, leaf.Evergreen{}},
+	"coastal-douglas-fir":   {7.0, 0.65, leaf.Evergreen{}},
+	"boreal-aspen":          {2.6, 0.85, dates(leaf.Date{Month: 5, Day: 20}, leaf.Date{Month: 6, Day: 10}, leaf.Date{Month: 9, Day: 1}, leaf.Date{Month: 9, Day: 20})},
+	"uk-sitka":              {6.5, 0.65, leaf.Evergreen{}},
+}
+
+func regionNames() []string {
+	return []string{"northern-hardwood", "oak-hickory", "central-europe-spruce", "coastal-douglas-fir", "boreal-aspen", "uk-sitka"}
+}
+
+const practice = "common practice"
+
+// stand reads the uncut stand and leaves it in the plan.
+func (r *reader) stand(v val, p *scenarios.Plan) map[string]val {
+	f := r.fields(v)
+	if v.node == nil {
+		return f
+	}
+	s := &p.Stand
+	s.BasalArea, s.Area, s.Age = math.NaN(), math.NaN(), math.NaN()
+	if h, ok := r.quantity(r.need(v, f, "height")); ok {
+		s.Height, r.height = h, h
+	}
+	conifer := r.leadingConifer(f)
+	base, radius := 0.45, 3.5
+	if conifer {
+		base, radius = 0.55, 2.0
+	}
+	x, ok := r.quantity(f["crown_base"])
+	s.CrownBase = r.or(x, ok, f["crown_base"], "stand.crown_base", base*s.Height, fmt.Sprintf("%.3g m, %g H", base*s.Height, base), practice)
+	if ok && s.Height > 0 && s.CrownBase >= s.Height {
+		r.fault(f["crown_base"], "", fmt.Sprintf("a crown base below stand.height, %.4g m", s.Height))
+	}
+	x, ok = r.quantity(f["crown_radius"])
+	s.CrownRadius = r.or(x, ok, f["crown_radius"], "stand.crown_radius", radius, fmt.Sprintf("%g m", radius), practice+", by species group")
+	if x, ok := r.quantity(f["area"]); ok {
+		s.Area = x / 1e4
+	}
+	if x, ok := r.number(f["age"]); ok {
+		s.Age = x
+	}
+	index := r.fields(f["site_index"])
+	r.quantity(index["value"])
+	r.number(index["base_age"])
+	r.text(index["system"])
+	r.quantity(f["smallest_dbh"])
+	s.Layers = r.overstory(v, f, p)
+	s.Understory = r.understory(f["understory"], f["leaves"])
+	return f
+}
+
+// leadingConifer looks for the species named first.
+func (r *reader) leadingConifer(f map[string]val) bool {
+	names := []val{f["species"]}
+	if l := f["layers"]; l.present() && l.node.Kind == yaml.SequenceNode {
+		for _, n := range l.node.Content {
+			for i := 0; i+1 < len(n.Content); i += 2 {
+				if n.Content[i].Value == "species" {
+					names = append(names, val{node: n.Content[i+1]})
+				}
+			}
+		}
+	}
+	for _, v := range names {
+		if v.scalar() {
+			if s, err := traits.Find(v.node.Value); err == nil {
+				return s.Group != traits.Broadleaf
+			}
+		}
+	}
+	return r.region != nil && r.region.leaves == leaf.Calendar(leaf.Evergreen{})
+}
+
+// overstory reads layers, or one layer from lai or the region.
+func (r *reader) overstory(v val, f map[string]val, p *scenarios.Plan) []scenarios.Layer {
+	beside := []string{"lai", "wai", "chi", "clumping", "absorptance", "species"}
+	if f["layers"].present() {
+		for _, k := range beside {
+			if f[k].present() {
+				r.fault(f[k], "", "not beside stand.layers: put it in the layers")
+			}
+		}
+		return r.layers(f["layers"], f["leaves"])
+	}
+	one := map[string]val{}
+	for _, k := range append(beside, "leaves") {
+		if f[k].present() {
+			one[k] = f[k]
+		}
+	}
+	if !f["lai"].present() {
+		if r.region == nil {
+			r.fault(val{node: v.node, at: v.at, path: "stand.lai"}, " ", "missing; give stand.layers or stand.lai, or a region whose value is assumed")
+			return nil
+		}
+		r.assume("stand.lai", fmt.Sprint(r.region.lai), practice+", the region's")
+	}
+	l := r.layerRest("stand", one, val{})
+	if !f["lai"].present() {
+		l.LAI = r.region.lai
+	}
+	l.Bottom, l.Top = p.Stand.CrownBase, p.Stand.Height
+	return []scenarios.Layer{l}
+}
+
+// layers reads a list of layers.
+func (r *reader) layers(v, leaves val) (out []scenarios.Layer) {
+	for _, item := range r.items(v) {
+		f := r.fields(item)
+		from, okF := r.quantity(r.need(item, f, "from"))
+		to, okT := r.quantity(r.need(item, f, "to"))
+		r.need(item, f, "lai")
+		l := r.layerRest(item.path, f, leaves)
+		l.Bottom, l.Top = from, to
+		if okF && okT && to <= from {
+			r.fault(f["to"], "", fmt.Sprintf("above from, %.4g m", from))
+		}
+		out = append(out, l)
+	}
+	return out
+}
+
+// layerRest reads all of a layer but its heights; leaves is the stand's override for deciduous layers.
+func (r *reader) layerRest(path string, f map[string]val, leaves val) scenarios.Layer {
+	var l scenarios.Layer
+	l.LAI, _ = r.number(f["lai"])
+	x, ok := r.number(f["wai"])
+	l.WAI = r.or(x, ok, f["wai"], path+".wai", 0, "0", "left out: no wood, so leafless light comes out too bright")
+	x, ok = r.number(f["chi"])
+	l.Chi = r.or(x, ok, f["chi"], path+".chi", 1, "1, spherical", practice)
+	clumping, why := 1.0, "left out: leaves at random"
+	if r.region != nil {
+		clumping, why = r.region.clumping, practice+", the region's"
+	}
+	x, ok = r.number(f["clumping"])
+	l.Clumping = r.or(x, ok, f["clumping"], path+".clumping", clumping, fmt.Sprint(clumping), why)
+	x, ok = r.number(f["absorptance"])
+	l.Absorptance = r.or(x, ok, f["absorptance"], path+".absorptance", 0.85, "0.85", practice)
+	l.Species, l.Calendar = r.layerCalendar(path, f, leaves)
+	return l
+}
+
+// layerCalendar finds when a layer has leaves: its own dates, the stand's for deciduous species, the library's, the
+// region's; else evergreen.
+func (r *reader) layerCalendar(path string, f map[string]val, leaves val) (string, leaf.Calendar) {
+	var species *traits.Species
+	name, ok := r.text(f["species"])
+	if ok {
+		species = r.find(f["species"])
+		if species != nil {
+			name = species.Botanical
+		}
+	}
+	switch {
+	case f["leaves"].present():
+		return name, r.calendar(f["leaves"], species)
+	case leaves.present() && (species == nil || species.Deciduous()):
+		return name, r.calendar(leaves, species)
+	case species != nil:
+		if species.Deciduous() {
+			r.assume(path+".leaves", calendarText(species.Calendar()), "species library, "+species.Botanical)
+		}
+		return name, species.Calendar()
+	case r.region != nil:
+		r.assume(path+".leaves", calendarText(r.region.leaves), practice+", the region's")
+		return name, r.region.leaves
+	}
+	r.assume(path+".leaves", "evergreen", "left out")
+	return name, leaf.Evergreen{}
+}
+
+func calendarText(c leaf.Calendar) string {
+	if d, ok := c.(leaf.Deciduous); ok {
+		return fmt.Sprintf("out %s, full %s, colour %s, bare %s", d.Out, d.Full, d.Colour, d.Bare)
+	}
+	return "evergreen"
+}
+
+// find looks a species up.
+func (r *reader) find(v val) *traits.Species {
+	if !v.scalar() {
+		return nil
+	}
+	s, err := traits.Find(v.node.Value)
+	if err != nil {
+		r.fault(v, "", err.Error())
+		return nil
+	}
+	return s
+}
+
+// calendar reads a leaves value.
+func (r *reader) calendar(v val, species *traits.Species) leaf.Calendar {
+	if v.scalar() {
+		if v.node.Value != "evergreen" {
+			r.fault(v, "", "evergreen, or a block {out, full, colour, bare}, or {earlier: 8 d}")
+		}
+		return leaf.Evergreen{}
+	}
+	f := r.fields(v)
+	if f["earlier"].present() {
+		return r.earlier(v, f, species)
+	}
+	var d [4]leaf.Date
+	sound := true
+	for i, k := range []string{"out", "full", "colour", "bare"} {
+		x, ok := r.date(r.need(v, f, k))
+		sound = sound && ok
+		d[i] = leaf.Date(x)
+	}
+	if !sound {
+		return leaf.Evergreen{}
+	}
+	c, err := leaf.NewDeciduous(d[0], d[1], d[2], d[3])
+	if err != nil {
+		r.fault(v, " ", err.Error())
+	}
+	return c
+}
+
+// earlier shifts the library's leaf-out and full leaf.
+func (r *reader) earlier(v val, f map[string]val, species *traits.Species) leaf.Calendar {
+	hours, ok := r.quantity(f["earlier"])
+	if len(f) > 1 {
+		r.fault(v, " ", "earlier by itself, or the four dates")
+	}
+	if species == nil || !species.Deciduous() {
+		r.fault(f["earlier"], "", "earlier shifts the dates of a deciduous library species; give the four dates instead")
+		return leaf.Evergreen{}
+	}
+	d, isDeciduous := species.Calendar().(leaf.Deciduous)
+	if !ok || !isDeciduous {
+		return species.Calendar()
+	}
+	c, err := d.ShiftSpring(-int(math.Round(hours / 24)))
+	if err != nil {
+		r.fault(f["earlier"], "", err.Error())
+	}
+	return c
+}
+
+func (r *reader) understory(v, leaves val) (out []scenarios.Understory) {
+	seen := map[string]int{}
+	for _, item := range r.items(v) {
+		f := r.fields(item)
+		var u scenarios.Understory
+		u.Name, _ = r.text(r.need(item, f, "name"))
+		r.unique(f["name"], u.Name, seen)
+		r.need(item, f, "lai")
+		u.Layer = r.layerRest(item.path, f, leaves)
+		top, okTop := r.quantity(r.need(item, f, "height"))
+		base, ok := r.quantity(f["base"])
+		u.Bottom = r.or(base, ok, f["base"], item.path+".base", 0, "0 m", "left out: leaves down to the ground")
+		u.Top = top
+		if okTop && u.Top <= u.Bottom {
+			r.fault(f["height"], "", fmt.Sprintf("above base, %.4g m", u.Bottom))
+		}
+		out = append(out, u)
+	}
+	return out
+}
