@@ -5,6 +5,7 @@ package report
 import (
 	"fmt"
 	"io"
+	"strings"
 
 	"shadeledger/scenarios"
 )
@@ -52,6 +53,7 @@ func Name(p *scenarios.Plan) string {
 		title = p.File
 	}
 	if p.Example {
+		title = strings.TrimSuffix(title, " (invented data)")
 		return title + " (built-in example, invented data)"
 	}
 	return title

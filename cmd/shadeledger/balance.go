@@ -1,0 +1,82 @@
+package main
+
+import (
+	"github.com/spf13/cobra"
+
+	"shadeledger/scenarios"
+	"shadeledger/scenarios/report"
+)
+
+type balanceOptions struct {
+	*settings
+	io   streams
+	plan string
+	by   scenarios.By
+	view report.View
+}
+
+func newBalance(io streams) *cobra.Command {
+	var by string
+	var stations, lines, ranges bool
+	cmd := &cobra.Command{
+		Use:   "balance [PLAN]",
+		Short: "Each seedling's yearly carbon ledger at each station under each treatment",
+		Long: `The main job: each seedling's yearly ledger at each station under each treatment, its income to cost ratio,
+the light at which it breaks even, and its class: below, marginal or comfortable.
+
+below        the year's costs are more than its income
+marginal     it earns its costs, but the light is under the working threshold
+comfortable  leaf-on light at or above the working threshold (break-even times threshold_factor)
+
+The first screen holds the decision and the best class inside each opening. --stations prints every station,
+--ledger every line of the ledger, --by month or day parts the year.`,
+		Example: "  shadeledger balance\n  shadeledger balance my-stand --stations\n  shadeledger balance my-stand --by month --format csv --output ledger.csv",
+		Args:    atMost(1),
+		RunE: func(cmd *cobra.Command, args []string) error {
+			s, err := readSettings(cmd)
+			if err != nil {
+				return err
+			}
+			o := balanceOptions{settings: s, io: io, plan: first(args)}
+			if o.by, err = parseBy(by, balanceBy); err != nil {
+				return err
+			}
+			switch {
+			case lines:
+				o.view = report.Ledger
+			case stations || o.by != scenarios.ByYear:
+				o.view = report.Stations
+			}
+			if ranges {
+				s.progress(io, "--range: no range yet; single values follow")
+			}
+			return runBalance(o)
+		},
+	}
+	addPlanFlags(cmd)
+	f := cmd.Flags()
+	f.StringVar(&by, "by", "year", "year, month or day")
+	f.BoolVar(&stations, "stations", false, "print every station")
+	f.BoolVar(&lines, "ledger", false, "print every line of the ledger")
+	f.BoolVar(&ranges, "range", false, "low and high of each figure: no range yet")
+	complete(cmd, "by", balanceBy...)
+	return cmd
+}
+
+func runBalance(o balanceOptions) error {
+	if err := o.checkOutput(); err != nil {
+		return err
+	}
+	p, err := loadPlan(o.plan, o.set)
+	if err != nil {
+		return err
+	}
+	r, err := scenarios.Run(p, scenarios.Options{Workers: o.workers, Depth: scenarios.BreakEvens, By: o.by})
+	if err != nil {
+		return err
+	}
+	if err := o.deliver(o.io, p, func(out report.Output) error { return report.Balance(out, r, o.view) }); err != nil {
+		return err
+	}
+	return o.verdict(r)
+}

@@ -1,0 +1,54 @@
+package main
+
+import (
+	"errors"
+	"os"
+	"strings"
+
+	"shadeledger/scenarios"
+	"shadeledger/scenarios/plan"
+)
+
+// planFile is what a folder's plan is called.
+const planFile = "plan.yaml"
+
+// faultsError is a plan with faults.
+type faultsError struct{ faults []plan.Fault }
+
+// Error lists the faults, one a line, each with its place and what would be right.
+func (e faultsError) Error() string {
+	var b strings.Builder
+	if len(e.faults) == 1 {
+		b.WriteString("the plan has a fault; nothing was run")
+	} else {
+		b.WriteString("the plan has faults; nothing was run")
+	}
+	for _, f := range e.faults {
+		b.WriteString("\n" + f.Error())
+	}
+	return b.String()
+}
+
+// loadPlan reads the named plan; "" is plan.yaml in the current folder if there is one, else the built-in example.
+func loadPlan(name string, set []string) (*scenarios.Plan, error) {
+	var p *scenarios.Plan
+	var faults []plan.Fault
+	opts := plan.Options{Set: set}
+	if name == "" {
+		if _, err := os.Lstat(planFile); err == nil {
+			name = planFile
+		}
+	}
+	if name == "" {
+		p, faults = plan.ReadExample(plan.BuiltIn, opts)
+	} else {
+		p, faults = plan.Read(name, opts)
+	}
+	if len(faults) > 0 {
+		return nil, usageError{faultsError{faults}}
+	}
+	if p == nil {
+		return nil, errors.New("the plan was not read")
+	}
+	return p, nil
+}
