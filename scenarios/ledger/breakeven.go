@@ -145,7 +145,7 @@ func (r *Prepared) binned(w *scratch, set leaf.Set, k float64) float64 {
 		m.beam = math.Min(1, k*q.beam)
 		m.down = math.Min(k*q.down, q.level*(1-m.beam))
 		s := step{normal: q.normal, mu: q.mu, factor: 1, rule: int32(q.rule + 0.5)}
-		rate := r.rate(&s, &m, c)
+		rate := r.rate(&s, &m, &c)
 		sum += q.weight * (rate.shade + rate.fleck)
 	}
 	return sum
@@ -163,13 +163,13 @@ func (r *Prepared) rough(w *scratch, set leaf.Set, k float64) float64 {
 		at := w.bins.depth[x*3*n+3*mid:]
 		beam := math.Min(1, k*q.beam)
 		Id := math.Min(k*at[0], at[1]) + math.Min(k*q.down, q.level*(1-beam))*r.crown.uniform[mid]
-		P := c.gross(Id, 1)
+		P := c.gross(Id, c.ag)
 		if beam > 0 && q.normal > 0 {
 			s := step{normal: q.normal, mu: q.mu, factor: 1, rule: int32(q.rule + 0.5)}
 			weight := r.rule(&s, &node)
 			mean := 0.0
 			for i, v := range node {
-				mean += weight[i] * c.gross(Id+v, 1)
+				mean += weight[i] * c.gross(Id+v, c.ag)
 			}
 			P += beam * at[2] * (mean - P)
 		}

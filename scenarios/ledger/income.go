@@ -7,17 +7,30 @@ import (
 	"shadeledger/scenarios/light"
 )
 
-// curve is the light response of one trait set with 4 (1 - theta) kept.
-type curve struct{ ag, phi, bend float64 }
+// curve is the light response of one trait set, with 4 (1 - theta) and 1/(2 theta) kept.
+type curve struct{ ag, phi, bend, half float64 }
 
-func newCurve(s leaf.Set) curve { return curve{s.Ag, s.Phi, 4 * (1 - s.Theta)} }
+// sharp is the curvature above which the hyperbola may be taken from its difference form: the rounding error then stays
+// below 1e-13 of ag, and it needs no division.
+const sharp = 0.05
 
-// gross is the non-rectangular hyperbola at incident PPFD I with the rate scaled by f; see leaf.Gross.
-func (c curve) gross(I, f float64) float64 {
-	ag := c.ag * f
+func newCurve(s leaf.Set) curve {
+	c := curve{ag: s.Ag, phi: s.Phi, bend: 4 * (1 - s.Theta)}
+	if s.Theta >= sharp {
+		c.half = 1 / (2 * s.Theta)
+	}
+	return c
+}
+
+// gross is the non-rectangular hyperbola at incident PPFD I of a leaf whose rate ag is given; see leaf.Gross.
+func (c *curve) gross(I, ag float64) float64 {
 	x := c.phi * I
-	X, d := x*ag, x-ag
-	return 2 * X / (x + ag + math.Sqrt(d*d+c.bend*X) + math.SmallestNonzeroFloat64)
+	X, d, S := x*ag, x-ag, x+ag
+	root := math.Sqrt(d*d + c.bend*X)
+	if c.half > 0 {
+		return c.half * (S - root)
+	}
+	return 2 * X / (S + root)
 }
 
 // uniformMu is a rule for the mean over mu uniform on 0..1: Gauss-Legendre of five nodes in sqrt(mu), dense where
@@ -78,21 +91,22 @@ type moment struct {
 }
 
 // rate is the crown's mean gross income in one step.
-func (r *Prepared) rate(s *step, m *moment, c curve) (out rates) {
+func (r *Prepared) rate(s *step, m *moment, c *curve) (out rates) {
 	var node [muNodes]float64
+	ag := c.ag * s.factor
+	if m.beam <= 0 || s.normal <= 0 {
+		for j, wj := range r.crown.weight {
+			out.shade += wj * c.gross(m.sky[j]+m.down*r.crown.uniform[j], ag)
+		}
+		return out
+	}
 	weight := r.rule(s, &node)
-	fleck := m.beam > 0 && s.normal > 0
 	for j, wj := range r.crown.weight {
 		Id := m.sky[j] + m.down*r.crown.uniform[j]
-		P := c.gross(Id, s.factor)
+		P := c.gross(Id, ag)
+		mean := weight[0]*c.gross(Id+node[0], ag) + weight[1]*c.gross(Id+node[1], ag) + weight[2]*c.gross(Id+node[2], ag) +
+			weight[3]*c.gross(Id+node[3], ag) + weight[4]*c.gross(Id+node[4], ag)
 		out.shade += wj * P
-		if !fleck {
-			continue
-		}
-		mean := 0.0
-		for i, x := range node {
-			mean += weight[i] * c.gross(Id+x, s.factor)
-		}
 		out.fleck += wj * m.beam * m.sunlit[j] * (mean - P)
 	}
 	return out
@@ -121,6 +135,6 @@ func (r *Prepared) each(g *light.Regime, w *scratch, set leaf.Set, k float64, do
 			m.down = math.Min(m.down, lit.Beam[i]*(1-m.beam))
 		}
 		m.sunlit = r.sun[x*n : (x+1)*n]
-		do(s, r.rate(s, &m, c))
+		do(s, r.rate(s, &m, &c))
 	}
 }

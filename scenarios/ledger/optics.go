@@ -12,6 +12,7 @@ import (
 // each ring of the sky that a unit of leaf area gets, and the sunlit share's extinction.
 type crown struct {
 	chi    float64
+	lai    float64   // L_c
 	depth  []float64 // l, m2 m-2
 	weight []float64 // sum 1
 	// ring[j*rings+r]: mean of G_s e over ring r, e = exp(-sqrt(alpha_s) G_s l / cos theta)
@@ -25,6 +26,8 @@ type crown struct {
 func depthNodes(crownLAI float64) int {
 	switch {
 	case crownLAI <= 0.6:
+		return 2
+	case crownLAI <= 2:
 		return 3
 	case crownLAI <= 4:
 		return 4
@@ -39,20 +42,39 @@ func newCrown(p *Plant, zenith []float64) *crown {
 	for j, t := range c.depth {
 		c.depth[j], c.weight[j] = t*t*p.CrownLAI, 2*t*c.weight[j]
 	}
+	c.lai = p.CrownLAI
 	root := math.Sqrt(p.Absorptance)
 	c.ring = make([]float64, n*c.rings)
 	c.uniform = make([]float64, n)
-	for j, l := range c.depth {
-		for r := range c.rings {
-			mean, solid := ringMean(zenith[r], zenith[r+1], func(sin, cos float64) float64 {
+	for r := range c.rings {
+		// the mean over the crown's depth is known in closed form; the nodes are scaled to meet it
+		exact, solid := ringMean(zenith[r], zenith[r+1], func(sin, cos float64) float64 {
+			G := canopy.LeafProjection(c.chi, cos, sin)
+			return G * meanDecay(root*G*c.lai/cos)
+		})
+		sum := 0.0
+		for j, l := range c.depth {
+			mean, _ := ringMean(zenith[r], zenith[r+1], func(sin, cos float64) float64 {
 				G := canopy.LeafProjection(c.chi, cos, sin)
 				return G * math.Exp(-root*G*l/cos)
 			})
 			c.ring[j*c.rings+r] = mean
-			c.uniform[j] += 2 * mean * solid
+			sum += c.weight[j] * mean
+		}
+		for j := range c.depth {
+			c.ring[j*c.rings+r] *= exact / sum
+			c.uniform[j] += 2 * c.ring[j*c.rings+r] * solid
 		}
 	}
 	return c
+}
+
+// meanDecay is the mean of exp(-x t) over t in 0..1.
+func meanDecay(x float64) float64 {
+	if x < 1e-8 {
+		return 1
+	}
+	return -math.Expm1(-x) / x
 }
 
 // ringMean is the mean of f over a ring weighted by solid angle, and the ring's integral of sin theta.
@@ -82,7 +104,12 @@ func (c *crown) diffuse(shape []float64, out []float64) {
 func (c *crown) sunlit(β float64, out []float64) {
 	sin, cos := math.Sincos(β)
 	K := canopy.LeafProjection(c.chi, sin, cos) / math.Max(sin, 1e-9)
+	sum := 0.0
 	for j, l := range c.depth {
 		out[j] = math.Exp(-K * l)
+		sum += c.weight[j] * out[j]
+	}
+	for j := range out {
+		out[j] *= meanDecay(K*c.lai) / sum
 	}
 }
