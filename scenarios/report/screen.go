@@ -179,11 +179,15 @@ func (b *board) fit(blocks [][]string, most, hidden int) []string {
 
 func (b *board) header(seedlings int) row {
 	h := row{{"treatment"}, {"cut"}, {"light"}}
+	widest := 14
+	if seedlings > 4 {
+		widest = len("comfortable") // five columns of it fill the screen
+	}
 	for _, s := range b.results.Plan.Seedlings[:seedlings] {
 		name := wrap(s.Name, 11, 11)
-		f := [2]string{clip(name[0], 14)}
+		f := [2]string{clip(name[0], widest)}
 		if len(name) > 1 {
-			f[1] = clip(strings.Join(name[1:], " "), 14)
+			f[1] = clip(strings.Join(name[1:], " "), widest)
 		}
 		h = append(h, f)
 	}

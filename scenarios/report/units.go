@@ -42,7 +42,7 @@ func area(m2 float64, u scenarios.Units) string {
 	if u == scenarios.US {
 		return sig(m2/m2PerAcre, 2) + " ac"
 	}
-	if m2 < 1000 {
+	if m2 < m2PerHectare {
 		return sig(m2, 2) + " m2"
 	}
 	return sig(m2/m2PerHectare, 2) + " ha"
