@@ -3,6 +3,7 @@ package ledger
 import (
 	"math"
 
+	"shadeledger/leaf"
 	"shadeledger/scenarios/light"
 )
 
@@ -42,15 +43,25 @@ type Keeper struct {
 	capSeason      light.Caps
 	capLeafOn      light.Caps
 	capped         bool
+	kept           kept      // the last ledger of the regime in hand
 	shaped         *Prepared // plant whose crown the scratch space holds for the regime in hand
 	scratch
+}
+
+// kept is what a ledger found for a plant: the mean year's gross income of 1 m2 of leaf, g C, with its trait set.
+type kept struct {
+	plant  *Prepared
+	set    leaf.Set
+	income float64
 }
 
 // NewKeeper makes a worker's scratch space; season and leafOn mark series days.
 func NewKeeper(season, leafOn []bool) *Keeper { return &Keeper{season: season, leafOn: leafOn} }
 
 // Take sets the regime that the following calls are about.
-func (k *Keeper) Take(g *light.Regime) { k.regime, k.capped, k.shaped = g, false, nil }
+func (k *Keeper) Take(g *light.Regime) {
+	k.regime, k.capped, k.shaped, k.kept = g, false, nil, kept{}
+}
 
 // shape readies the scratch space for a plant at the regime in hand.
 func (k *Keeper) shape(r *Prepared) {
@@ -91,6 +102,7 @@ func (k *Keeper) Keep(r *Prepared, out *Account) {
 	for d := range out.Days {
 		out.Total.Add(out.Days[d], r.above.Series.Days[d].Weight/r.years)
 	}
+	k.kept = kept{r, set, out.Total[Income] / A}
 }
 
 // LeafMassMismatch tells by what share LMA at the plant's growth light differs from the leaf mass over leaf area of a

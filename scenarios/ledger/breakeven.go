@@ -11,6 +11,9 @@ import (
 const (
 	bracketSteps = 40
 	tolerance    = 0.005 // points of full light
+	stride       = 3     // steps that the rough net takes at a time
+	fitted       = 0.005 // the bins' miss below which, scaled out, they need no exact pass for dimmer light
+	far          = 50    // but not for light this many times dimmer
 	sure         = 0.1   // points: after a move this small, the bins' slope leaves a few thousandths
 	faintest     = 0.02  // percent of full light at the first step
 	mostScale    = 1 << 20
@@ -139,11 +142,11 @@ func (r *Prepared) binned(w *scratch, set leaf.Set, k float64) float64 {
 		q := &w.bins.list[x]
 		at := w.bins.depth[x*3*n : (x+1)*3*n]
 		for j := range m.sky {
-			m.sky[j] = math.Min(k*at[3*j], at[3*j+1])
+			m.sky[j] = least(k*at[3*j], at[3*j+1])
 			m.sunlit[j] = at[3*j+2]
 		}
-		m.beam = math.Min(1, k*q.beam)
-		m.down = math.Min(k*q.down, q.level*(1-m.beam))
+		m.beam = least(1, k*q.beam)
+		m.down = least(k*q.down, q.level*(1-m.beam))
 		s := step{normal: q.normal, mu: q.mu, factor: 1, rule: int32(q.rule + 0.5)}
 		rate := r.rate(&s, &m, &c)
 		sum += q.weight * (rate.shade + rate.fleck)
@@ -161,8 +164,8 @@ func (r *Prepared) rough(w *scratch, set leaf.Set, k float64) float64 {
 	for x := range w.bins.list {
 		q := &w.bins.list[x]
 		at := w.bins.depth[x*3*n+3*mid:]
-		beam := math.Min(1, k*q.beam)
-		Id := math.Min(k*at[0], at[1]) + math.Min(k*q.down, q.level*(1-beam))*r.crown.uniform[mid]
+		beam := least(1, k*q.beam)
+		Id := least(k*at[0], at[1]) + least(k*q.down, q.level*(1-beam))*r.crown.uniform[mid]
 		P := c.gross(Id, c.ag)
 		if beam > 0 && q.normal > 0 {
 			s := step{normal: q.normal, mu: q.mu, factor: 1, rule: int32(q.rule + 0.5)}
@@ -202,8 +205,13 @@ func (k *Keeper) BreakEven(r *Prepared) BreakEven {
 		costs := r.yearCosts(set)
 		return r.area(set)*income(set, scale) - costs.Costs()
 	}
+	// what the bins miss at the regime in hand, where Keep has summed every step, they miss near it
+	fit := 1.0
+	if kept := k.kept; kept.plant == r && kept.income > 0 {
+		fit = kept.income / r.binned(&k.scratch, kept.set, 1)
+	}
 	quick := func(scale float64) float64 {
-		return net(scale, func(set leaf.Set, s float64) float64 { return r.binned(&k.scratch, set, s) })
+		return net(scale, func(set leaf.Set, s float64) float64 { return fit * r.binned(&k.scratch, set, s) })
 	}
 	scale, found := k.search(func(scale float64) float64 {
 		return net(scale, func(set leaf.Set, s float64) float64 { return r.rough(&k.scratch, set, s) })
@@ -211,7 +219,7 @@ func (k *Keeper) BreakEven(r *Prepared) BreakEven {
 	if !found {
 		return BreakEven{}
 	}
-	if scale > 0 {
+	if scale > 0 && !(fit != 1 && math.Abs(fit-1) < fitted && scale > 1/far && scale < 1) {
 		scale = k.polish(scale, quick, func(scale float64) float64 {
 			return net(scale, func(set leaf.Set, s float64) float64 { return r.exact(k.regime, &k.scratch, set, s) })
 		})
@@ -265,7 +273,7 @@ func (k *Keeper) search(rough, net func(float64) float64) (scale float64, found 
 	}
 	i := 0
 	for i < bracketSteps && rough(at(i)) < 0 {
-		i++
+		i = min(i+stride, bracketSteps)
 	}
 	if net(at(i)) >= 0 {
 		for i > 0 && net(at(i-1)) >= 0 {

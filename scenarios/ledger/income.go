@@ -112,6 +112,14 @@ func (r *Prepared) rate(s *step, m *moment, c *curve) (out rates) {
 	return out
 }
 
+// least is the smaller of two numbers that are not NaN.
+func least(a, b float64) float64 {
+	if a < b {
+		return a
+	}
+	return b
+}
+
 // each walks the steps of a regime scaled by k and hands over each step's rates.
 func (r *Prepared) each(g *light.Regime, w *scratch, set leaf.Set, k float64, do func(s *step, rate rates)) {
 	n := len(r.crown.depth)
@@ -127,12 +135,12 @@ func (r *Prepared) each(g *light.Regime, w *scratch, set leaf.Set, k float64, do
 		D := lit.Diffuse[i]
 		unit, open := w.diffuse[shape*n:(shape+1)*n], r.open[pattern*n:(pattern+1)*n]
 		for j := range m.sky {
-			m.sky[j] = D * math.Min(k*unit[j], open[j])
+			m.sky[j] = D * least(k*unit[j], open[j])
 		}
 		m.beam, m.down = k*g.BeamChance[i], k*g.Scattered[i]
-		if k != 1 {
-			m.beam = math.Min(1, m.beam)
-			m.down = math.Min(m.down, lit.Beam[i]*(1-m.beam))
+		if k > 1 {
+			m.beam = least(1, m.beam)
+			m.down = least(m.down, lit.Beam[i]*(1-m.beam))
 		}
 		m.sunlit = r.sun[x*n : (x+1)*n]
 		do(s, r.rate(s, &m, &c))
