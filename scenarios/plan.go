@@ -39,8 +39,23 @@ type Plan struct {
 	Record     Record
 	Cautions   []Caution // all sixteen, in order, with their state
 
+	Facts  []Fact  // carried for the record; they change no result
+	Doubts []Doubt // doubt as given, for ranges
+
 	Assumed  []Assumed
 	Warnings []Warning
+}
+
+// Fact is a value of the plan that no result depends on, as written: soil, site index, source of the weather.
+type Fact struct{ Key, Value string }
+
+// Doubt is how well a value of the plan is known, in the unit of the plan's types: a standard error where it is
+// above 0, else a range.
+type Doubt struct {
+	Key           string // path in the plan
+	Best          float64
+	StandardError float64
+	Low, High     float64
 }
 
 // Units of tables.
@@ -122,6 +137,7 @@ type Cleared struct {
 	Stems  canopy.Outline // legal area
 	Crowns canopy.Outline // bounds foliage: light, stations, zones, shares
 	Inside []Layer        // bare where empty
+	File   string         // of a polygon, as the plan names it
 }
 
 func (NoOpening) opening() {}

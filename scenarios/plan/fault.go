@@ -32,7 +32,7 @@ func (f Fault) Error() string {
 	if f.Key != "" {
 		b.WriteString(f.Key + ": ")
 	}
-	if f.Value != "" {
+	if strings.TrimSpace(f.Value) != "" {
 		b.WriteString(f.Value + "; ")
 	}
 	b.WriteString(f.Fix)

@@ -203,6 +203,17 @@ var keyIndex = func() map[string]int {
 	return m
 }()
 
+// usable are the children that this version reads.
+func usable(path string) []string {
+	var out []string
+	for _, name := range children(path) {
+		if k, _ := Find(join(path, name)); k.Kind != Later {
+			out = append(out, name)
+		}
+	}
+	return out
+}
+
 // children lists the keys directly under a path.
 func children(path string) []string { return keyChildren[path] }
 

@@ -3,7 +3,6 @@ package plan
 import (
 	"fmt"
 	"math"
-	"strconv"
 	"strings"
 
 	"go.yaml.in/yaml/v4"
@@ -32,6 +31,8 @@ type reader struct {
 	assumed     []scenarios.Assumed
 	warnings    []scenarios.Warning
 	height      float64 // H, m; 0 until known
+	facts       []scenarios.Fact
+	doubts      []scenarios.Doubt
 	region      *region
 	declination float64
 	declared    bool
@@ -56,6 +57,24 @@ func (r *reader) fault(v val, value, fix string) {
 	r.faults = append(r.faults, f)
 }
 
+// carry keeps values that no result depends on, as they are written.
+func (r *reader) carry(list ...val) {
+	for _, v := range list {
+		if v.node == nil {
+			continue
+		}
+		text := v.node.Value
+		if v.node.Kind == yaml.SequenceNode {
+			var parts []string
+			for _, n := range v.node.Content {
+				parts = append(parts, n.Value)
+			}
+			text = "[" + strings.Join(parts, ", ") + "]"
+		}
+		r.facts = append(r.facts, scenarios.Fact{Key: v.path, Value: text})
+	}
+}
+
 // assume records a value that the plan left out.
 func (r *reader) assume(path, value, source string) {
 	r.assumed = append(r.assumed, scenarios.Assumed{Key: path, Value: value, Source: source})
@@ -78,7 +97,7 @@ func (r *reader) fields(v val) map[string]val {
 		if v.node.Kind == yaml.ScalarNode && v.node.Tag == "!!null" {
 			return out
 		}
-		r.fault(v, describe(v.node), "a block of keys: "+strings.Join(children(v.key), ", "))
+		r.fault(v, describe(v.node), "a block of keys: "+strings.Join(usable(v.key), ", "))
 		return out
 	}
 	for i := 0; i+1 < len(v.node.Content); i += 2 {
@@ -106,10 +125,10 @@ func (r *reader) fields(v val) map[string]val {
 
 func (r *reader) unknown(where, block val) {
 	name := where.node.Value
-	fix := "not a key here; known are " + strings.Join(children(block.key), ", ")
-	if _, err := strconv.Atoi(name); err == nil {
+	fix := "not a key here; known are " + strings.Join(usable(block.key), ", ")
+	if name != "" && name[0] >= '0' && name[0] <= '9' {
 		fix = "not a key; a decimal comma? numbers use a point"
-	} else if near := nearest(name, children(block.key)); len(near) > 0 {
+	} else if near := nearest(name, usable(block.key)); len(near) > 0 {
 		fix = "not a key here; did you mean " + strings.Join(near, " or ") + "?"
 	}
 	r.fault(where, name, fix)
@@ -171,14 +190,24 @@ func (r *reader) doubted(v val, parse func(string) (float64, error)) (float64, b
 	if !ok {
 		return 0, false
 	}
-	x, err := parse(s)
+	spec, known := Find(v.key)
+	main, spread, doubtful := splitDoubt(s)
+	x, err := parse(main)
 	if err != nil {
 		r.fault(v, s, err.Error())
 		return 0, false
 	}
-	if spec, ok := Find(v.key); ok && (spec.Low != 0 || spec.Top != 0) && !within(x, spec.Low, spec.Top) {
+	if known && (spec.Low != 0 || spec.Top != 0) && !within(x, spec.Low, spec.Top) {
 		r.outOfRange(v, s, x, spec)
 		return 0, false
+	}
+	if doubtful {
+		se, err := parseSpread(main, spread, spec.dim, parse)
+		if err != nil {
+			r.fault(v, s, err.Error())
+			return 0, false
+		}
+		r.doubts = append(r.doubts, scenarios.Doubt{Key: v.path, Best: x, StandardError: se, Low: x - se, High: x + se})
 	}
 	return x, true
 }
@@ -202,6 +231,10 @@ func (r *reader) lowBestHigh(v val, parse func(string) (float64, error)) (float6
 			r.fault(c, describe(n), "a single value")
 			return 0, false
 		}
+		if _, _, twice := splitDoubt(n.Value); twice {
+			r.fault(c, "", "+- or {low, best, high}, not both")
+			return 0, false
+		}
 		x, ok := r.doubted(c, parse)
 		if !ok {
 			return 0, false
@@ -213,11 +246,12 @@ func (r *reader) lowBestHigh(v val, parse func(string) (float64, error)) (float6
 		r.fault(v, "", "a value with doubt is {low, best, high} with low <= best <= high")
 		return 0, false
 	}
+	r.doubts = append(r.doubts, scenarios.Doubt{Key: v.path, Best: best, Low: got["low"], High: got["high"]})
 	return best, true
 }
 
 func (r *reader) outOfRange(v val, s string, x float64, spec Key) {
-	fix := spec.Range
+	fix := "allowed is " + spec.Range
 	if spec.dim == length && x > 60 && strings.HasSuffix(strings.TrimSpace(s), "m") && x*foot >= spec.Low && x*foot <= spec.Top {
 		fix += "; feet? then write ft"
 	}

@@ -1,6 +1,7 @@
 package plan
 
 import (
+	"bytes"
 	"errors"
 	"fmt"
 	"io"
@@ -131,6 +132,7 @@ func parse(file string, data []byte, opts Options, files opener) (*scenarios.Pla
 	}
 	p.File = file
 	p.Assumed, p.Warnings = r.assumed, r.warnings
+	p.Facts, p.Doubts = r.facts, r.doubts
 	return p, nil
 }
 
@@ -142,6 +144,11 @@ func (r *reader) document(data []byte) (*yaml.Node, bool) {
 		return doc.Content[0], true
 	}
 	f := Fault{File: r.file, Fix: "write a plan: a block of keys; shadeledger keys lists them"}
+	if len(bytes.TrimSpace(data)) == 0 {
+		f.Fix = "the file is empty; write a plan with: shadeledger start DIR"
+		r.faults = append(r.faults, f)
+		return nil, false
+	}
 	var one *yaml.LoadError
 	var many *yaml.LoadErrors
 	switch {
@@ -172,6 +179,7 @@ func (r *reader) plan(v val) *scenarios.Plan {
 	}
 	if s, ok := r.choice(f["region"]); ok {
 		r.region = regions[s]
+		r.carry(f["region"])
 	}
 	r.site(r.need(v, f, "site"), p)
 	r.sampling(f["sampling"], p)
@@ -221,6 +229,7 @@ func (r *reader) site(v val, p *scenarios.Plan) {
 	r.text(soil["drainage"])
 	r.quantity(soil["restricting_depth"])
 	r.quantity(soil["water_capacity"])
+	r.carry(soil["texture"], soil["drainage"], soil["restricting_depth"], soil["water_capacity"])
 }
 
 // horizon reads pairs of azimuth and elevation, degrees.

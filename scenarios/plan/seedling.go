@@ -170,20 +170,23 @@ func (r *plantReader) leaf(p *ledger.Plant) {
 	if x, ok := r.number(f["light_respiration"]); ok {
 		p.LightRespiration = x
 	}
-	p.Traits = r.acclimation(block, f, r.basis(f, own))
+	p.Traits = r.acclimation(block, f, r.basis(f, own), p.Temperature)
 }
 
 // basis is what rates and LMA per given leaf area are multiplied by to stand per half of the total surface. A needle is
 // taken as half a cylinder: total over projected 1 + pi/2, so half over projected 1.285 (geometry).
 func (r *plantReader) basis(f map[string]val, own bool) float64 {
+	block := r.block.path + ".leaf"
 	needles := r.species != nil && r.species.Group != traits.Broadleaf
 	s, ok := r.choice(f["area_basis"])
 	switch {
 	case !ok && own && needles && !f["area_basis"].present():
-		r.need(val{node: r.f["leaf"].node, at: r.f["leaf"].at, path: r.block.path + ".leaf", key: "seedlings[].leaf"}, f, "area_basis")
+		r.need(val{node: r.f["leaf"].node, at: r.f["leaf"].at, path: block, key: "seedlings[].leaf"}, f, "area_basis")
 	case s == "all":
+		r.assume(block+".area_basis", "rates and lma times 2", "half of the total surface, from all of it")
 		return 2
 	case s == "projected" && needles:
+		r.assume(block+".area_basis", "rates and lma divided by 1.285", "needle as half a cylinder: total over projected area 1 + pi/2 (geometry)")
 		return 1 / ((1 + math.Pi/2) / 2)
 	}
 	return 1
@@ -193,19 +196,9 @@ func (r *plantReader) basis(f map[string]val, own bool) float64 {
 const sunLight, shadeLight = 50, 5
 
 // acclimation builds the rule from the sets of the plan and the library.
-func (r *plantReader) acclimation(block val, f map[string]val, scale float64) leaf.Acclimation {
+func (r *plantReader) acclimation(block val, f map[string]val, scale float64, t leaf.Temperature) leaf.Acclimation {
 	mode, _ := r.choice(f["acclimation"])
-	var library leaf.Acclimation
-	var librarySun, libraryShade leaf.Set
-	if r.species != nil {
-		library = r.species.Acclimation()
-		switch a := library.(type) {
-		case leaf.TwoSets:
-			librarySun, libraryShade = a.Sun, a.Shade
-		case leaf.PowerLaw:
-			librarySun, libraryShade = a.Ref, a.Ref
-		}
-	}
+	library, librarySun, libraryShade := r.librarySets(t.Ref)
 	sun, sunAt, hasSun := r.set(f["sun"], librarySun, sunLight, scale)
 	shade, shadeAt, hasShade := r.set(f["shade"], libraryShade, shadeLight, scale)
 	switch {
@@ -246,6 +239,31 @@ func (r *plantReader) acclimation(block val, f map[string]val, scale float64) le
 	}
 	r.from = append(r.from, "leaf ("+library.Rule()+")")
 	return library
+}
+
+// librarySets are the library's rule and sets brought to a reference temperature by the species' own response, so that
+// they may stand beside sets of the plan.
+func (r *plantReader) librarySets(ref float64) (rule leaf.Acclimation, sun, shade leaf.Set) {
+	if r.species == nil {
+		return nil, sun, shade
+	}
+	t := r.species.Temperature()
+	at := func(s leaf.Set) leaf.Set {
+		if ref == t.Ref {
+			return s
+		}
+		return t.At(s, ref)
+	}
+	switch a := r.species.Acclimation().(type) {
+	case leaf.TwoSets:
+		a.Sun, a.Shade = at(a.Sun), at(a.Shade)
+		return a, a.Sun, a.Shade
+	case leaf.PowerLaw:
+		a.Ref = at(a.Ref)
+		return a, a.Ref, a.Ref
+	default:
+		return a, sun, shade
+	}
 }
 
 func (r *plantReader) two(block val, t leaf.TwoSets) leaf.Acclimation {

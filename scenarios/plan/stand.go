@@ -37,6 +37,9 @@ func regionNames() []string {
 
 const practice = "common practice"
 
+// tallest is the height, m, above which a slip of feet for metres is likelier than such a stand (common practice).
+const tallest = 60
+
 // stand reads the uncut stand and leaves it in the plan.
 func (r *reader) stand(v val, p *scenarios.Plan) map[string]val {
 	f := r.fields(v)
@@ -71,6 +74,11 @@ func (r *reader) stand(v val, p *scenarios.Plan) map[string]val {
 	r.number(index["base_age"])
 	r.text(index["system"])
 	r.quantity(f["smallest_dbh"])
+	r.carry(index["value"], index["base_age"], index["system"], f["smallest_dbh"])
+	if s.Height > tallest {
+		r.warnings = append(r.warnings, scenarios.Warning{Key: "stand.height",
+			Text: fmt.Sprintf("%.3g m is taller than most stands; were feet meant? %.3g ft is %.3g m", s.Height, s.Height, s.Height*foot)})
+	}
 	s.Layers = r.overstory(v, f, p)
 	s.Understory = r.understory(f["understory"], f["leaves"])
 	return f

@@ -127,6 +127,9 @@ func (r *reader) opening(item val, f map[string]val, p *scenarios.Plan, leaves v
 		r.assume(item.path+".measured", "stems", "sizes are taped from stem to stem")
 	}
 	c := scenarios.Cleared{Inside: r.inside(f["inside"], leaves)}
+	if o["polygon"].scalar() {
+		c.File = o["polygon"].node.Value
+	}
 	if taped == nil {
 		return c
 	}

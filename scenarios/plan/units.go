@@ -56,7 +56,7 @@ var likely = map[dimension]string{
 
 var (
 	numberPattern   = regexp.MustCompile(`^[+-]?(\d+(\.\d*)?|\.\d+)([eE][+-]?\d+)?$`)
-	quantityPattern = regexp.MustCompile(`^([+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d+)?)\s*([^\s\d+±-][^\s+±]*)?(?:\s*(?:\+-|±|\+/-)\s*(.+))?$`)
+	quantityPattern = regexp.MustCompile(`^([+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d+)?)\s*([^\s\d+±-][^\s+±]*)?$`)
 	commaPattern    = regexp.MustCompile(`^([+-]?\d+),(\d+)(.*)$`)
 )
 
@@ -76,7 +76,44 @@ func parseNumber(s string) (float64, error) {
 	return v, nil
 }
 
-// parseQuantity reads a number with its unit, and an optional standard error. H, the height of the uncut stand in m, is a
+// splitDoubt parts 78 ft +- 4 ft into the value and its standard error.
+func splitDoubt(s string) (value, spread string, doubtful bool) {
+	for _, sign := range []string{"+-", "+/-", "±"} {
+		if a, b, ok := strings.Cut(s, sign); ok {
+			return strings.TrimSpace(a), strings.TrimSpace(b), true
+		}
+	}
+	return s, "", false
+}
+
+// parseSpread reads a standard error in the unit of the program. Its zero is taken off, so that degrees Fahrenheit come
+// out as a difference; a slope in percent is not linear in its angle and is read as the step from the value.
+func parseSpread(value, spread string, d dimension, parse func(string) (float64, error)) (float64, error) {
+	x, err := parse(spread)
+	if err != nil {
+		return 0, fmt.Errorf("after +-: %w", err)
+	}
+	m := quantityPattern.FindStringSubmatch(spread)
+	if m == nil {
+		return 0, fmt.Errorf("after +-: write a number above 0")
+	}
+	zero, err := parse("0" + m[2])
+	if err != nil {
+		return 0, fmt.Errorf("after +-: %w", err)
+	}
+	x -= zero
+	if v := quantityPattern.FindStringSubmatch(value); d == slope && m[2] == "%" && v != nil && v[2] == "%" {
+		a, _ := strconv.ParseFloat(v[1], 64)
+		b, _ := strconv.ParseFloat(m[1], 64)
+		x = math.Atan((a+b)/100) - math.Atan(a/100)
+	}
+	if !(x > 0) {
+		return 0, fmt.Errorf("after +-: a standard error above 0")
+	}
+	return x, nil
+}
+
+// parseQuantity reads a number with its unit. H, the height of the uncut stand in m, is a
 // unit of length where it is known (> 0).
 func parseQuantity(s string, d dimension, H float64) (float64, error) {
 	s = strings.TrimSpace(s)
@@ -93,11 +130,6 @@ func parseQuantity(s string, d dimension, H float64) (float64, error) {
 	}
 	if m[2] == "" {
 		return 0, fmt.Errorf("a unit is missing: write %s %s", m[1], strings.ReplaceAll(likely[d], " or ", " or "+m[1]+" "))
-	}
-	if m[3] != "" {
-		if _, err := parseQuantity(m[3], d, H); err != nil {
-			return 0, fmt.Errorf("after +-: %w", err)
-		}
 	}
 	if m[2] == "H" && d == length {
 		if H <= 0 {
@@ -151,7 +183,7 @@ func parseBearing(s string, declination float64, declared bool) (float64, error)
 
 // parseCoordinate reads 44.35, 44.35 N, 71.90 W or 44 21 00 N into degrees, north and east positive.
 func parseCoordinate(s string, positive, negative string, limit float64) (float64, error) {
-	want := fmt.Errorf("write degrees from -%g to %g, such as 44.35 %s or 44 21 00 %s", limit, limit, positive, negative)
+	want := fmt.Errorf("degrees from -%g to %g, such as 44.35 %s or 44 21 00 %s", limit, limit, positive, negative)
 	fields := strings.Fields(s)
 	sign := 1.0
 	if n := len(fields); n > 1 {

@@ -3,6 +3,7 @@ package plan
 import (
 	"fmt"
 	"math"
+	"strings"
 	"time"
 
 	"shadeledger/radiation/weather"
@@ -22,6 +23,7 @@ func (r *reader) weather(v val, p *scenarios.Plan) {
 	p.Par.Fraction = r.or(x, ok, f["par_fraction"], "weather.par_fraction", 0.45, "0.45 of global energy", "common practice; measured years give 0.43 to 0.47")
 	r.quantity(f["co2"])
 	r.text(f["source"])
+	r.carry(f["co2"], f["source"])
 	stamps := map[string]weather.Stamp{"start": weather.StampStart, "middle": weather.StampMiddle, "end": weather.StampEnd}
 	stamp, given := r.choice(f["stamp"])
 	if !given && f["hourly"].present() && !f["stamp"].present() {
@@ -89,8 +91,10 @@ func (r *reader) open(v val) (name string, data []byte, ok bool) {
 
 // source checks weather against the site and keeps it.
 func (r *reader) source(v val, name string, s weather.Source, p *scenarios.Plan) {
-	if len(r.faults) > 0 {
-		return // a fault in the site or the rows would only breed more
+	for _, f := range r.faults {
+		if f.File == name || strings.HasPrefix(f.Key, "site.l") || strings.HasPrefix(f.Key, "site.utc") || strings.HasPrefix(f.Key, v.path) {
+			return // a fault in the place or the rows would only breed more
+		}
 	}
 	for _, problem := range s.Check(p.Site, p.Sampling.Step) {
 		r.problem(name, v, problem)
@@ -139,6 +143,7 @@ func (r *reader) normals(v val) *weather.Normals {
 		var rain [12]float64
 		r.choice(r.need(v, f, "rain_unit"))
 		r.twelve(f["rain"], &rain, same)
+		r.carry(f["rain_unit"], f["rain"])
 	}
 	return n
 }
