@@ -26,7 +26,7 @@ type Spot struct {
 }
 
 // mapDays is how many weighted days stand for a month in maps from normals.
-const mapDays = 2
+const mapDays = 4
 
 // RunGrid maps a treatment: Spots[seedling][row*Columns+column]. Normals are brought to a few weighted days a month;
 // break-even is not sought.
