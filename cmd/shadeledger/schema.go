@@ -1,10 +1,12 @@
 package main
 
 import (
-	"errors"
-
+	"shadeledger/scenarios/plan"
 	"shadeledger/scenarios/report"
 )
 
 // writeSchema writes the JSON Schema of a plan.
-func writeSchema(report.Output) error { return errors.New("no JSON Schema yet") }
+func writeSchema(o report.Output) error {
+	_, err := o.Out.Write(append(plan.Schema(), '\n'))
+	return err
+}
