@@ -28,6 +28,8 @@ func seedlingKeys() []Key {
 		{Path: p + ".respiration.woody", Kind: Number, Low: 0, Top: 50, Range: "0 to 50", Example: "3.5", Meaning: "of stem and root together"},
 		{Path: p + ".respiration.t_ref", Kind: Quantity, dim: temperature, Low: 0, Top: 45, Range: "0 to 45 C", Example: "20 C", Meaning: "temperature of these rates"},
 		{Path: p + ".respiration.q10", Kind: Number, Low: 1, Top: 4, Range: "1 to 4", Example: "2.0", Meaning: "Q10 of organs"},
+		{Path: p + ".respiration.stem_q10", Kind: Number, Low: 1, Top: 4, Range: "1 to 4", Default: "q10", Example: "1.7", Meaning: "Q10 of the stem, where it differs"},
+		{Path: p + ".respiration.root_q10", Kind: Number, Low: 1, Top: 4, Range: "1 to 4", Default: "q10", Example: "2.0", Meaning: "Q10 of the root, where it differs"},
 		{Path: p + ".ledger", Kind: Choice, Words: []string{"acclimated", "first season"}, Default: "acclimated", Example: "first season", Meaning: "leaves made in the light of the spot, or before the cut"},
 		{Path: p + ".replacement", Kind: Map, Meaning: "cost of replacing leaves and fine roots"},
 		{Path: p + ".replacement.leaf_lifespan", Kind: Number, Low: 0.05, Top: 25, Range: "0.05 to 25 years", Example: "0.5", Meaning: "leaf lifespan"},

@@ -98,7 +98,7 @@ func (r *plantReader) rates() organRates {
 	out := organRates{r.base.StemRate, r.base.RootRate, r.base.OrganTRef, r.base.StemQ10, r.base.RootQ10}
 	if r.species == nil {
 		out.tRef, out.stemQ10, out.rootQ10 = 20, 2, 2
-		if !f["q10"].present() {
+		if !f["q10"].present() && !(f["stem_q10"].present() && f["root_q10"].present()) {
 			r.assume(block.path+".q10", "2", practice)
 		}
 		if !f["t_ref"].present() {
@@ -123,6 +123,12 @@ func (r *plantReader) rates() organRates {
 	}
 	if x, ok := r.number(f["q10"]); ok {
 		out.stemQ10, out.rootQ10 = x, x
+	}
+	if x, ok := r.number(f["stem_q10"]); ok {
+		out.stemQ10 = x
+	}
+	if x, ok := r.number(f["root_q10"]); ok {
+		out.rootQ10 = x
 	}
 	return out
 }
