@@ -73,7 +73,7 @@ func (p Perez) Relative(cosZenith, cosToSun float64) float64 {
 }
 
 // perezNodes is the number of table steps from the sun to its opposite.
-const perezNodes = 64
+const perezNodes = 96
 
 // SkyTable tabulates Indicatrix by sin(gamma/2), fine where the sky is bright; linear between
 // nodes. Its error stays below 0.5 % of the radiance.

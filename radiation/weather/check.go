@@ -76,8 +76,8 @@ func (r *Records) Check(site radiation.Site, step time.Duration) []Problem {
 		c.add(r.Rows[1].Line, "time", every, fmt.Sprintf("an interval that is a whole multiple of the sub-step %v", step))
 	case (24*time.Hour)%every != 0:
 		c.add(r.Rows[1].Line, "time", every, "an interval that divides a day")
-	case r.Rows[0].Time.Add(r.shift(every)).Sub(r.Rows[0].Time.Truncate(24*time.Hour))%every != 0:
-		c.add(r.Rows[0].Line, "time", stampText(r.Rows[0].Time), "intervals that start on the clock; check weather.stamp")
+	case r.Rows[0].Time.Add(r.shift(every)).Sub(r.Rows[0].Time.Truncate(24*time.Hour))%step != 0:
+		c.add(r.Rows[0].Line, "time", stampText(r.Rows[0].Time), fmt.Sprintf("intervals that begin on a sub-step of %v; check weather.stamp", step))
 	case sound:
 		r.checkCover(&c, site)
 	}
@@ -130,7 +130,7 @@ func (r *Records) checkCover(c *collector, site radiation.Site) {
 			if end < len(sp.row) {
 				line = r.Rows[sp.row[end]].Line
 			}
-			at := time.Date(sp.from, 1, 1, 0, 0, 0, 0, time.UTC).Add(time.Duration(k) * sp.every)
+			at := time.Date(sp.from, 1, 1, 0, 0, 0, 0, time.UTC).Add(sp.phase + time.Duration(k)*sp.every)
 			c.add(line, "time", fmt.Sprintf("%d rows; %v missing from %s", len(r.Rows), gap, stampText(at)),
 				fmt.Sprintf("%s; or weather.max_gap of at least %g h to bridge it", whole, gap.Hours()))
 		}

@@ -198,9 +198,12 @@ func (n *Normals) Check(site radiation.Site, step time.Duration) []Problem {
 		if n.Min[m] > n.Mean[m] || n.Mean[m] > n.Max[m] {
 			c.add(0, "weather.normals.mean", fmt.Sprintf("%g in %s", n.Mean[m], name), "min <= mean <= max in every month")
 		}
-		for field, v := range map[string]float64{"min": n.Min[m], "max": n.Max[m]} {
-			if v < coldest || v > hottest {
-				c.add(0, "weather.normals."+field, fmt.Sprintf("%g in %s", v, name), "-90 to 60 deg C")
+		for _, x := range []struct {
+			field string
+			v     float64
+		}{{"min", n.Min[m]}, {"max", n.Max[m]}} {
+			if x.v < coldest || x.v > hottest {
+				c.add(0, "weather.normals."+x.field, fmt.Sprintf("%g in %s", x.v, name), "-90 to 60 deg C")
 			}
 		}
 		if v := n.Global[m]; v < 0 || v > 40 {

@@ -12,6 +12,7 @@ import (
 type spread struct {
 	from, to int           // years
 	every    time.Duration // interval
+	phase    time.Duration // how long after midnight the first interval of the year begins, below every
 	row      []int32       // by interval: index in Rows
 }
 
@@ -38,7 +39,8 @@ func (r *Records) interval() time.Duration {
 }
 
 // lay puts the rows on their intervals. A row that falls just before the first year, as the first of a
-// file stamped at interval ends from 00:00, serves for the missing last interval.
+// file stamped at interval ends or middles from 00:00, serves for the missing last interval; an interval that runs over the
+// end of the last year goes on at the start of the first.
 func (r *Records) lay() spread {
 	every := r.interval()
 	if every <= 0 {
@@ -52,7 +54,9 @@ func (r *Records) lay() spread {
 		s.to = s.from
 	}
 	start := time.Date(s.from, 1, 1, 0, 0, 0, 0, time.UTC)
-	n := int(time.Date(s.to+1, 1, 1, 0, 0, 0, 0, time.UTC).Sub(start) / every)
+	s.phase = ((first.Sub(start) % every) + every) % every
+	start = start.Add(s.phase)
+	n := int(time.Date(s.to+1, 1, 1, 0, 0, 0, 0, time.UTC).Add(s.phase).Sub(start) / every)
 	s.row = make([]int32, n)
 	for i := range s.row {
 		s.row[i] = -1
@@ -81,30 +85,44 @@ func (r *Records) Series(site radiation.Site, step time.Duration, par Par) *Seri
 	}
 	f.years(sp.from)
 	per := int(sp.every / step)
-	dropped, lit := 0.0, 0
-	values := r.fill(f, sp, per)
-	for k, v := range values {
-		for j := range per {
-			s.Temperature[k*per+j] = v.temperature
-		}
-		from := lit
+	dropped := 0.0
+	at := f.litAt()
+	lit := make([]int32, 0, per)
+	first := int(sp.phase / step)
+	for k, v := range r.fill(f, sp, per) {
+		lit = lit[:0]
 		top := 0.0
-		for lit < len(s.Lit.Step) && int(s.Lit.Step[lit]) < (k+1)*per {
-			top += f.top[lit]
-			lit++
+		for j := range per {
+			x := (first + k*per + j) % len(at)
+			s.Temperature[x] = v.temperature
+			if i := at[x]; i >= 0 {
+				lit = append(lit, i)
+				top += f.top[i]
+			}
 		}
-		top /= float64(per)
-		if lit == from {
+		if len(lit) == 0 {
 			dropped += math.Max(0, v.global) * sp.every.Seconds()
 			continue
 		}
-		f.interval(from, lit, top, v, par)
+		f.interval(lit, top/float64(per), v, par)
 	}
 	s.Warnings = append(s.Warnings, r.bridged(sp)...)
 	if MJ := dropped / 1e6 / float64(s.Years); MJ > 0.05 {
 		s.Warnings = append(s.Warnings, fmt.Sprintf("%.1f MJ m-2 a year of light in intervals without sun was dropped; mind the clock and the stamp", MJ))
 	}
 	return s
+}
+
+// litAt gives the lit place of every sub-step, -1 in the dark.
+func (f *frame) litAt() []int32 {
+	at := make([]int32, len(f.series.Temperature))
+	for i := range at {
+		at[i] = -1
+	}
+	for i, step := range f.series.Lit.Step {
+		at[step] = int32(i)
+	}
+	return at
 }
 
 // years writes the calendar years of dated days.
@@ -138,7 +156,7 @@ func (r *Records) fill(f *frame, sp spread, per int) []value {
 			continue
 		}
 		if top == nil {
-			top = f.intervalTop(len(out), per)
+			top = f.intervalTop(len(out), per, int(sp.phase/(sp.every/time.Duration(per))))
 		}
 		end := k
 		for end < len(out) && sp.row[end] < 0 {
@@ -183,17 +201,17 @@ func clearness(global, top float64) float64 {
 }
 
 // intervalTop is the mean extraterrestrial energy of each interval.
-func (f *frame) intervalTop(n, per int) []float64 {
+func (f *frame) intervalTop(n, per, first int) []float64 {
 	top := make([]float64, n)
 	for i, step := range f.series.Lit.Step {
-		top[int(step)/per] += f.top[i] / float64(per)
+		top[(int(step)-first+n*per)%(n*per)/per] += f.top[i] / float64(per)
 	}
 	return top
 }
 
-// interval shares one interval's light out over its lit sub-steps from..to; top is the interval's mean
+// interval shares one interval's light out over its lit sub-steps; top is the interval's mean
 // extraterrestrial energy, dark sub-steps counting 0.
-func (f *frame) interval(from, to int, top float64, v value, par Par) {
+func (f *frame) interval(lit []int32, top float64, v value, par Par) {
 	kt := v.global / top
 	q := radiation.DiffuseShare(math.Min(kt, 1))
 	if !math.IsNaN(v.diffuse) {
@@ -207,9 +225,9 @@ func (f *frame) interval(from, to int, top float64, v value, par Par) {
 	if !math.IsNaN(v.diffusePPFD) {
 		qp = share(v.diffusePPFD, Q)
 	}
-	for i := from; i < to; i++ {
+	for _, i := range lit {
 		part := f.top[i] / top
-		f.put(i, light{v.global * part, q, Q * part, qp * Q * part})
+		f.put(int(i), light{v.global * part, q, Q * part, qp * Q * part})
 	}
 }
 
