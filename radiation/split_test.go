@@ -147,7 +147,7 @@ func TestMeasuredHours(t *testing.T) {
 	n := 0
 	var par, global float64
 	for _, r := range rows(t, "hourly_measured_sample.csv") {
-		if r["kt"] == "" || r["ghi_W_m2"] == "" || r["diffuse_fraction"] == "" || r["mean_cos_zenith_sun_up"] == "" || number(t, r["mean_cos_zenith_sun_up"]) < 0.15 {
+		if r["kt"] == "" || r["diffuse_fraction"] == "" || r["mean_cos_zenith_sun_up"] == "" || number(t, r["mean_cos_zenith_sun_up"]) < 0.15 {
 			continue
 		}
 		d := DiffuseShare(math.Min(1, number(t, r["kt"]))) - number(t, r["diffuse_fraction"])
