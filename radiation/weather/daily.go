@@ -186,6 +186,9 @@ func balance(from, to int, target float64, at func(int) (a, limit float64)) floa
 		}
 		return s
 	}
+	if math.Abs(sum(1)-target) <= 1e-12*target {
+		return 1 // no limit is met
+	}
 	lo, hi := 0.0, 1.0
 	for sum(hi) < target*(1-1e-12) && hi < 1e6 {
 		hi *= 2

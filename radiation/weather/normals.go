@@ -156,11 +156,14 @@ func clearnessDistribution(mean float64) func(share float64) float64 {
 func (n *Normals) smooth(dates []date, want [12]float64) []float64 {
 	node := want
 	out := make([]float64, len(dates))
-	for range 30 {
+	var length [13]float64
+	for m := time.January; m <= time.December; m++ {
+		length[m] = float64(time.Date(sunYear, m+1, 0, 0, 0, 0, 0, time.UTC).Day())
+	}
+	for range 12 {
 		var sum, weight [12]float64
 		for d, date := range dates {
-			length := float64(time.Date(sunYear, date.month+1, 0, 0, 0, 0, 0, time.UTC).Day())
-			u := float64(date.month-1) + (float64(date.day)-0.5)/length - 0.5
+			u := float64(date.month-1) + (float64(date.day)-0.5)/length[date.month] - 0.5
 			i := int(math.Floor(u))
 			f := u - float64(i)
 			a, b := (i+12)%12, (i+13)%12
