@@ -117,7 +117,7 @@ func (t *table) row() bool {
 		t.fault("", string(bytes.Join(t.cells, []byte(","))), fmt.Sprintf("%d cells, as in the header; a decimal comma? numbers use a point", len(t.columns)))
 	}
 	if t.faults > mostRowFaults {
-		t.r.faults = append(t.r.faults, Fault{File: t.name, Fix: fmt.Sprintf("%d more faults in this file", t.faults-mostRowFaults)})
+		t.r.faults = append(t.r.faults, Fault{File: t.name, Line: t.line, Fix: fmt.Sprintf("%d more faults in this file", t.faults-mostRowFaults)})
 	}
 	return false
 }
@@ -140,7 +140,7 @@ func (t *table) number(column string) float64 {
 		return math.NaN()
 	}
 	v, err := strconv.ParseFloat(s, 64)
-	if err != nil || math.IsInf(v, 0) || math.IsNaN(v) {
+	if err != nil || math.IsInf(v, 0) || math.IsNaN(v) || strings.ContainsAny(s, "xX_") {
 		t.fault(column, strings.Clone(s), "a number with a point; leave the cell empty where nothing was measured")
 		return math.NaN()
 	}

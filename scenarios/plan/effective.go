@@ -100,12 +100,22 @@ func number(x float64) string  { return strconv.FormatFloat(x, 'g', -1, 64) }
 func metres(x float64) string  { return number(x) + " m" }
 func degrees(x float64) string { return exact(x, x/rad, func(v float64) float64 { return v * rad }) }
 
+// steepness writes a slope in degrees, or in percent where only that gives the same bits.
+func steepness(x float64) string {
+	atan := func(v float64) float64 { return math.Atan(v / 100) }
+	percent := exact(x, 100*math.Tan(x), atan)
+	if v, err := strconv.ParseFloat(percent, 64); err == nil && atan(v) == x && len(percent) < len(degrees(x)) {
+		return percent + " %"
+	}
+	return degrees(x) + " deg"
+}
+
 // exact is the shortest decimal near a guess that a conversion brings to x, to the last bit where there is one.
 func exact(x, guess float64, convert func(float64) float64) string {
 	for precision := 1; precision <= 17; precision++ {
 		s := strconv.FormatFloat(guess, 'g', precision, 64)
 		if v, err := strconv.ParseFloat(s, 64); err == nil && convert(v) == x {
-			return s
+			return number(v)
 		}
 	}
 	up, down := guess, guess
@@ -141,7 +151,11 @@ func (w *writer) site(p *scenarios.Plan) {
 	w.line(1, "utc_offset", w.given("site.utc_offset", p.Site.UTCOffset, number))
 	w.line(1, "elevation", w.given("site.elevation", p.Site.Elevation, metres))
 	deg := func(x float64) string { return degrees(x) + " deg" }
-	w.line(1, "slope", w.given("site.slope", p.Ground.Slope, deg))
+	slope := w.given("site.slope", p.Ground.Slope, steepness)
+	if d := w.doubts["site.slope"]; d.StandardError > 0 {
+		slope = steepness(d.Best) + " +- " + deg(d.StandardError) // a standard error in percent would count from the value
+	}
+	w.line(1, "slope", slope)
 	w.line(1, "aspect", w.given("site.aspect", p.Ground.Aspect, degrees))
 	w.line(1, "declination", w.given("site.declination", p.Declination, deg))
 	if len(p.Horizon.Azimuth) > 0 {

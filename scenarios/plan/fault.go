@@ -39,8 +39,8 @@ func (f Fault) Error() string {
 	return b.String()
 }
 
-// sortFaults puts faults in the order of the text.
-func sortFaults(list []Fault) {
+// sortFaults puts faults in the order of the text, each once.
+func sortFaults(list []Fault) []Fault {
 	sort.SliceStable(list, func(i, j int) bool {
 		a, b := list[i], list[j]
 		if a.File != b.File {
@@ -51,6 +51,15 @@ func sortFaults(list []Fault) {
 		}
 		return a.Column < b.Column
 	})
+	seen := map[Fault]bool{}
+	out := list[:0]
+	for _, f := range list {
+		if !seen[f] {
+			seen[f] = true
+			out = append(out, f)
+		}
+	}
+	return out
 }
 
 // nearest lists the candidates closest to a misspelt name, best first, at most three.

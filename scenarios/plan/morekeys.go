@@ -49,7 +49,7 @@ func seedlingKeys() []Key {
 			Key{Path: q + ".amax", Kind: Number, Low: 0.1, Top: 60, Range: "0.1 to 60", Example: "6.5", Meaning: "net light-saturated rate"},
 			Key{Path: q + ".rd", Kind: Number, Low: 0.001, Top: 15, Range: "0.001 to 15, positive", Example: "0.85", Meaning: "dark respiration"},
 			Key{Path: q + ".phi", Kind: Number, Low: 0.001, Top: 0.125, Range: "0.001 to 0.125", Example: "0.048", Meaning: "initial slope"},
-			Key{Path: q + ".theta", Kind: Number, Low: 0, Top: 0.999, Range: "0 to 0.999", Example: "0.8", Meaning: "curvature"},
+			Key{Path: q + ".theta", Kind: Number, Low: 0, Top: 1, Range: "0 to 1", Example: "0.8", Meaning: "curvature"},
 			Key{Path: q + ".lma", Kind: Number, Low: 5, Top: 1000, Range: "5 to 1000", Example: "55", Meaning: "leaf mass per area"},
 			Key{Path: q + ".growth_light", Kind: Number, Low: 0.1, Top: 100, Range: "0.1 to 100", Example: "50", Meaning: "light the leaf grew in"},
 		)

@@ -252,10 +252,15 @@ func (r *reader) lowBestHigh(v val, parse func(string) (float64, error)) (float6
 
 func (r *reader) outOfRange(v val, s string, x float64, spec Key) {
 	fix := "allowed is " + spec.Range
-	if spec.dim == length && x > 60 && strings.HasSuffix(strings.TrimSpace(s), "m") && x*foot >= spec.Low && x*foot <= spec.Top {
+	if spec.dim == length && x > 60 && inMetres(s) && x*foot >= spec.Low && x*foot <= spec.Top {
 		fix += "; feet? then write ft"
 	}
 	r.fault(v, s, fix)
+}
+
+func inMetres(s string) bool {
+	m := quantityPattern.FindStringSubmatch(strings.TrimSpace(s))
+	return m != nil && m[2] == "m"
 }
 
 // quantity reads a number with a unit.
@@ -303,9 +308,13 @@ func (r *reader) date(v val) (scenarios.Date, bool) {
 // need reports a required key that is missing from a block.
 func (r *reader) need(block val, f map[string]val, name string) val {
 	v, ok := f[name]
+	if block.node != nil && block.node.Kind != yaml.MappingNode && block.node.Tag != "!!null" {
+		return v // a fault already
+	}
 	if !ok {
 		spec, _ := Find(join(block.key, name))
-		fix := "missing; give " + spec.Meaning
+		meaning, _, _ := strings.Cut(spec.Meaning, ";")
+		fix := "missing; give " + meaning
 		if spec.Example != "" {
 			fix += fmt.Sprintf(", such as %s: %s", name, spec.Example)
 		}

@@ -43,7 +43,7 @@ func Read(path string, opts Options) (*scenarios.Plan, []Fault) {
 	}
 	data, err := load(file, largestPlan)
 	if err != nil {
-		return nil, []Fault{{File: file, Fix: explain(err, largestPlan)}}
+		return nil, []Fault{{File: file, Fix: explain(err, largestPlan, "check the name, or write a plan with: shadeledger start DIR")}}
 	}
 	dir := filepath.Dir(file)
 	return parse(file, data, opts, func(name string) ([]byte, error) {
@@ -102,11 +102,11 @@ func load(name string, most int64) ([]byte, error) {
 	return data, err
 }
 
-// explain says what to do about a file that cannot be read.
-func explain(err error, most int64) string {
+// explain says what to do about a file that cannot be read, and about one that is missing.
+func explain(err error, most int64, missing string) string {
 	switch {
 	case errors.Is(err, fs.ErrNotExist):
-		return "no such file; check the name, or write a plan with: shadeledger start DIR"
+		return "no such file; " + missing
 	case errors.Is(err, fs.ErrPermission):
 		return "no permission to read it; ask for read access"
 	case errors.Is(err, errTooLarge):
@@ -125,10 +125,13 @@ func parse(file string, data []byte, opts Options, files opener) (*scenarios.Pla
 	for _, s := range opts.Set {
 		r.override(root, s)
 	}
+	if root.Kind != yaml.MappingNode {
+		r.fields(val{node: root})
+		return nil, r.faults
+	}
 	p := r.plan(val{node: root})
 	if len(r.faults) > 0 {
-		sortFaults(r.faults)
-		return nil, r.faults
+		return nil, sortFaults(r.faults)
 	}
 	p.File = file
 	p.Assumed, p.Warnings = r.assumed, r.warnings
@@ -358,7 +361,11 @@ func (r *reader) record(v val, p *scenarios.Plan) {
 // problem turns a problem of a data file into a fault.
 func (r *reader) problem(file string, v val, p weather.Problem) {
 	if p.Line == 0 {
-		r.fault(val{node: v.node, at: v.at, path: p.Field}, p.Value, p.Want)
+		at := v
+		if c := r.peek(v, p.Field[strings.LastIndex(p.Field, ".")+1:]); c.present() {
+			at = c
+		}
+		r.fault(val{node: at.node, at: v.at, path: p.Field}, p.Value, p.Want)
 		return
 	}
 	r.faults = append(r.faults, Fault{File: file, Line: p.Line, Key: p.Field, Value: p.Value, Fix: p.Want})

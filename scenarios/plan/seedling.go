@@ -89,6 +89,12 @@ func (r *reader) seedling(item val) scenarios.Seedling {
 	if s.Name == "" {
 		r.fault(item, " ", "give species, a library name, or name beside a full set under leaf")
 	}
+	if q.species == nil && !q.f["species"].present() && !q.f["leaf"].present() {
+		if s.Name != "" {
+			r.fault(item, " ", "give species, a library name, or leaf with sun or shade: amax, rd, phi, theta, lma")
+		}
+		return s
+	}
 	q.plant(&s.Plant)
 	if len(q.from) > 0 {
 		r.assume(item.path, strings.Join(q.from, ", ")+" of "+s.Botanical, "species library: shadeledger species "+s.Botanical)
@@ -135,8 +141,7 @@ func (r *plantReader) plant(p *ledger.Plant) {
 
 // leaf reads traits, their temperature response and acclimation.
 func (r *plantReader) leaf(p *ledger.Plant) {
-	block := r.f["leaf"]
-	block.path, block.key = r.block.path+".leaf", "seedlings[].leaf"
+	block := r.part("leaf")
 	f := r.fields(block)
 	own := f["sun"].present() || f["shade"].present()
 	t := leaf.Temperature{Ref: 25, Opt: 25, Width: 18, Q10: 2}

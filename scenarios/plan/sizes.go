@@ -10,8 +10,7 @@ import (
 
 // sizes reads leaf area, masses and organ respiration.
 func (r *plantReader) sizes(p *ledger.Plant) {
-	block := r.f["mass"]
-	block.path, block.key = r.block.path+".mass", "seedlings[].mass"
+	block := r.part("mass")
 	f := r.fields(block)
 	r.leafSize(p, f)
 	scale := 1.0
@@ -35,6 +34,16 @@ func (r *plantReader) sizes(p *ledger.Plant) {
 		{Line: ledger.Stem, Mass: stem, Rate: rates.stem, TRef: rates.tRef, Q10: rates.stemQ10},
 		{Line: ledger.Root, Mass: root, Rate: rates.root, TRef: rates.tRef, Q10: rates.rootQ10},
 	}
+}
+
+// part is a block of the seedling; where it is left out its faults stand at the seedling.
+func (r *plantReader) part(name string) val {
+	v := r.f[name]
+	v.path, v.key = r.block.path+"."+name, "seedlings[]."+name
+	if v.node == nil {
+		v.at = r.block.node
+	}
+	return v
 }
 
 // agree is how far leaf mass may be from leaf area times LMA beside constant traits.
@@ -92,8 +101,7 @@ type organRates struct{ stem, root, tRef, stemQ10, rootQ10 float64 }
 
 // rates reads organ respiration.
 func (r *plantReader) rates() organRates {
-	block := r.f["respiration"]
-	block.path, block.key = r.block.path+".respiration", "seedlings[].respiration"
+	block := r.part("respiration")
 	f := r.fields(block)
 	out := organRates{r.base.StemRate, r.base.RootRate, r.base.OrganTRef, r.base.StemQ10, r.base.RootQ10}
 	if r.species == nil {
@@ -135,8 +143,7 @@ func (r *plantReader) rates() organRates {
 
 // turnover reads what replacing leaves and fine roots costs.
 func (r *plantReader) turnover(p *ledger.Plant) {
-	block := r.f["replacement"]
-	block.path, block.key = r.block.path+".replacement", "seedlings[].replacement"
+	block := r.part("replacement")
 	f := r.fields(block)
 	get := func(name string, fallback float64) float64 {
 		if c := f[name]; name == "construction_cost" && c.scalar() {

@@ -148,7 +148,7 @@ func (r *reader) layers(v, leaves val) (out []scenarios.Layer) {
 		l := r.layerRest(item.path, f, leaves)
 		l.Bottom, l.Top = from, to
 		if okF && okT && to <= from {
-			r.fault(f["to"], "", fmt.Sprintf("above from, %.4g m", from))
+			r.fault(f["to"], "", fmt.Sprintf("a top above from, %.4g m", from))
 		}
 		out = append(out, l)
 	}
@@ -288,7 +288,7 @@ func (r *reader) understory(v, leaves val) (out []scenarios.Understory) {
 		u.Bottom = r.or(base, ok, f["base"], item.path+".base", 0, "0 m", "left out: leaves down to the ground")
 		u.Top = top
 		if okTop && u.Top <= u.Bottom {
-			r.fault(f["height"], "", fmt.Sprintf("above base, %.4g m", u.Bottom))
+			r.fault(f["height"], "", fmt.Sprintf("a top above base, %.4g m", u.Bottom))
 		}
 		out = append(out, u)
 	}

@@ -143,7 +143,11 @@ func (r *reader) opening(item val, f map[string]val, p *scenarios.Plan, leaves v
 		c.Crowns, err = canopy.Inset(taped, radius)
 	}
 	if err != nil {
-		r.fault(v, " ", err.Error()+"; or give measured: crowns")
+		why := ""
+		if _, drawn := taped.(canopy.Polygon); drawn {
+			why = " (" + err.Error() + ")"
+		}
+		r.fault(v, " ", fmt.Sprintf("smaller than the crowns that reach %.3g m into it from every side%s; make it larger, or give measured: crowns", radius, why))
 		return scenarios.NoOpening{}
 	}
 	return c

@@ -50,7 +50,7 @@ var unitTable = map[dimension]map[string]unit{
 
 // likely is the unit to name to someone who wrote none.
 var likely = map[dimension]string{
-	length: "m or ft", area: "m2, ha or ac", basalArea: "m2/ha or ft2/ac", slope: "% or deg", bearing: "deg",
+	length: "m or ft", area: "m2 or ha or ac", basalArea: "m2/ha or ft2/ac", slope: "% or deg", bearing: "deg",
 	mass: "g", temperature: "C or F", duration: "h or min", share: "%", ppm: "ppm",
 }
 
@@ -155,7 +155,7 @@ func parseBearing(s string, declination float64, declared bool) (float64, error)
 	s = strings.TrimSpace(s)
 	for i, name := range compass {
 		if strings.EqualFold(s, name) {
-			return float64(i) * math.Pi / 8, nil
+			return 22.5 * float64(i) * rad, nil
 		}
 	}
 	magnetic := false
@@ -174,16 +174,15 @@ func parseBearing(s string, declination float64, declared bool) (float64, error)
 	if v < 0 || v > 360 {
 		return 0, fmt.Errorf("a bearing is 0 to 360 degrees")
 	}
-	φ := v * math.Pi / 180
 	if magnetic {
-		φ += declination
+		v = math.Round((v+declination/rad)*1e9) / 1e9 // the sum of two decimals, as if written
 	}
-	return math.Mod(φ+2*math.Pi, 2*math.Pi), nil
+	return math.Mod(v+360, 360) * rad, nil
 }
 
 // parseCoordinate reads 44.35, 44.35 N, 71.90 W or 44 21 00 N into degrees, north and east positive.
 func parseCoordinate(s string, positive, negative string, limit float64) (float64, error) {
-	want := fmt.Errorf("degrees from -%g to %g, such as 44.35 %s or 44 21 00 %s", limit, limit, positive, negative)
+	want := fmt.Errorf("degrees from -%[1]g to %[1]g, such as 44.35 %[2]s or 44 21 00 %[3]s", limit, positive, negative)
 	fields := strings.Fields(s)
 	sign := 1.0
 	if n := len(fields); n > 1 {
@@ -200,8 +199,11 @@ func parseCoordinate(s string, positive, negative string, limit float64) (float6
 	v := 0.0
 	for i, f := range fields {
 		x, err := parseNumber(f)
-		if err != nil {
+		if err != nil && strings.Contains(f, ",") {
 			return 0, err
+		}
+		if err != nil {
+			return 0, want
 		}
 		if len(fields) > 1 && (x < 0 || (i > 0 && x >= 60)) {
 			return 0, want

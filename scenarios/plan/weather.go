@@ -83,7 +83,7 @@ func (r *reader) open(v val) (name string, data []byte, ok bool) {
 	}
 	data, err := r.files(path)
 	if err != nil {
-		r.fault(v, name, explain(err, largestData))
+		r.fault(v, name, explain(err, largestData, "check the name; it counts from the folder of the plan, in --set from the current folder"))
 		return "", nil, false
 	}
 	return name, data, true
