@@ -3,6 +3,7 @@ package plan
 import (
 	"encoding/json"
 	"fmt"
+	"slices"
 	"strings"
 )
 
@@ -64,6 +65,9 @@ func object(path string) map[string]any {
 		properties[name] = s
 	}
 	o := map[string]any{"type": "object", "properties": properties, "additionalProperties": false}
+	if path == "treatments[].opening" {
+		o["minProperties"], o["maxProperties"] = 1, 1
+	}
 	if len(need) > 0 {
 		o["required"] = need
 	}
@@ -104,7 +108,7 @@ func value(k Key) map[string]any {
 	case Any:
 		return free(k)
 	case Quantity:
-		one := text(digitsPattern + `\s*[^\s0-9+-].*`)
+		one := text(digitsPattern + `\s*(` + units(k.dim) + `)` + spreadPattern)
 		return either(one, doubt(one))
 	case Number:
 		n := map[string]any{"type": "number"}
@@ -113,8 +117,17 @@ func value(k Key) map[string]any {
 		}
 		one := either(n, text(digitsPattern+spreadPattern))
 		return either(one, doubt(one))
-	case Place, Bearing:
-		one := either(map[string]any{"type": "number"}, map[string]any{"type": "string"})
+	case Bearing:
+		one := either(map[string]any{"type": "number", "minimum": 0, "maximum": 360},
+			text(strings.Join(compass, "|")+`|[0-9.]+\s*(deg)?\s*(true|magnetic)?`+spreadPattern))
+		return either(one, doubt(one))
+	case Place:
+		letters, limit := "NSns", 90
+		if strings.HasSuffix(k.Path, "longitude") {
+			letters, limit = "EWew", 180
+		}
+		one := either(map[string]any{"type": "number", "minimum": -limit, "maximum": limit},
+			text(`[+-]?[0-9.]+(\s+[0-9.]+){0,2}(\s+[`+letters+`])?`+spreadPattern))
 		return either(one, doubt(one))
 	case Choice:
 		return words(k.Words...)
@@ -122,6 +135,19 @@ func value(k Key) map[string]any {
 		return text(`[0-9]{1,2}-[0-9]{1,2}|[0-9]{1,2}\s+[A-Za-z]{3,}`)
 	}
 	return map[string]any{"type": []any{"string", "number", "boolean"}}
+}
+
+// units are the ways to write a dimension.
+func units(d dimension) string {
+	var names []string
+	for name := range unitTable[d] {
+		names = append(names, name)
+	}
+	if d == length {
+		names = append(names, "H")
+	}
+	slices.Sort(names)
+	return strings.Join(names, "|")
 }
 
 // doubt is {low, best, high} of a value.
@@ -146,7 +172,7 @@ func list(k Key) map[string]any {
 	if _, err := fmt.Sscanf(k.Range, "%d numbers", &n); err == nil {
 		out["minItems"], out["maxItems"] = n, n
 	}
-	if required[k.Path] {
+	if required[k.Path] && n == 0 {
 		out["minItems"] = 1
 	}
 	return out
