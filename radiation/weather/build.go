@@ -16,6 +16,8 @@ type frame struct {
 	normal    []float64 // extraterrestrial, facing the sun, W m-2
 	// for each day: declination at noon (rad)
 	declination []float64
+	// scratch for the sub-steps of one day
+	room [2][]float64
 }
 
 // date is a calendar day of local standard time; year is the one whose sun is used.
@@ -42,6 +44,7 @@ func newFrame(site radiation.Site, step time.Duration, dates []date) *frame {
 		series: s, top: make([]float64, 0, n), hourAngle: make([]float64, 0, n),
 		normal: make([]float64, 0, n), declination: make([]float64, len(dates)),
 	}
+	f.room = [2][]float64{make([]float64, per), make([]float64, per)}
 	h := radiation.NewHorizontal(site)
 	offset := time.Duration(site.UTCOffset * float64(time.Hour))
 	for d, date := range dates {

@@ -155,34 +155,41 @@ func (f *frame) dayLight(d int, w dayWeather, par Par) {
 	ws := sunsetAngle(s.Site.Latitude, f.declination[d])
 	x := math.Sin(ws - math.Pi/3)
 	a, b := 0.409+0.5016*x, 0.6609-0.4767*x
-	shape := func(i int) float64 { return math.Max(0, a+b*math.Cos(f.hourAngle[i])) * f.top[i] }
+	n := to - from
+	global, diffuse := f.room[0][:n], f.room[1][:n]
 	sumG, sumD := 0.0, 0.0
-	for i := from; i < to; i++ {
-		sumG += shape(i)
-		sumD += f.top[i]
+	for i := range n {
+		top := f.top[from+i]
+		global[i], diffuse[i] = math.Max(0, a+b*math.Cos(f.hourAngle[from+i]))*top, top
+		sumG += global[i]
+		sumD += top
 	}
 	if sumG <= 0 {
 		return
 	}
 	total := w.global * 1e6 / s.Seconds // W m-2 summed over sub-steps
-	scale := balance(from, to, w.q*total, func(i int) (float64, float64) {
-		return total * f.top[i] / sumD, total * shape(i) / sumG
-	})
-	for i := from; i < to; i++ {
-		G := total * shape(i) / sumG
-		q := share(scale*total*f.top[i]/sumD, G)
+	for i := range n {
+		global[i] *= total / sumG
+		diffuse[i] *= w.q * total / sumD
+	}
+	scale := balance(diffuse, global, w.q*total)
+	for i, G := range global {
+		q := share(scale*diffuse[i], G)
 		Q := G * par.Fraction * radiation.PhotonsPerJoule
-		f.put(i, light{G, q, Q, radiation.DiffusePAR(q) * Q})
+		f.put(from+i, light{G, q, Q, radiation.DiffusePAR(q) * Q})
 	}
 }
 
-// balance finds the factor k with sum of min(k a_i, cap_i) = target, so that diffuse light never exceeds
+// balance finds the factor k with sum of min(k a_i, limit_i) = target, so that diffuse light never exceeds
 // global light in a sub-step and still sums to the day.
-func balance(from, to int, target float64, at func(int) (a, limit float64)) float64 {
+func balance(a, limit []float64, target float64) float64 {
 	sum := func(k float64) (s float64) {
-		for i := from; i < to; i++ {
-			a, limit := at(i)
-			s += math.Min(k*a, limit)
+		for i, v := range a {
+			if v *= k; v < limit[i] {
+				s += v
+			} else {
+				s += limit[i]
+			}
 		}
 		return s
 	}

@@ -105,9 +105,12 @@ func (n *Normals) monthLight(f *frame, days []dayWeather, first, end, month int)
 		days[first+i].q = radiation.DiffuseShareDaily(math.Min(kt[i], 1), ws)
 	}
 	if want := n.DiffuseShare[month]; !math.IsNaN(want) {
-		k := balance(first, end, want*H, func(i int) (float64, float64) {
-			return days[i].q * days[i].global, days[i].global
-		})
+		diffuse, global := make([]float64, count), make([]float64, count)
+		for i := range count {
+			global[i] = days[first+i].global
+			diffuse[i] = days[first+i].q * global[i]
+		}
+		k := balance(diffuse, global, want*H)
 		for i := first; i < end; i++ {
 			days[i].q = math.Min(1, k*days[i].q)
 		}
