@@ -91,19 +91,19 @@ func (t *table) next() bool {
 		}
 		t.line++
 		line = bytes.TrimSuffix(line, []byte("\r"))
-		if len(bytes.TrimSpace(line)) == 0 || line[0] == '#' {
+		if len(line) == 0 || line[0] == '#' || line[0] <= ' ' && len(bytes.TrimSpace(line)) == 0 {
 			continue
 		}
 		t.cells = t.cells[:0]
-		for {
-			i := bytes.IndexByte(line, ',')
-			if i < 0 {
-				t.cells = append(t.cells, line)
-				return true
+		from := 0
+		for i, c := range line {
+			if c == ',' {
+				t.cells = append(t.cells, line[from:i])
+				from = i + 1
 			}
-			t.cells = append(t.cells, line[:i])
-			line = line[i+1:]
 		}
+		t.cells = append(t.cells, line[from:])
+		return true
 	}
 	return false
 }
@@ -122,29 +122,88 @@ func (t *table) row() bool {
 	return false
 }
 
+// column is a column by place; -1 where the file has none.
+func (t *table) column(name string) column {
+	if i, ok := t.place[name]; ok {
+		return column{name, i}
+	}
+	return column{name, -1}
+}
+
+type column struct {
+	name string
+	at   int
+}
+
 // cell is a column's text in the row; "" where the column is not there.
-func (t *table) cell(column string) string {
-	i, ok := t.place[column]
-	if !ok {
+func (t *table) cell(c column) string {
+	if c.at < 0 {
 		return ""
 	}
-	c := bytes.TrimSpace(t.cells[i])
-	return unsafe.String(unsafe.SliceData(c), len(c))
+	b := t.cells[c.at]
+	for len(b) > 0 && (b[0] == ' ' || b[0] == '\t') {
+		b = b[1:]
+	}
+	for len(b) > 0 && (b[len(b)-1] == ' ' || b[len(b)-1] == '\t') {
+		b = b[:len(b)-1]
+	}
+	return unsafe.String(unsafe.SliceData(b), len(b))
 }
 
 // number reads a column; empty, NA and - are not given (NaN).
-func (t *table) number(column string) float64 {
-	s := t.cell(column)
+func (t *table) number(c column) float64 {
+	s := t.cell(c)
+	if v, ok := plainDecimal(s); ok {
+		return v
+	}
 	switch s {
 	case "", "NA", "-", "n/a", ".":
 		return math.NaN()
 	}
 	v, err := strconv.ParseFloat(s, 64)
 	if err != nil || math.IsInf(v, 0) || math.IsNaN(v) || strings.ContainsAny(s, "xX_") {
-		t.fault(column, strings.Clone(s), "a number with a point; leave the cell empty where nothing was measured")
+		t.fault(c.name, strings.Clone(s), "a number with a point; leave the cell empty where nothing was measured")
 		return math.NaN()
 	}
 	return v
+}
+
+var powersOfTen = [...]float64{1, 1e1, 1e2, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9, 1e10, 1e11, 1e12, 1e13, 1e14, 1e15}
+
+// plainDecimal reads up to 15 digits with a sign and a point. Digits and power of ten are then exact in binary, so that
+// their one division rounds right, as strconv does.
+func plainDecimal(s string) (float64, bool) {
+	negative := len(s) > 0 && s[0] == '-'
+	if negative {
+		s = s[1:]
+	}
+	if len(s) == 0 || len(s) > 16 {
+		return 0, false
+	}
+	mantissa, digits, after, point := uint64(0), 0, 0, false
+	for i := range len(s) {
+		c := s[i]
+		switch {
+		case c >= '0' && c <= '9':
+			mantissa = mantissa*10 + uint64(c-'0')
+			digits++
+			if point {
+				after++
+			}
+		case c == '.' && !point:
+			point = true
+		default:
+			return 0, false
+		}
+	}
+	if digits == 0 || digits > 15 {
+		return 0, false
+	}
+	v := float64(mantissa) / powersOfTen[after]
+	if negative {
+		v = -v
+	}
+	return v, true
 }
 
 // digits reads n digits from the start of s.
@@ -163,34 +222,48 @@ func digits(s string, n int) (int, string, bool) {
 	return v, s[n:], true
 }
 
+// clock reads moments; rows of one day share its midnight.
+type clock struct {
+	date     string
+	midnight time.Time
+}
+
 // moment reads 2015-06-01T13:30[:00] or with a space; seconds must be 0.
-func moment(s string, clock bool) (time.Time, bool) {
+func (c *clock) moment(s string) (time.Time, bool) {
+	if len(s) < 16 || (s[10] != 'T' && s[10] != ' ') {
+		return time.Time{}, false
+	}
+	if s[:10] != c.date {
+		at, ok := dateOf(s[:10])
+		if !ok {
+			return time.Time{}, false
+		}
+		c.date, c.midnight = s[:10], at
+	}
+	hour, rest, a := digits(s[11:], 2)
+	rest, b := cut(rest, ':')
+	minute, rest, d := digits(rest, 2)
+	if rest == ":00" {
+		rest = ""
+	}
+	if !(a && b && d) || rest != "" || hour > 24 || minute > 59 {
+		return time.Time{}, false
+	}
+	return c.midnight.Add(time.Duration(hour*60+minute) * time.Minute), true
+}
+
+// dateOf reads 2015-06-01.
+func dateOf(s string) (time.Time, bool) {
 	y, s, a := digits(s, 4)
 	s, b := cut(s, '-')
 	m, s, c := digits(s, 2)
 	s, d := cut(s, '-')
 	day, s, e := digits(s, 2)
-	if !(a && b && c && d && e) || m < 1 || m > 12 || day < 1 || day > 31 {
+	if !(a && b && c && d && e) || s != "" || m < 1 || m > 12 || day < 1 || day > 31 {
 		return time.Time{}, false
 	}
-	hour, minute := 0, 0
-	if clock {
-		if len(s) < 6 || (s[0] != 'T' && s[0] != ' ') {
-			return time.Time{}, false
-		}
-		var f, g, h bool
-		hour, s, f = digits(s[1:], 2)
-		s, g = cut(s, ':')
-		minute, s, h = digits(s, 2)
-		if s == ":00" {
-			s = ""
-		}
-		if !(f && g && h) || hour > 24 || minute > 59 {
-			return time.Time{}, false
-		}
-	}
-	t := time.Date(y, time.Month(m), day, hour, minute, 0, 0, time.UTC)
-	return t, s == "" && t.Add(-time.Duration(hour)*time.Hour).Day() == day
+	t := time.Date(y, time.Month(m), day, 0, 0, 0, 0, time.UTC)
+	return t, t.Day() == day
 }
 
 func cut(s string, c byte) (string, bool) {
@@ -207,14 +280,17 @@ func (r *reader) hourly(name string, data []byte) []weather.Record {
 		return nil
 	}
 	rows := make([]weather.Record, 0, bytes.Count(data, []byte("\n"))+1)
+	at, ghi, air, rh := t.column("time"), t.column("ghi_w_m2"), t.column("air_temp_c"), t.column("rh_pct")
+	dhi, ppfd, diffuse := t.column("dhi_w_m2"), t.column("ppfd_umol_m2_s"), t.column("diffuse_ppfd_umol_m2_s")
+	var c clock
 	for t.row() {
-		at, ok := moment(t.cell("time"), true)
+		when, ok := c.moment(t.cell(at))
 		if !ok {
-			t.fault("time", strings.Clone(t.cell("time")), "local standard time as 2015-06-01T13:30")
+			t.fault(at.name, strings.Clone(t.cell(at)), "local standard time as 2015-06-01T13:30")
 		}
 		rows = append(rows, weather.Record{
-			Line: t.line, Time: at, Global: t.number("ghi_w_m2"), Temperature: t.number("air_temp_c"), Humidity: t.number("rh_pct"),
-			Diffuse: t.number("dhi_w_m2"), PPFD: t.number("ppfd_umol_m2_s"), DiffusePPFD: t.number("diffuse_ppfd_umol_m2_s"),
+			Line: t.line, Time: when, Global: t.number(ghi), Temperature: t.number(air), Humidity: t.number(rh),
+			Diffuse: t.number(dhi), PPFD: t.number(ppfd), DiffusePPFD: t.number(diffuse),
 		})
 	}
 	return rows
@@ -232,14 +308,16 @@ func (r *reader) daily(name string, data []byte) []weather.DailyRecord {
 		return nil
 	}
 	rows := make([]weather.DailyRecord, 0, bytes.Count(data, []byte("\n"))+1)
+	date, ghi, sun := t.column("date"), t.column("ghi_mj_m2"), t.column("sunshine_h")
+	low, high, rh, rain := t.column("tmin_c"), t.column("tmax_c"), t.column("rh_pct"), t.column("rain_mm")
 	for t.row() {
-		at, ok := moment(t.cell("date"), false)
+		when, ok := dateOf(t.cell(date))
 		if !ok {
-			t.fault("date", strings.Clone(t.cell("date")), "a date as 2015-06-01")
+			t.fault(date.name, strings.Clone(t.cell(date)), "a date as 2015-06-01")
 		}
 		rows = append(rows, weather.DailyRecord{
-			Line: t.line, Date: at, Global: t.number("ghi_mj_m2"), Sunshine: t.number("sunshine_h"),
-			Tmin: t.number("tmin_c"), Tmax: t.number("tmax_c"), Humidity: t.number("rh_pct"), Rain: t.number("rain_mm"),
+			Line: t.line, Date: when, Global: t.number(ghi), Sunshine: t.number(sun),
+			Tmin: t.number(low), Tmax: t.number(high), Humidity: t.number(rh), Rain: t.number(rain),
 		})
 	}
 	return rows

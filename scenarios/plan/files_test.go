@@ -3,8 +3,11 @@ package plan
 import (
 	"fmt"
 	"io/fs"
+	"math"
+	"math/rand/v2"
 	"os"
 	"path/filepath"
+	"strconv"
 	"strings"
 	"testing"
 	"time"
@@ -190,5 +193,25 @@ func TestNoPermissionForTheWeather(t *testing.T) {
 	_, faults := parse("plan.yaml", measured(t, "hourly: w.csv"), Options{}, func(string) ([]byte, error) { return nil, fs.ErrPermission })
 	if got := only(t, faults); got != "plan.yaml:4:19: weather.hourly: w.csv; no permission to read it; ask for read access" {
 		t.Error(got)
+	}
+}
+
+// The short way through a plain decimal gives the bits of strconv.
+func TestPlainDecimals(t *testing.T) {
+	random := rand.New(rand.NewPCG(1, 2))
+	for range 100000 {
+		s := strconv.FormatFloat((random.Float64()-0.5)*2000, 'f', random.IntN(12), 64)
+		want, err := strconv.ParseFloat(s, 64)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got, ok := plainDecimal(s); ok && math.Float64bits(got) != math.Float64bits(want) {
+			t.Fatalf("%s is %v, want %v", s, got, want)
+		}
+	}
+	for _, s := range []string{"", "-", ".", "-.", "1.2.3", "1e3", "+1", "NaN", "0x1", "1_0", "1234567890123456"} {
+		if v, ok := plainDecimal(s); ok {
+			t.Errorf("%q is read as %v", s, v)
+		}
 	}
 }

@@ -133,7 +133,7 @@ func parseQuantity(s string, d dimension, H float64) (float64, error) {
 	}
 	if m[2] == "H" && d == length {
 		if H <= 0 {
-			return 0, fmt.Errorf("H is stand.height, which cannot itself be in H or is missing")
+			return 0, fmt.Errorf("a size in H needs stand.height, which is missing or itself in H")
 		}
 		return v * H, nil
 	}
