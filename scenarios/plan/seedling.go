@@ -166,6 +166,8 @@ func (r *plantReader) leaf(p *ledger.Plant) {
 	temperature("t_width", &t.Width, "June, Evans & Farquhar 2004")
 	if x, ok := r.number(f["q10"]); ok {
 		t.Q10 = x
+	} else if !f["q10"].present() && r.species == nil {
+		r.assume(block.path+".q10", "2.0", practice)
 	}
 	if err := t.Check(); err != nil {
 		r.fault(block, " ", err.Error())
@@ -174,6 +176,8 @@ func (r *plantReader) leaf(p *ledger.Plant) {
 	p.LightRespiration = 1
 	if x, ok := r.number(f["light_respiration"]); ok {
 		p.LightRespiration = x
+	} else if !f["light_respiration"].present() && r.species == nil {
+		r.assume(block.path+".light_respiration", "1", "left out: as in the dark")
 	}
 	p.Traits = r.acclimation(block, f, r.basis(f, own), p.Temperature)
 }
