@@ -3,8 +3,10 @@ package scenarios
 import (
 	"errors"
 	"fmt"
+	"strings"
 
 	"shadeledger/canopy"
+	"shadeledger/leaf"
 	"shadeledger/radiation/weather"
 	"shadeledger/scenarios/ledger"
 	"shadeledger/scenarios/light"
@@ -54,6 +56,9 @@ func RunSeries(p *Plan, series *weather.Series, opts Options) (*Results, error) 
 	res.Warnings = append(res.Warnings, p.Warnings...)
 	for _, w := range series.Warnings {
 		res.Warnings = append(res.Warnings, Warning{Key: "weather", Text: w})
+	}
+	if opts.Depth > Light {
+		res.Warnings = append(res.Warnings, frozen(p, series)...)
 	}
 	for i := range p.Treatments {
 		if err := r.treatment(&p.Treatments[i], res); err != nil {
@@ -110,6 +115,38 @@ func prepare(p *Plan, above *light.Above) []*ledger.Prepared {
 		out[i] = ledger.Prepare(&plant, above)
 	}
 	return out
+}
+
+// frozen warns of evergreens whose needles stand in the light on days of frost: without a rule for dormancy they are
+// counted as working, which flatters them.
+func frozen(p *Plan, s *weather.Series) []Warning {
+	covered := Mask(s, p.Snow.Period)
+	var names []string
+	most := 0.0
+	for _, plant := range p.Seedlings {
+		if _, evergreen := plant.Leaves.(leaf.Evergreen); !evergreen {
+			continue
+		}
+		days := 0.0
+		for d := range s.Days {
+			mean := 0.0
+			for _, T := range s.Temperature[d*s.PerDay : (d+1)*s.PerDay] {
+				mean += T / float64(s.PerDay)
+			}
+			if mean < 0 && !(covered[d] && p.Snow.Depth > plant.Height) {
+				days += s.Days[d].Weight / float64(s.Years)
+			}
+		}
+		if days >= 1 {
+			names = append(names, plant.Name)
+			most = max(most, days)
+		}
+	}
+	if len(names) == 0 {
+		return nil
+	}
+	return []Warning{{Key: "seedlings", Text: fmt.Sprintf("evergreen and above the snow on %.0f days a year with a mean below 0 C: %s; winter dormancy is not modelled, so their income is too high and their break-even too low",
+		most, strings.Join(names, ", "))}}
 }
 
 // divide gives the spans that rows are made for.
