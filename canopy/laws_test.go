@@ -216,3 +216,22 @@ func TestAbsorbedAndTransmitted(t *testing.T) {
 		t.Errorf("absorbed %.5f and transmitted %.5f make %.5f", absorbed, out[0].Chance, sum)
 	}
 }
+
+// A point on the outline itself has the light of its neighbours.
+func TestOnTheOutline(t *testing.T) {
+	m := profile(t, mixed()...)
+	for name, o := range shapes(t) {
+		s := stand(t, m, Ground{0.2, 1}, Opening{o, profile(t)})
+		for _, φ := range []float64{0, math.Pi / 2, 2, 4} {
+			d := Reach(o, φ)
+			sin, cos := math.Sincos(φ)
+			at := func(d float64) float64 {
+				return skyLight(s, Point{d * sin, d * cos, 0.5}, evenDome(18, 1, 720), []float64{1, 1}, false)
+			}
+			in, on, out := at(d-0.01), at(d), at(d+0.01)
+			if on < math.Min(in, out)-0.002 || on > math.Max(in, out)+0.002 {
+				t.Errorf("%s, azimuth %.2f: %.4f on the outline, %.4f inside, %.4f outside", name, φ, on, in, out)
+			}
+		}
+	}
+}

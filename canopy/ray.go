@@ -82,7 +82,6 @@ type Beam struct {
 // tau_L = sum of Omega G LAI / (m cos beta) over what the ray crosses, tau_W the same of wood with G = 0.5;
 // P0 = exp(-tau_L - tau_W), T = exp(-sum sqrt(alpha) tau_L - tau_W) (Goudriaan 1977).
 func (t *Tracer) Trace(p Point, r *Rays, day []int32, shares [][]float64, out []Beam) {
-	at := t.stand.profileAt(p.X, p.Y)
 	for i := range r.rays {
 		x := &r.rays[i]
 		if x.blocked {
@@ -94,7 +93,7 @@ func (t *Tracer) Trace(p Point, r *Rays, day []int32, shares [][]float64, out []
 		if len(t.stand.openings) == 0 {
 			beam, through = t.stretch(0, p.Height, math.Inf(1), r, i, share)
 		} else {
-			beam, through = t.walk(p, at, r, i, share)
+			beam, through = t.walk(p, r, i, share)
 		}
 		switch {
 		case beam == 0:
@@ -109,7 +108,7 @@ func (t *Tracer) Trace(p Point, r *Rays, day []int32, shares [][]float64, out []
 }
 
 // walk sums depth over the profiles that ray i runs through.
-func (t *Tracer) walk(p Point, at int, r *Rays, i int, share []float64) (beam, through float64) {
+func (t *Tracer) walk(p Point, r *Rays, i int, share []float64) (beam, through float64) {
 	x := &r.rays[i]
 	t.track, t.buf = t.stand.track(p.X, p.Y, x.ux, x.uy, t.buf, t.track[:0])
 	low := p.Height

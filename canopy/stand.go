@@ -80,16 +80,6 @@ func (h Horizon) At(azimuth float64) float64 {
 	return h.Elevation[a] + f*(h.Elevation[b]-h.Elevation[a])
 }
 
-// profileAt is the index of the profile that stands at a spot.
-func (s *Stand) profileAt(x, y float64) int {
-	for i, o := range s.openings {
-		if o.Outline.Contains(x, y) {
-			return i + 1
-		}
-	}
-	return 0
-}
-
 // stretch is a piece of a ray's ground track in one profile, to distance To.
 type stretch struct {
 	profile int
@@ -98,12 +88,12 @@ type stretch struct {
 
 // track follows the ground under a ray: which profile it runs over, until the last, which has no end.
 func (s *Stand) track(x, y, ux, uy float64, buf []float64, dst []stretch) ([]stretch, []float64) {
-	at := s.profileAt(x, y)
 	switch len(s.openings) {
 	case 0:
 		return append(dst, stretch{0, math.Inf(1)}), buf
 	case 1:
 		buf = s.openings[0].Outline.cross(x, y, ux, uy, buf[:0])
+		at := len(buf) % 2 // a ray ends in the matrix; told so, a point on the outline itself is safe
 		for _, d := range buf {
 			dst = append(dst, stretch{at, d})
 			at = 1 - at
@@ -115,7 +105,12 @@ func (s *Stand) track(x, y, ux, uy float64, buf []float64, dst []stretch) ([]str
 
 // trackMany is track among several openings that do not overlap.
 func (s *Stand) trackMany(x, y, ux, uy float64, buf []float64, dst []stretch) ([]stretch, []float64) {
-	from, at := 0.0, s.profileAt(x, y)
+	from, at := 0.0, 0
+	for i, o := range s.openings {
+		if buf = o.Outline.cross(x, y, ux, uy, buf[:0]); len(buf)%2 == 1 {
+			at = i + 1
+		}
+	}
 	for {
 		next, to := math.Inf(1), 0
 		for i, o := range s.openings {
