@@ -7,6 +7,7 @@ import (
 	"time"
 
 	"shadeledger/canopy"
+	"shadeledger/leaf"
 	"shadeledger/radiation/weather"
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
@@ -99,12 +100,20 @@ func TestAllocationsDoNotGrowWithDays(t *testing.T) {
 	}
 }
 
-// Making a run ready allocates for each state of leaf and as lists double, which is less than once a day.
+// A whole run needs as many allocations for a year as for thirty days. Evergreens are left out: a year warns of their
+// winter, and a warning has its text.
 func TestAllocationsOfAWholeRun(t *testing.T) {
 	p := invented(t)
 	p.Sampling.Step = time.Hour
 	p.Season = scenarios.Period{From: scenarios.Date{Month: 7, Day: 1}, To: scenarios.Date{Month: 7, Day: 30}}
 	p.Treatments = p.Treatments[2:]
+	var deciduous []scenarios.Seedling
+	for _, s := range p.Seedlings {
+		if _, ok := s.Leaves.(leaf.Deciduous); ok {
+			deciduous = append(deciduous, s)
+		}
+	}
+	p.Seedlings = deciduous
 	year := p.Weather.Series(p.Site, p.Sampling.Step, p.Par)
 	count := func(s *weather.Series) float64 {
 		return testing.AllocsPerRun(2, func() {
@@ -115,8 +124,9 @@ func TestAllocationsOfAWholeRun(t *testing.T) {
 	}
 	long, short := count(year), count(days(year, 181, 211))
 	t.Logf("%.0f allocations for 365 days, %.0f for 30", long, short)
-	if long-short > 335 {
-		t.Errorf("%.0f allocations for 365 days, %.0f for 30; more than one for each day between", long, short)
+	const pool = 4 // the eigenvalue routine keeps pools, which a collection of the larger run may empty
+	if math.Abs(long-short) > pool || len(deciduous) == 0 {
+		t.Errorf("%.0f allocations for 365 days, %.0f for 30, of %d plants; want the same", long, short, len(deciduous))
 	}
 }
 

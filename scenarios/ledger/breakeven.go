@@ -39,6 +39,8 @@ const (
 	keyBeam   = 36 // half octaves of beam
 	keyChance = 5
 	keyCap    = 3
+	usualBins = 2048 // room made at once; more is rare
+	maxDepths = 6
 )
 
 // halfOctave bins x from 2^low up.
@@ -70,6 +72,7 @@ func (r *Prepared) gather(g *light.Regime, w *scratch) {
 	b := &w.bins
 	if b.index == nil {
 		b.index = make([]int32, keyLight*keyBeam*keyChance*keyCap)
+		b.used, b.list, b.depth = make([]int32, 0, usualBins), make([]bin, 0, usualBins), make([]float64, 0, usualBins*3*maxDepths)
 	}
 	for _, k := range b.used {
 		b.index[k] = 0

@@ -91,7 +91,7 @@ func (a *Above) allWeather() {
 	hold := int32(max(1, math.Round(patternSeconds/a.Series.Seconds)))
 	a.patterns = 0
 	last := int32(-1)
-	var middle []int
+	middle := make([]int, 0, len(lit.Step))
 	for i, step := range lit.Step {
 		if block := step / hold; block != last {
 			last = block

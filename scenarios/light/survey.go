@@ -18,6 +18,8 @@ type Scene struct {
 	states   [][]float64
 	recipe   []recipe
 	anchors  [][]float64
+	store    []float64 // of states and anchors
+	end      []float64 // scratch
 	litState []int32
 	// shape numbering: one shape for each (state, pattern) that occurs
 	shapeState   []int32
@@ -37,9 +39,14 @@ const anchorStep = 0.25
 
 // NewScene prepares a stand for a series; shares gives the share of leaf present by phenology on a series day.
 func NewScene(a *Above, stand *canopy.Stand, shares func(day int) []float64) *Scene {
-	s := &Scene{above: a, stand: stand}
 	series := a.Series
-	s.dayState = make([]int32, len(series.Days))
+	days, lit := len(series.Days), len(series.Lit.Step)
+	// room for all days at once: how often it allocates does not grow with them
+	s := &Scene{
+		above: a, stand: stand, dayState: make([]int32, days), states: make([][]float64, 0, days),
+		recipe: make([]recipe, 0, days), anchors: make([][]float64, 0, 2*days),
+		shapeState: make([]int32, 0, lit), shapePattern: make([]int32, 0, lit),
+	}
 	for d := range series.Days {
 		s.dayState[d] = s.state(shares(d))
 	}
@@ -66,8 +73,19 @@ func (s *Scene) state(v []float64) int32 {
 			return int32(k)
 		}
 	}
-	s.states = append(s.states, append([]float64(nil), v...))
+	s.states = append(s.states, s.keep(v))
 	return int32(len(s.states) - 1)
+}
+
+// keep copies a vector into the scene's store.
+func (s *Scene) keep(v []float64) []float64 {
+	if s.store == nil {
+		s.store = make([]float64, 0, 3*len(s.dayState)*len(v))
+		s.end = make([]float64, len(v))
+	}
+	from := len(s.store)
+	s.store = append(s.store, v...)
+	return s.store[from:len(s.store):len(s.store)]
 }
 
 func same(a, b []float64) bool {
@@ -107,7 +125,8 @@ func (s *Scene) mix(v []float64) recipe {
 		return recipe{a: s.anchor(v)}
 	}
 	low := math.Floor(v[varying]/anchorStep) * anchorStep
-	end := append([]float64(nil), v...)
+	end := s.end
+	copy(end, v)
 	end[varying] = low
 	a := s.anchor(end)
 	if v[varying] == low {
@@ -123,7 +142,7 @@ func (s *Scene) anchor(v []float64) int {
 			return k
 		}
 	}
-	s.anchors = append(s.anchors, append([]float64(nil), v...))
+	s.anchors = append(s.anchors, s.keep(v))
 	return len(s.anchors) - 1
 }
 
@@ -154,7 +173,7 @@ type observer struct {
 	tracer  *canopy.Tracer
 	scan    *canopy.SkyScan
 	beams   []canopy.Beam
-	anchors []*canopy.CellLight
+	anchors []canopy.CellLight
 	// by leaf state: integral of T over each cell; ratio of plane to solid by ring
 	solid, cosine []float64
 	plane         []float64
@@ -169,8 +188,11 @@ func (s *Scene) newObserver() *observer {
 		solid: make([]float64, len(s.states)*a.dome.Cells()), cosine: make([]float64, len(s.states)*a.Rings()),
 		plane: make([]float64, len(s.shapeState)),
 	}
-	for range s.anchors {
-		o.anchors = append(o.anchors, canopy.NewCellLight(a.dome))
+	cells := a.dome.Cells()
+	o.anchors = make([]canopy.CellLight, len(s.anchors))
+	room := make([]float64, 2*cells*len(s.anchors))
+	for k := range o.anchors {
+		o.anchors[k] = canopy.CellLight{Plane: room[2*k*cells : (2*k+1)*cells], Solid: room[(2*k+1)*cells : (2*k+2)*cells]}
 	}
 	o.regime.ShapeRings = make([]float64, len(s.shapeState)*a.Rings())
 	o.regime.ShapePattern = s.shapePattern
@@ -190,7 +212,7 @@ func (o *observer) observe(p canopy.Point) *Regime {
 	o.scan.Scan(p)
 	r.SkyView = o.scan.SkyView()
 	for k, shares := range s.anchors {
-		o.scan.Transmit(shares, o.anchors[k])
+		o.scan.Transmit(shares, &o.anchors[k])
 	}
 	for k, recipe := range s.recipe {
 		o.blend(k, recipe)
@@ -208,10 +230,10 @@ func (o *observer) blend(k int, recipe recipe) {
 	d := o.scene.above.dome
 	cells, rings := d.Cells(), d.Rings()
 	solid := o.solid[k*cells : (k+1)*cells]
-	a := o.anchors[recipe.a]
+	a := &o.anchors[recipe.a]
 	b, f := a, recipe.f
 	if f > 0 {
-		b = o.anchors[recipe.b]
+		b = &o.anchors[recipe.b]
 	}
 	for r := range rings {
 		sumS, sumP := 0.0, 0.0
