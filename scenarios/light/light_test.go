@@ -203,7 +203,7 @@ func TestLeafSharesBetweenAnchors(t *testing.T) {
 		}
 		NewScene(a, s, func(int) []float64 { return shares }).Survey([]canopy.Point{p}, 1, func(_, _ int, r *Regime) {
 			for i, D := range series.Lit.Diffuse {
-				if D > 0 && math.Abs(r.SkyPlane[i]/D-want) > 1e-3*want { // what anchorStep promises
+				if D > 0 && math.Abs(r.SkyPlane[i]/D-want) > 1e-3*want { // what anchorsPerUnit promises
 					t.Fatalf("shares %v: sky %.6f, want %.6f", shares, r.SkyPlane[i]/D, want)
 				}
 			}

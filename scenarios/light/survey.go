@@ -33,9 +33,9 @@ type recipe struct {
 	f    float64 // 0: all a
 }
 
-// anchorStep is how far apart the anchors of a changing share lie; between them the logarithm of each cell's light is
+// anchorsPerUnit says how far apart the anchors of a changing share lie; between them the logarithm of each cell's light is
 // linear, to better than 0.1 % of that light.
-const anchorStep = 0.25
+const anchorsPerUnit = 5
 
 // NewScene prepares a stand for a series; shares gives the share of leaf present by phenology on a series day.
 func NewScene(a *Above, stand *canopy.Stand, shares func(day int) []float64) *Scene {
@@ -124,7 +124,8 @@ func (s *Scene) mix(v []float64) recipe {
 	if count != 1 {
 		return recipe{a: s.anchor(v)}
 	}
-	low := math.Floor(v[varying]/anchorStep) * anchorStep
+	step := math.Floor(v[varying] * anchorsPerUnit)
+	low := step / anchorsPerUnit
 	end := s.end
 	copy(end, v)
 	end[varying] = low
@@ -132,8 +133,8 @@ func (s *Scene) mix(v []float64) recipe {
 	if v[varying] == low {
 		return recipe{a: a}
 	}
-	end[varying] = low + anchorStep
-	return recipe{a: a, b: s.anchor(end), f: (v[varying] - low) / anchorStep}
+	end[varying] = (step + 1) / anchorsPerUnit
+	return recipe{a: a, b: s.anchor(end), f: (v[varying] - low) * anchorsPerUnit}
 }
 
 func (s *Scene) anchor(v []float64) int {
