@@ -77,7 +77,7 @@ func (t Temperature) rdFrom(from, to float64) float64 {
 	case Tjoelker:
 		return math.Pow(3.22-0.046*(to+from)/2, (to-from)/10)
 	}
-	return math.Pow(t.Q10, (to-from)/10)
+	return math.Exp(math.Log(t.Q10) * (to - from) / 10)
 }
 
 // At is the set at a leaf temperature: Ag and Rd change, the rest stays.

@@ -10,7 +10,7 @@ import (
 // The search for break-even: k is bracketed in bracketSteps logarithmic steps and closed to tolerance points.
 const (
 	bracketSteps = 40
-	tolerance    = 0.005 // points of full light
+	tolerance    = 0.01  // points of full light
 	stride       = 3     // steps that the rough net takes at a time
 	fitted       = 0.005 // the bins' miss below which, scaled out, they need no exact pass for dimmer light
 	far          = 50    // but not for light this many times dimmer

@@ -77,14 +77,18 @@ func (r *Prepared) calendar() {
 	for d := range s.Days {
 		total += s.Days[d].Weight
 	}
+	slope := make([]float64, len(p.Organs)) // Q10^(x/10) = exp(slope x)
+	for j, o := range p.Organs {
+		slope[j] = math.Log(o.Q10) / 10
+	}
 	for d := range s.Days {
 		day := &s.Days[d]
 		share := p.Leaves.Share(day.Month, day.Day)
 		T := s.Temperature[d*s.PerDay : (d+1)*s.PerDay]
 		lit := day.LitFrom
 		for i, t := range T {
-			for _, o := range p.Organs {
-				r.fixed[d][o.Line] += k * 1e-3 * o.Rate * o.Mass * math.Pow(o.Q10, (t-o.TRef)/10)
+			for j, o := range p.Organs {
+				r.fixed[d][o.Line] += k * 1e-3 * o.Rate * o.Mass * math.Exp(slope[j]*(t-o.TRef))
 			}
 			isLit := lit < day.LitTo && int(s.Lit.Step[lit]) == d*s.PerDay+i
 			if isLit {

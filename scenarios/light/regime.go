@@ -4,6 +4,7 @@ package light
 
 import (
 	"math"
+	"sync"
 
 	"shadeledger/canopy"
 	"shadeledger/radiation"
@@ -111,11 +112,20 @@ func (a *Above) allWeather() {
 	cells, rings := a.dome.Cells(), a.Rings()
 	a.radiance = make([]float32, a.patterns*cells)
 	a.OpenRings = make([]float64, a.patterns*rings)
-	p := newPainter(a.dome, a.open)
-	for k, i := range middle {
-		p.paint(lit, i, a.radiance[k*cells:(k+1)*cells], a.OpenRings[k*rings:(k+1)*rings])
+	var group sync.WaitGroup
+	for w := range painters {
+		group.Go(func() {
+			p := newPainter(a.dome, a.open)
+			for k := w; k < len(middle); k += painters {
+				p.paint(lit, middle[k], a.radiance[k*cells:(k+1)*cells], a.OpenRings[k*rings:(k+1)*rings])
+			}
+		})
 	}
+	group.Wait()
 }
+
+// painters is how many goroutines paint; each pattern is painted by itself, so their number changes no bit.
+const painters = 4
 
 // painter fills cells with the radiance of an all-weather sky.
 type painter struct {
