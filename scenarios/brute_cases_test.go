@@ -2,6 +2,7 @@ package scenarios_test
 
 import (
 	"math"
+	"strings"
 	"testing"
 )
 
@@ -59,7 +60,16 @@ func beech() *brutePlant {
 		lifespan: 0.5, fineShare: 0.25, fineLife: 1, cost: 0.6}
 }
 
-// Evergreen stand, circle on the flat, one constant set.
+// hungry is a fir with so much stem that it breaks even only in more light than the stand lets through.
+func hungry() *brutePlant {
+	p := fir()
+	p.stem = 9
+	return p
+}
+
+var hungrySet = strings.NewReplacer("name: Fir", "name: Hungry", "stem: 2 g", "stem: 9 g").Replace(oneSet)
+
+// Evergreen stand, circle on the flat, one constant set; a second plant whose break-even lies above the light under the stand.
 func TestPlainEvergreenCircle(t *testing.T) {
 	t.Parallel()
 	c := &bruteCase{lat: 44.35, lon: -71.9, offset: -5, stepMinutes: 60, season: span(120, 272), leafOn: span(120, 272),
@@ -75,13 +85,13 @@ stand:
   height: 24 m
   crown_base: 9 m
   layers: [{from: 9 m, to: 24 m, lai: 4, wai: 0, chi: 1, clumping: 0.95, absorptance: 0.85, leaves: evergreen}]
-seedlings:`+oneSet+`
+seedlings:`+oneSet+strings.TrimPrefix(hungrySet, "\n")+`
 treatments: [{name: Circle, opening: {circle: {diameter: 30 m}}, measured: crowns}]
 stations:
   - {name: centre, distance: 0 m}
   - {name: north, bearing: N, distance: 14.5 m}
   - {name: under, bearing: SE, distance: 27 m}
-`, false, []*brutePlant{fir()})
+`, false, []*brutePlant{fir(), hungry()})
 }
 
 // Deciduous stand over a deciduous understory on a slope, oval opening, overcast sky, sets that differ, early leaves.
