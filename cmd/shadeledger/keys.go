@@ -61,8 +61,11 @@ func runKeys(o keysOptions) error {
 	return o.deliver(o.io, nil, func(out report.Output) error { return report.Keys(out, keys) })
 }
 
-// findKeys gives the key of that path, else those that begin with the words, else those that hold them; all for "".
+// findKeys gives the key of that path, else those that begin with the words, else those that hold them; all for "". The
+// [] of list items may be left out.
 func findKeys(text string) []report.Key {
+	plain := strings.NewReplacer("[]", "")
+	text = plain.Replace(text)
 	tests := []func(path string) bool{
 		func(path string) bool { return path == text },
 		func(path string) bool { return strings.HasPrefix(path, text) },
@@ -71,7 +74,7 @@ func findKeys(text string) []report.Key {
 	for _, fits := range tests {
 		var out []report.Key
 		for _, k := range plan.Keys {
-			if fits(k.Path) {
+			if fits(plain.Replace(k.Path)) {
 				out = append(out, shown(k))
 			}
 		}
