@@ -12,8 +12,15 @@ type Results struct {
 	Stations []TreatmentStations // by treatment
 	Light    []LightRow
 	Balance  []BalanceRow
-	Warnings []Warning // of the plan and of the run
+	Neutral  []NeutralShade // by seedling, where break-evens were asked for
+	Warnings []Warning      // of the plan and of the run
 	Assumed  []Assumed
+}
+
+// NeutralShade is a seedling's break-even where sun and sky are dimmed alike all year: it depends on species and site only.
+type NeutralShade struct {
+	Seedling  string
+	BreakEven ledger.BreakEven
 }
 
 // TreatmentStations names the stations of a treatment in their order.

@@ -60,6 +60,9 @@ func RunSeries(p *Plan, series *weather.Series, opts Options) (*Results, error) 
 	if opts.Depth > Light {
 		res.Warnings = append(res.Warnings, frozen(p, series)...)
 	}
+	if opts.Depth == BreakEvens {
+		res.Neutral = r.neutral()
+	}
 	for i := range p.Treatments {
 		if err := r.treatment(&p.Treatments[i], res); err != nil {
 			return nil, err
@@ -113,6 +116,16 @@ func prepare(p *Plan, above *light.Above) []*ledger.Prepared {
 			plant.SnowDays = func(day int) bool { return covered[day] }
 		}
 		out[i] = ledger.Prepare(&plant, above)
+	}
+	return out
+}
+
+// neutral finds every seedling's break-even in neutral shade.
+func (r *runner) neutral() []NeutralShade {
+	out := make([]NeutralShade, len(r.prepared))
+	keeper := ledger.NewKeeper(r.season, r.season)
+	for i, plant := range r.prepared {
+		out[i] = NeutralShade{r.plan.Seedlings[i].Name, keeper.NeutralShade(plant)}
 	}
 	return out
 }

@@ -37,7 +37,14 @@ type document struct {
 	Assumed  []jsonAssumed   `json:"assumed"`
 	Warnings []jsonWarning   `json:"warnings"`
 	Cautions []jsonCaution   `json:"cautions"`
+	Neutral  []jsonNeutral   `json:"neutral_shade,omitempty"`
 	Notice   string          `json:"notice"`
+}
+
+// jsonNeutral is a break-even in neutral shade; null where there is none.
+type jsonNeutral struct {
+	Species   string   `json:"species"`
+	BreakEven *float64 `json:"break_even_pct"`
 }
 
 // writeJSON writes rows with the notes.
@@ -53,6 +60,13 @@ func (n notes) writeJSON(w io.Writer, rows json.RawMessage) error {
 	for _, c := range n.plan.Cautions {
 		d.Cautions = append(d.Cautions, jsonCaution{c.Key, c.State, c.Text, c.By, c.Note})
 	}
+	for _, x := range n.neutral {
+		row := jsonNeutral{Species: x.Seedling}
+		if x.BreakEven.Found {
+			row.BreakEven = &x.BreakEven.Season
+		}
+		d.Neutral = append(d.Neutral, row)
+	}
 	e := json.NewEncoder(w)
 	e.SetEscapeHTML(false)
 	e.SetIndent("", " ")
@@ -64,6 +78,17 @@ func (n notes) write(w io.Writer) error {
 	p := &printer{w: w}
 	for i, x := range n.warnings {
 		hang(p, "Note "+itoa(i+1)+": ", x.Key+": "+x.Text)
+	}
+	if len(n.neutral) > 0 {
+		var items []string
+		for _, x := range n.neutral {
+			at := "none at any light"
+			if x.BreakEven.Found {
+				at = decimal(x.BreakEven.Season, 1) + " %"
+			}
+			items = append(items, x.Seedling+" "+at)
+		}
+		hang(p, "Break-even if sun and sky were dimmed alike all year: ", strings.Join(items, ", "))
 	}
 	if len(n.assumed) > 0 {
 		p.f("Assumed, because the plan does not say (%d values; sources: shadeledger check):\n", len(n.assumed))

@@ -64,9 +64,10 @@ type notes struct {
 	plan     *scenarios.Plan
 	assumed  []scenarios.Assumed
 	warnings []scenarios.Warning
+	neutral  []scenarios.NeutralShade
 }
 
-func notesOf(r *scenarios.Results) notes { return notes{r.Plan, r.Assumed, r.Warnings} }
+func notesOf(r *scenarios.Results) notes { return notes{r.Plan, r.Assumed, r.Warnings, r.Neutral} }
 
 // printer collects the first error of a run of writes.
 type printer struct {
