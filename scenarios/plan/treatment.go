@@ -52,6 +52,10 @@ func (r *reader) matrix(v val, p *scenarios.Plan, leaves val) []scenarios.Layer 
 	if !ok || total == 0 {
 		return uncut
 	}
+	if lai > total*(1+1e-9) {
+		r.fault(f["lai"], "", fmt.Sprintf("no more than the uncut stand's leaf area index, %.4g; state layers to add leaves", total))
+		return uncut
+	}
 	out := make([]scenarios.Layer, len(uncut))
 	for i, l := range uncut {
 		l.LAI *= lai / total
