@@ -8,6 +8,7 @@ import (
 	"github.com/jedib0t/go-pretty/v6/table"
 	"github.com/jedib0t/go-pretty/v6/text"
 
+	"shadeledger/leaf"
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
 )
@@ -131,7 +132,32 @@ func ledgerTable(o Output, r *scenarios.Results) error {
 	if p.err == nil {
 		p.err = render(o.Out, t, 5, 6, 7, 8, 9, 10, 11, 12, 13)
 	}
+	leafRules(p, r)
 	return p.err
+}
+
+// leafRules prints for each seedling the rule of its leaf traits, with what took hold at its darkest and brightest spot.
+func leafRules(p *printer, r *scenarios.Results) {
+	for _, s := range r.Plan.Seedlings {
+		low, up := math.Inf(1), math.Inf(-1)
+		for j := range r.Balance {
+			if b := &r.Balance[j]; b.Species == s.Name {
+				low, up = min(low, b.LightLeafOn), max(up, b.LightLeafOn)
+			}
+		}
+		if s.Ledger == ledger.FirstSeason || low > up {
+			continue
+		}
+		rule := s.Traits.Rule()
+		at := func(L float64) string {
+			held := strings.TrimPrefix(strings.TrimPrefix(leaf.Applied(s.Traits, L), rule), "; ")
+			if held == "" {
+				held = "between"
+			}
+			return whole(L) + " %: " + held
+		}
+		hang(p, "Leaves of "+s.Name+": ", rule+". At "+at(low)+"; at "+at(up)+".")
+	}
 }
 
 // seasonLine names the season and the sky the figures stand for.
