@@ -188,3 +188,22 @@ func TestMeasuredDays(t *testing.T) {
 		t.Errorf("RMSE %.4f over %d days, want 0.093", rmse, n)
 	}
 }
+
+// Photons per joule of PAR: the constant to its printed digits, and near what the reference spectrum gives; full sun is about
+// 2000 umol m-2 s-1 (common practice).
+func TestPhotonsPerJoule(t *testing.T) {
+	v := map[string]float64{}
+	for _, r := range rows(t, "par.csv") {
+		v[r["quantity"]] = number(t, r["value"])
+	}
+	if PhotonsPerJoule != v["photons_per_par_joule_daylight"] {
+		t.Errorf("%g umol per J, want %g", PhotonsPerJoule, v["photons_per_par_joule_daylight"])
+	}
+	if spectrum := v["global_tilt37_photons_per_par_joule"]; math.Abs(PhotonsPerJoule/spectrum-1) > 0.01 {
+		t.Errorf("%g umol per J, the reference spectrum has %g", PhotonsPerJoule, spectrum)
+	}
+	sun := v["global_tilt37_total_280_4000nm"]
+	if ppfd := sun * 0.45 * PhotonsPerJoule; math.Abs(ppfd/v["global_tilt37_ppfd"]-1) > 0.05 || math.Abs(ppfd-v["full_sun_ppfd"]) > 100 {
+		t.Errorf("full sun of %.0f W m-2 makes %.0f umol m-2 s-1; the spectrum has %.0f, practice %.0f", sun, ppfd, v["global_tilt37_ppfd"], v["full_sun_ppfd"])
+	}
+}
