@@ -124,7 +124,7 @@ func TestAllocationsOfAWholeRun(t *testing.T) {
 	}
 	long, short := count(year), count(days(year, 181, 211))
 	t.Logf("%.0f allocations for 365 days, %.0f for 30", long, short)
-	const pool = 4 // the eigenvalue routine keeps pools, which a collection of the larger run may empty
+	const pool = 10 // the eigenvalue routine and the scheduler keep pools, which a collection of the larger run may empty; 335 days lie between
 	if math.Abs(long-short) > pool || len(deciduous) == 0 {
 		t.Errorf("%.0f allocations for 365 days, %.0f for 30, of %d plants; want the same", long, short, len(deciduous))
 	}
