@@ -143,7 +143,7 @@ func parse(file string, data []byte, opts Options, files opener) (*scenarios.Pla
 func (r *reader) document(data []byte) (*yaml.Node, bool) {
 	var doc yaml.Node
 	err := yaml.Load(data, &doc)
-	if err == nil && len(doc.Content) == 1 {
+	if err == nil && len(doc.Content) == 1 && doc.Content[0].Tag != "!!null" {
 		return doc.Content[0], true
 	}
 	f := Fault{File: r.file, Fix: "write a plan: a block of keys; shadeledger keys lists them"}
