@@ -47,14 +47,11 @@ type Dome struct {
 // Crown outlines bound foliage.
 type Outline interface {
 	Contains(x, y float64) bool
-	Area() float64         // m2
-	MeanDiameter() float64 // m
+	Area() float64 // m2
 	// cross appends the distances s > 0, ascending, at which a ray from (x, y) along the unit vector
 	// (ux, uy) passes the outline.
 	cross(x, y, ux, uy float64, dst []float64) []float64
 	grow(d float64) (Outline, error)
-	corners() []vertex
-	outline()
 }
 
 // vertex is a corner of an outline.

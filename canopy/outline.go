@@ -73,9 +73,6 @@ func (c Circle) Contains(x, y float64) bool { return 4*(x*x+y*y) < c.diameter*c.
 // Area, m2.
 func (c Circle) Area() float64 { return math.Pi / 4 * c.diameter * c.diameter }
 
-// MeanDiameter, m.
-func (c Circle) MeanDiameter() float64 { return c.diameter }
-
 // grow moves the outline outward by d.
 func (c Circle) grow(d float64) (Outline, error) { return NewCircle(c.diameter + 2*d) }
 
@@ -101,10 +98,6 @@ func crossRound(x, y, ux, uy, r2 float64, dst []float64) []float64 {
 	return dst
 }
 
-func (c Circle) corners() []vertex { return nil }
-
-func (Circle) outline() {}
-
 // local turns a vector into along and across a bearing.
 func local(x, y, bearing float64) (along, across float64) {
 	s, c := math.Sincos(bearing)
@@ -120,9 +113,6 @@ func (e Ellipse) Contains(x, y float64) bool {
 
 // Area, m2.
 func (e Ellipse) Area() float64 { return math.Pi / 4 * e.length * e.width }
-
-// MeanDiameter is the mean of length and width, m.
-func (e Ellipse) MeanDiameter() float64 { return (e.length + e.width) / 2 }
 
 // grow lengthens both axes by 2d: the parallel curve of an ellipse is not one, and differs by at most a few
 // hundredths of d for the shapes that are cut.
@@ -140,10 +130,6 @@ func (e Ellipse) cross(x, y, ux, uy float64, dst []float64) []float64 {
 	return crossRound(u*a, v*b, du*a, dv*b, 1, dst)
 }
 
-func (Ellipse) corners() []vertex { return nil }
-
-func (Ellipse) outline() {}
-
 // Contains tells whether a spot is inside.
 func (s Strip) Contains(x, y float64) bool {
 	u, v := local(x, y, s.bearing)
@@ -152,9 +138,6 @@ func (s Strip) Contains(x, y float64) bool {
 
 // Area, m2.
 func (s Strip) Area() float64 { return s.length * s.width }
-
-// MeanDiameter is the mean of length and width, m.
-func (s Strip) MeanDiameter() float64 { return (s.length + s.width) / 2 }
 
 func (s Strip) grow(d float64) (Outline, error) {
 	return NewStrip(s.length+2*d, s.width+2*d, s.bearing)
@@ -186,18 +169,6 @@ func (s Strip) cross(x, y, ux, uy float64, dst []float64) []float64 {
 	}
 	return dst
 }
-
-func (s Strip) corners() []vertex {
-	sin, cos := math.Sincos(s.bearing)
-	var out []vertex
-	for _, k := range [4][2]float64{{1, 1}, {1, -1}, {-1, -1}, {-1, 1}} {
-		u, v := k[0]*s.length/2, k[1]*s.width/2
-		out = append(out, vertex{u*sin + v*cos, u*cos - v*sin})
-	}
-	return out
-}
-
-func (Strip) outline() {}
 
 // Reach is how far a ray from the origin runs along an azimuth before it first leaves the outline, m.
 func Reach(o Outline, azimuth float64) float64 {

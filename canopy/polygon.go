@@ -61,15 +61,6 @@ func (p Polygon) extent() float64 {
 	return math.Max(hi.x-lo.x, hi.y-lo.y)
 }
 
-// Corners are the corners relative to the centre, anticlockwise.
-func (p Polygon) Corners() [][2]float64 {
-	out := make([][2]float64, len(p.ring))
-	for i, v := range p.ring {
-		out[i] = [2]float64{v.x, v.y}
-	}
-	return out
-}
-
 func signedArea(ring []vertex) float64 {
 	sum := 0.0
 	for i, a := range ring {
@@ -190,9 +181,6 @@ func (p Polygon) Contains(x, y float64) bool { return contains(p.ring, x, y) }
 // Area, m2.
 func (p Polygon) Area() float64 { return signedArea(p.ring) }
 
-// MeanDiameter is that of the circle of equal area, m.
-func (p Polygon) MeanDiameter() float64 { return math.Sqrt(4 * p.Area() / math.Pi) }
-
 func (p Polygon) cross(x, y, ux, uy float64, dst []float64) []float64 {
 	from := len(dst)
 	for i, a := range p.ring {
@@ -212,8 +200,6 @@ func (p Polygon) cross(x, y, ux, uy float64, dst []float64) []float64 {
 	sort.Float64s(dst[from:])
 	return dst
 }
-
-func (p Polygon) corners() []vertex { return p.ring }
 
 // arcStep is the largest turn of a side where the outline goes round a corner, rad.
 const arcStep = math.Pi / 18
@@ -258,5 +244,3 @@ func outward(a, b vertex) vertex {
 	l := math.Hypot(b.x-a.x, b.y-a.y)
 	return vertex{(b.y - a.y) / l, -(b.x - a.x) / l}
 }
-
-func (Polygon) outline() {}

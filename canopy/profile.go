@@ -13,8 +13,6 @@ type Profile struct {
 	kinds     []kind
 	wood      []float64 // cumulative Omega * WAI at the knots
 	phenology int       // one more than the highest index
-	totalLeaf float64
-	totalWood float64
 	ends      []float64 // lowest bound above the ground, and the highest
 }
 
@@ -81,8 +79,6 @@ func distinct(v []float64) []float64 {
 
 func (p *Profile) add(l Layer) {
 	p.phenology = max(p.phenology, l.Phenology+1)
-	p.totalLeaf += l.LAI
-	p.totalWood += l.WAI
 	var k *kind
 	for i := range p.kinds {
 		q := &p.kinds[i]
@@ -100,15 +96,6 @@ func (p *Profile) add(l Layer) {
 		p.wood[i] += share * l.Clumping * l.WAI
 	}
 }
-
-// Phenologies is one more than the highest phenology index of the layers.
-func (p *Profile) Phenologies() int { return p.phenology }
-
-// LAI and WAI are the profile's leaf and wood area index.
-func (p *Profile) LAI() float64 { return p.totalLeaf }
-
-// WAI is the wood area index.
-func (p *Profile) WAI() float64 { return p.totalWood }
 
 // Top is the highest layer bound, m.
 func (p *Profile) Top() float64 { return p.knots[len(p.knots)-1] }
@@ -135,7 +122,7 @@ func (p *Profile) locate(h float64) place {
 	return place{i, (h - p.knots[i]) / (p.knots[i+1] - p.knots[i])}
 }
 
-// at reads a cumulative curve at a place.
+// read gives a cumulative curve at a place.
 func (at place) read(cumulative []float64) float64 {
 	if at.f == 0 {
 		return cumulative[at.i]

@@ -56,9 +56,6 @@ func NewStand(matrix *Profile, openings []Opening, ground Ground, horizon Horizo
 	return s, nil
 }
 
-// Phenologies is how many shares of leaf the stand's light depends on.
-func (s *Stand) Phenologies() int { return s.groups }
-
 // At is the elevation of the horizon (rad) at an azimuth, linear between its points; 0 without any.
 func (h Horizon) At(azimuth float64) float64 {
 	n := len(h.Azimuth)

@@ -18,9 +18,6 @@ func Gross(ppfd, ag, phi, theta float64) float64 {
 	return 2 * x * ag / (x + ag + math.Sqrt(d*d+4*(1-theta)*ag*x))
 }
 
-// Net is Gross less dark respiration rd, umol CO2 m-2 s-1.
-func Net(ppfd, ag, rd, phi, theta float64) float64 { return Gross(ppfd, ag, phi, theta) - rd }
-
 // Response is a light response with its constants worked out once, for inner loops.
 type Response struct {
 	ag, rd, phi, theta float64
@@ -34,9 +31,6 @@ func (s Set) Response() Response {
 
 // Rd is dark respiration, umol CO2 m-2 s-1.
 func (r Response) Rd() float64 { return r.rd }
-
-// Ag is the gross light-saturated rate, umol CO2 m-2 s-1.
-func (r Response) Ag() float64 { return r.ag }
 
 // Gross is gross assimilation at incident PPFD, umol CO2 m-2 s-1, as the function Gross.
 func (r Response) Gross(ppfd float64) float64 {
