@@ -18,25 +18,21 @@ const root = "../.."
 
 // allowed holds for every package the packages of the project it may import; nothing points back. DEVELOPERS.md draws it.
 var allowed = map[string][]string{
-	"radiation":          {},
-	"radiation/weather":  {"radiation"},
-	"leaf":               {},
-	"leaf/traits":        {"leaf"},
-	"canopy":             {"leaf"},
-	"scenarios/light":    {"radiation", "radiation/weather", "canopy"},
-	"scenarios/ledger":   {"leaf", "canopy", "scenarios/light"},
-	"scenarios":          {"radiation", "radiation/weather", "canopy", "leaf", "scenarios/light", "scenarios/ledger"},
-	"scenarios/plan":     {"radiation", "radiation/weather", "canopy", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
-	"scenarios/report":   {"leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
-	"scenarios/examples": {},
-	"cmd/shadeledger":    {"leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
+	"radiation":         {},
+	"radiation/weather": {"radiation"},
+	"leaf":              {},
+	"leaf/traits":       {"leaf"},
+	"canopy":            {},
+	"scenarios/light":   {"radiation", "radiation/weather", "canopy"},
+	"scenarios/ledger":  {"leaf", "canopy", "scenarios/light"},
+	"scenarios":         {"radiation", "radiation/weather", "canopy", "leaf", "scenarios/light", "scenarios/ledger"},
+	"scenarios/plan":    {"radiation", "radiation/weather", "canopy", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
+	"scenarios/report":  {"leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
+	"cmd/shadeledger":   {"leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
 }
 
 // theories hold the physics: the standard library and gonum only.
 var theories = []string{"radiation", "radiation/weather", "leaf", "leaf/traits", "canopy", "scenarios/light", "scenarios/ledger", "scenarios"}
-
-// longFiles may pass the limit of lines, each for a reason.
-var longFiles = map[string]string{}
 
 const mostLines = 400
 
@@ -168,8 +164,8 @@ func TestGoroutinesLiveInLight(t *testing.T) {
 
 func TestFilesAreShort(t *testing.T) {
 	for _, s := range sources(t) {
-		if reason := longFiles[s.path]; s.lines > mostLines && reason == "" {
-			t.Errorf("%s has %d lines; at most %d, or a reason in longFiles", s.path, s.lines, mostLines)
+		if s.lines > mostLines {
+			t.Errorf("%s has %d lines; at most %d", s.path, s.lines, mostLines)
 		}
 	}
 }

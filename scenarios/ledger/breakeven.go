@@ -244,7 +244,8 @@ func NewBreakEven(season, leafOn, factor float64) BreakEven {
 	}}
 }
 
-// bracket is the scale of the brightest regime that scaling can reach, and the step between trials.
+// bracket is the lowest scale tried above 0 and the ratio from one trial to the next; the last lies beyond where scaling
+// brightens no more. 0 where there is no light to scale.
 func (k *Keeper) bracket() (low, ratio float64) {
 	at := k.capLeafOn.Percent(1)
 	if at <= 0 {
