@@ -34,23 +34,31 @@ func circle(t testing.TB, d float64) Outline {
 
 // skyLight is the share of a uniform or overcast sky's light on the level plane at a point.
 func skyLight(s *Stand, p Point, d *Dome, shares []float64, overcast bool) float64 {
+	both := skyLights(s, p, d, shares)
+	if overcast {
+		return both[1]
+	}
+	return both[0]
+}
+
+// skyLights are the shares of a uniform and of an overcast sky, from one scan.
+func skyLights(s *Stand, p Point, d *Dome, shares []float64) [2]float64 {
 	scan := s.NewSkyScan(d)
 	scan.Scan(p)
 	c := NewCellLight(d)
 	scan.Transmit(shares, c)
 	open := d.Open()
-	sum, all := 0.0, 0.0
+	var sum, all [2]float64
 	for i := range c.Plane {
-		R := 1.0
-		if overcast { // mean over the ring, cosine-weighted: 1 + 2 <cos>
-			r := i / d.Sectors
-			c0, c1 := math.Cos(d.Zenith[r]), math.Cos(d.Zenith[r+1])
-			R = 1 + 2*(2.0/3)*(c0*c0*c0-c1*c1*c1)/(c0*c0-c1*c1)
+		// mean of an overcast sky over the ring, cosine-weighted: 1 + 2 <cos>
+		r := i / d.Sectors
+		c0, c1 := math.Cos(d.Zenith[r]), math.Cos(d.Zenith[r+1])
+		for sky, R := range [2]float64{1, 1 + 2*(2.0/3)*(c0*c0*c0-c1*c1*c1)/(c0*c0-c1*c1)} {
+			sum[sky] += R * c.Plane[i]
+			all[sky] += R * open.Plane[i]
 		}
-		sum += R * c.Plane[i]
-		all += R * open.Plane[i]
 	}
-	return sum / all
+	return [2]float64{sum[0] / all[0], sum[1] / all[1]}
 }
 
 // slab is one uniform layer of spherical, black, unclumped leaves.

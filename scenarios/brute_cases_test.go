@@ -73,7 +73,7 @@ var hungrySet = strings.NewReplacer("name: Fir", "name: Hungry", "stem: 2 g", "s
 func TestPlainEvergreenCircle(t *testing.T) {
 	t.Parallel()
 	c := &bruteCase{lat: 44.35, lon: -71.9, offset: -5, stepMinutes: 60, season: span(120, 272), leafOn: span(120, 272),
-		inside: func(x, y float64) bool { return math.Hypot(x, y) < 15 },
+		inside: func(x, y float64) bool { return x*x+y*y < 15*15 },
 		matrix: []bruteLayer{{9, 24, 4, 0, 1, 0.95, 0.85, always}}}
 	hours(c)
 	check(t, c, `
@@ -97,13 +97,13 @@ stations:
 // Deciduous stand over a deciduous understory on a slope, oval opening, overcast sky, sets that differ, early leaves.
 func TestPlainDeciduousSlope(t *testing.T) {
 	t.Parallel()
+	sin, cos := math.Sincos(70 * rad)
 	leaves, shrub := ramp(133, 154, 270, 290), ramp(125, 140, 265, 285)
 	under := bruteLayer{0.6, 2, 0.8, 0.1, 1, 1, 0.85, shrub}
 	c := &bruteCase{lat: 44.35, lon: -71.9, offset: -5, slope: 0.3, aspect: 155, overcast: true, stepMinutes: 60,
 		season: span(120, 272), leafOn: span(154, 265),
 		inside: func(x, y float64) bool {
-			b := 70 * rad
-			u, v := x*math.Sin(b)+y*math.Cos(b), x*math.Cos(b)-y*math.Sin(b)
+			u, v := x*sin+y*cos, x*cos-y*sin
 			return u*u/400+v*v/100 < 1
 		},
 		matrix:  []bruteLayer{{9, 24, 3.5, 0.5, 1.6, 0.9, 0.85, leaves}, under},
@@ -131,10 +131,10 @@ stations:
 // Southern hemisphere, season across New Year, stamps at the end of the hour, a strip, clumped layers with wood, two plants.
 func TestPlainSouthernStripEndStamp(t *testing.T) {
 	t.Parallel()
+	sin, cos := math.Sincos(120 * rad)
 	c := &bruteCase{lat: -41, lon: 146, offset: 10, stepMinutes: 30, season: span(304, 89), leafOn: span(304, 89),
 		inside: func(x, y float64) bool {
-			b := 120 * rad
-			return math.Abs(x*math.Sin(b)+y*math.Cos(b)) < 30 && math.Abs(x*math.Cos(b)-y*math.Sin(b)) < 8
+			return math.Abs(x*sin+y*cos) < 30 && math.Abs(x*cos-y*sin) < 8
 		},
 		matrix: []bruteLayer{{8, 20, 2.5, 0.4, 1, 0.7, 0.85, always}, {14, 26, 1.5, 0.2, 0.7, 0.8, 0.8, always}}}
 	hours(c)

@@ -70,24 +70,26 @@ func (c *bruteCase) march(x, y, z, β, φ float64) (leaf []float64, wood float64
 	if m <= 1e-9 {
 		return leaf, 0, true
 	}
-	top := 0.0
-	for _, l := range append(append([]bruteLayer{}, c.matrix...), c.opening...) {
+	top, ds := 0.0, math.Min(0.05, 0.02/m)
+	sin, cos := math.Sincos(φ)
+	// depth of leaves and of wood that a step adds in each layer
+	stepLeaf, stepWood := make([]float64, len(leaf)), make([]float64, len(leaf))
+	for i := range leaf {
+		l := c.layer(i)
 		top = math.Max(top, l.to)
+		path := ds / math.Cos(β) / (l.to - l.from) * l.clumping
+		stepLeaf[i], stepWood[i] = project(l.chi, math.Pi/2-β)*l.lai*path, 0.5*l.wai*path
 	}
-	ds := math.Min(0.05, 0.02/m)
-	θ := math.Pi/2 - β
 	for s := ds / 2; z+s*m < top; s += ds {
 		h := z + s*m
 		list, base := c.matrix, 0
-		if c.inside != nil && c.inside(x+s*math.Sin(φ), y+s*math.Cos(φ)) {
+		if c.inside != nil && c.inside(x+s*sin, y+s*cos) {
 			list, base = c.opening, len(c.matrix)
 		}
 		for i := range list {
-			l := &list[i]
-			if h > l.from && h < l.to {
-				path := ds / math.Cos(β) / (l.to - l.from) * l.clumping
-				leaf[base+i] += project(l.chi, θ) * l.lai * path
-				wood += 0.5 * l.wai * path
+			if l := &list[i]; h > l.from && h < l.to {
+				leaf[base+i] += stepLeaf[base+i]
+				wood += stepWood[base+i]
 			}
 		}
 		if wood > 40 {

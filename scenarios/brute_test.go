@@ -110,11 +110,16 @@ func check(t *testing.T, c *bruteCase, text string, end bool, plants []*brutePla
 		t.Fatal(err)
 	}
 	var worstLight, worstLine, worstBreak float64
+	regimes := map[[3]float64]*bruteRegime{} // by spot and height, shared by the plants there
 	for i, row := range res.Balance {
 		st := p.Stations[i/len(p.Seedlings)]
 		pl := plants[i%len(p.Seedlings)]
 		x, y := st.Distance*math.Sin(st.Bearing), st.Distance*math.Cos(st.Bearing)
-		r := c.regime(x, y, pl.height)
+		spot := [3]float64{x, y, pl.height}
+		if regimes[spot] == nil {
+			regimes[spot] = c.regime(x, y, pl.height)
+		}
+		r := regimes[spot]
 		where := row.Station + ", " + row.Species
 		season, on := r.percent(1, c.season), r.percent(1, c.leafOn)
 		for name, v := range map[string][2]float64{"season": {row.Light, season}, "leaf-on": {row.LightLeafOn, on}} {
