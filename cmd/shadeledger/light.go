@@ -1,6 +1,8 @@
 package main
 
 import (
+	"strings"
+
 	"github.com/spf13/cobra"
 
 	"shadeledger/scenarios"
@@ -84,5 +86,5 @@ func parseBy(s string, words []string) (scenarios.By, error) {
 			return all[w], nil
 		}
 	}
-	return 0, usagef("--by %q is not known; it must be one of %v", s, words)
+	return 0, usagef("--by %q is not known; it must be one of %s", s, strings.Join(words, ", "))
 }

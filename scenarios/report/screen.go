@@ -57,9 +57,16 @@ func readAs(p *scenarios.Plan, u scenarios.Units) string {
 	return s
 }
 
-// footer points to what was assumed and to the cautions.
+// footer points to the notes below the screen, to what was assumed and to the cautions.
 func footer(r *scenarios.Results) []string {
-	return []string{itoa(open(r.Plan)) + " cautions open, " + itoa(len(r.Assumed)) + " values assumed: shadeledger check. No range yet."}
+	s := itoa(open(r.Plan)) + " cautions open, " + itoa(len(r.Assumed)) + " values assumed: shadeledger check. No range yet."
+	switch n := len(r.Warnings); {
+	case n == 1:
+		s = "1 note, " + s
+	case n > 1:
+		s = itoa(n) + " notes, " + s
+	}
+	return wrap(s, Width, Width)
 }
 
 // cell is the words of an outcome.
