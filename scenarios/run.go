@@ -3,6 +3,7 @@ package scenarios
 import (
 	"errors"
 	"fmt"
+	"slices"
 	"strings"
 
 	"shadeledger/canopy"
@@ -142,11 +143,7 @@ func frozen(p *Plan, s *weather.Series) []Warning {
 		}
 		days := 0.0
 		for d := range s.Days {
-			mean := 0.0
-			for _, T := range s.Temperature[d*s.PerDay : (d+1)*s.PerDay] {
-				mean += T / float64(s.PerDay)
-			}
-			if mean < 0 && !(covered[d] && p.Snow.Depth > plant.Height) {
+			if slices.Min(s.Temperature[d*s.PerDay:(d+1)*s.PerDay]) < 0 && !(covered[d] && p.Snow.Depth > plant.Height) {
 				days += s.Days[d].Weight / float64(s.Years)
 			}
 		}
@@ -158,7 +155,7 @@ func frozen(p *Plan, s *weather.Series) []Warning {
 	if len(names) == 0 {
 		return nil
 	}
-	return []Warning{{Key: "seedlings", Text: fmt.Sprintf("evergreen and above the snow on %.0f days a year with a mean below 0 C: %s; winter dormancy is not modelled, so their income is too high and their break-even too low",
+	return []Warning{{Key: "seedlings", Text: fmt.Sprintf("evergreen and above the snow on %.0f days of frost a year: %s; neither winter dormancy nor a slow spring is modelled, so read their class as too favourable, most of all under leafless trees",
 		most, strings.Join(names, ", "))}}
 }
 

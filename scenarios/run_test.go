@@ -3,6 +3,7 @@ package scenarios_test
 import (
 	"math"
 	"reflect"
+	"strings"
 	"testing"
 	"time"
 
@@ -10,6 +11,7 @@ import (
 	"shadeledger/radiation/weather"
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
+	"shadeledger/scenarios/plan"
 )
 
 func TestRowsKeepThePlansOrder(t *testing.T) {
@@ -184,5 +186,41 @@ func TestSnowCoversLowPlants(t *testing.T) {
 		if covered && s.Lines[ledger.Income] != 0 || !covered && s.Lines != b.Lines {
 			t.Errorf("%s in month %s: income %g without snow, %g with 0.3 m", b.Species, b.Period, b.Lines[ledger.Income], s.Lines[ledger.Income])
 		}
+	}
+}
+
+// Evergreens above the snow on days of frost are named, by the day's lowest temperature; mild winters and snow over the plants
+// bring no note.
+func TestFrostOnEvergreensIsTold(t *testing.T) {
+	note := func(example string, set ...string) string {
+		p, faults := plan.ReadExample(example, plan.Options{Set: set})
+		if faults != nil {
+			t.Fatal(faults)
+		}
+		p.Treatments = p.Treatments[:1]
+		p.Sampling.Step = time.Hour
+		r, err := scenarios.Run(p, scenarios.Options{Depth: scenarios.Ledgers})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, w := range r.Warnings {
+			if strings.Contains(w.Text, "dormancy") {
+				return w.Text
+			}
+		}
+		return ""
+	}
+	if got := note("kettle-bench"); !strings.Contains(got, "White pine, Hemlock;") {
+		t.Errorf("kettle-bench: %q", got)
+	}
+	if got := note("kestrel-fork"); got != "" {
+		t.Errorf("kestrel-fork has no frost, yet: %q", got)
+	}
+	// means above 0 C, nights below
+	if got := note("kestrel-fork", "weather.normals.min=[-5, 1.1, 2.2, 3.7, 6.6, 9.3, 11.5, 11.6, 9.5, 6.4, 3.3, 1.2]"); !strings.Contains(got, "Thuja plicata") {
+		t.Errorf("frosty nights: %q", got)
+	}
+	if got := note("kettle-bench", "snow.from=10-01", "snow.to=05-31"); got != "" {
+		t.Errorf("under snow all winter, yet: %q", got)
 	}
 }

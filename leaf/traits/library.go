@@ -124,6 +124,7 @@ func plain(name string) string {
 	}, name)
 }
 
+// nearest lists three names: those that hold the words asked for first, then by letters that differ.
 func (c *Catalogue) nearest(name string) []string {
 	type hit struct {
 		distance int
@@ -135,6 +136,9 @@ func (c *Catalogue) nearest(name string) []string {
 		d, show := distance(want, plain(s.Botanical)), s.Botanical
 		if e := distance(want, plain(s.Common)); e < d {
 			d, show = e, s.Common
+		}
+		if strings.Contains(plain(s.Common), want) {
+			d, show = -1, s.Common
 		}
 		hits = append(hits, hit{d, show})
 	}

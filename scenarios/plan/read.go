@@ -198,8 +198,12 @@ func (r *reader) plan(v val) *scenarios.Plan {
 	return p
 }
 
+// mostApart is how far standard time lies from the sun's at most, hours; the widest in use is about three (common practice).
+const mostApart = 4
+
 func (r *reader) site(v val, p *scenarios.Plan) {
 	f := r.fields(v)
+	before := len(r.faults)
 	coordinate := func(name, positive, negative string, limit float64) float64 {
 		if v.node == nil {
 			return 0
@@ -211,6 +215,9 @@ func (r *reader) site(v val, p *scenarios.Plan) {
 	p.Site.Longitude = coordinate("longitude", "E", "W", 180)
 	x, ok := r.number(f["utc_offset"])
 	solar := p.Site.Longitude / rad / 15
+	if apart := math.Abs(math.Remainder(x-solar, 24)); ok && len(r.faults) == before && apart > mostApart {
+		r.fault(f["utc_offset"], "", fmt.Sprintf("within %d hours of the sun's own time at this longitude, %.1f hours; a bare longitude is east positive: west is -, or W", mostApart, solar))
+	}
 	p.Site.UTCOffset = r.or(x, ok, f["utc_offset"], "site.utc_offset", solar, fmt.Sprintf("%.2f hours", solar), "solar time of the longitude")
 	x, ok = r.quantity(f["elevation"])
 	p.Site.Elevation = r.or(x, ok, f["elevation"], "site.elevation", 0, "0 m", "left out")
