@@ -19,7 +19,7 @@ const smallest, largest = 0.0, 1000.0
 
 func checkSize(name string, v float64) error {
 	if !(v >= smallest && v <= largest) {
-		return fmt.Errorf("%s is %.4g m; it must be above 0 and at most 1000 m", name, v)
+		return fmt.Errorf("%s is %.4g m; it must be 0 to 1000 m", name, v)
 	}
 	return nil
 }

@@ -30,7 +30,7 @@ func NewStand(matrix *Profile, openings []Opening, ground Ground, horizon Horizo
 		return nil, errors.New("a stand needs a matrix; use a profile without layers for open ground")
 	}
 	if !(ground.Slope >= 0 && ground.Slope < 80*math.Pi/180) {
-		return nil, fmt.Errorf("slope is %.3g rad; 0 to 80 degrees", ground.Slope)
+		return nil, fmt.Errorf("slope is %.3g degrees; it must be 0 to 80", ground.Slope*180/math.Pi)
 	}
 	if len(horizon.Azimuth) != len(horizon.Elevation) {
 		return nil, errors.New("the horizon needs an elevation for every azimuth")

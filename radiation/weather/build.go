@@ -50,7 +50,8 @@ func newFrame(site radiation.Site, step time.Duration, dates []date) *frame {
 	for d, date := range dates {
 		midnight := time.Date(date.year, date.month, date.day, 0, 0, 0, 0, time.UTC).Add(-offset)
 		f.day(h, midnight, d)
-		s.Days[d].Month, s.Days[d].Day, s.Days[d].Weight = date.month, date.day, date.weight
+		x := &s.Days[d]
+		x.Year, x.Month, x.Day, x.Weight = date.year, date.month, date.day, date.weight
 	}
 	m := len(s.Lit.Step)
 	s.Lit.Beam, s.Lit.Diffuse = s.Lit.Beam[:m], s.Lit.Diffuse[:m]

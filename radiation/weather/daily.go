@@ -27,7 +27,6 @@ func (r *Daily) Series(site radiation.Site, step time.Duration, par Par) *Series
 	f := newFrame(site, step, yearDates(from, to))
 	s := f.series
 	s.Years, s.Dated = to-from+1, true
-	f.years(from)
 	kt := r.clearness(f, row)
 	days := make([]dayWeather, len(s.Days))
 	missing := 0
@@ -36,11 +35,10 @@ func (r *Daily) Series(site radiation.Site, step time.Duration, par Par) *Series
 		if row[d] < 0 {
 			missing++
 		}
-		at := func(value func(*DailyRecord) float64) float64 { return r.bridge(row, d, value) }
 		days[d] = dayWeather{
 			global: kt[d] * H0, q: radiation.DiffuseShareDaily(math.Min(kt[d], 1), ws),
-			tmin: at(func(x *DailyRecord) float64 { return x.Tmin }),
-			tmax: at(func(x *DailyRecord) float64 { return x.Tmax }),
+			tmin: bridge(row, d, func(d int) float64 { return r.Rows[row[d]].Tmin }),
+			tmax: bridge(row, d, func(d int) float64 { return r.Rows[row[d]].Tmax }),
 		}
 	}
 	if missing > 0 {
@@ -69,10 +67,10 @@ func (r *Daily) lay() (from, to int, row []int32) {
 	return from, to, row
 }
 
-// bridge is a value of day d, linear across a gap.
-func (r *Daily) bridge(row []int32, d int, value func(*DailyRecord) float64) float64 {
+// bridge is a value of day d, given or linear across a gap; at reads a day that has a row.
+func bridge(row []int32, d int, at func(day int) float64) float64 {
 	if row[d] >= 0 {
-		return value(&r.Rows[row[d]])
+		return at(d)
 	}
 	from, to := d, d
 	for from > 0 && row[from-1] < 0 {
@@ -81,10 +79,10 @@ func (r *Daily) bridge(row []int32, d int, value func(*DailyRecord) float64) flo
 	for to < len(row) && row[to] < 0 {
 		to++
 	}
-	return between(from, to, d, func(k int) float64 { return value(&r.Rows[row[k]]) }, len(row))
+	return between(from, to, d, at, len(row))
 }
 
-// clearness gives each day's global over extraterrestrial.
+// clearness gives each day's global over extraterrestrial, 0 without sun.
 func (r *Daily) clearness(f *frame, row []int32) []float64 {
 	at := func(d int) float64 {
 		x := &r.Rows[row[d]]
@@ -99,23 +97,9 @@ func (r *Daily) clearness(f *frame, row []int32) []float64 {
 	}
 	kt := make([]float64, len(row))
 	for d := range row {
-		v := 0.0
-		if row[d] >= 0 {
-			v = at(d)
-		} else {
-			from, to := d, d
-			for from > 0 && row[from-1] < 0 {
-				from--
-			}
-			for to < len(row) && row[to] < 0 {
-				to++
-			}
-			v = between(from, to, d, at, len(row))
+		if v := bridge(row, d, at); !math.IsNaN(v) {
+			kt[d] = v
 		}
-		if math.IsNaN(v) {
-			v = 0
-		}
-		kt[d] = v
 	}
 	return kt
 }

@@ -18,6 +18,9 @@ func (n *Normals) Series(site radiation.Site, step time.Duration, par Par) *Seri
 	f := newFrame(site, step, dates)
 	s := f.series
 	s.Years = 1
+	for d := range s.Days {
+		s.Days[d].Year = 0 // of no year in particular; sunYear lends its sun
+	}
 	days := make([]dayWeather, len(dates))
 	first := 0
 	for month := time.January; month <= time.December; month++ {

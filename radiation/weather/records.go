@@ -80,10 +80,6 @@ func (r *Records) Series(site radiation.Site, step time.Duration, par Par) *Seri
 	f := newFrame(site, step, yearDates(sp.from, sp.to))
 	s := f.series
 	s.Years, s.Dated = sp.to-sp.from+1, true
-	for d := range s.Days {
-		s.Days[d].Year = sp.from
-	}
-	f.years(sp.from)
 	per := int(sp.every / step)
 	dropped := 0.0
 	at := f.litAt()
@@ -123,18 +119,6 @@ func (f *frame) litAt() []int32 {
 		at[step] = int32(i)
 	}
 	return at
-}
-
-// years writes the calendar years of dated days.
-func (f *frame) years(from int) {
-	year := from - 1
-	for d := range f.series.Days {
-		day := &f.series.Days[d]
-		if day.Month == time.January && day.Day == 1 {
-			year++
-		}
-		day.Year = year
-	}
 }
 
 // value is the weather of one interval; NaN for what was not measured.

@@ -40,7 +40,6 @@ const (
 	keyChance = 5
 	keyCap    = 3
 	usualBins = 2048 // room made at once; more is rare
-	maxDepths = 6
 )
 
 // halfOctave bins x from 2^low up.
@@ -138,7 +137,7 @@ func (r *Prepared) gather(g *light.Regime, w *scratch) {
 func (r *Prepared) binned(w *scratch, set leaf.Set, k float64) float64 {
 	n := len(r.crown.depth)
 	c := newCurve(set)
-	var sky, sunlit [8]float64
+	var sky, sunlit [maxDepths]float64
 	m := moment{sky: sky[:n], sunlit: sunlit[:n]}
 	sum := 0.0
 	for x := range w.bins.list {

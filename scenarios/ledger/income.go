@@ -125,7 +125,7 @@ func (r *Prepared) each(g *light.Regime, w *scratch, set leaf.Set, k float64, do
 	n := len(r.crown.depth)
 	lit := &r.above.Series.Lit
 	c := newCurve(set)
-	var sky [8]float64
+	var sky [maxDepths]float64
 	m := moment{sky: sky[:n]}
 	for x := range r.steps {
 		s := &r.steps[x]

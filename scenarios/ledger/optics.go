@@ -32,8 +32,11 @@ func depthNodes(crownLAI float64) int {
 	case crownLAI <= 4:
 		return 4
 	}
-	return 6
+	return maxDepths
 }
+
+// maxDepths is the most depths that a crown has.
+const maxDepths = 6
 
 func newCrown(p *Plant, zenith []float64) *crown {
 	n := depthNodes(p.CrownLAI)

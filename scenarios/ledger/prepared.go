@@ -141,7 +141,7 @@ func (r *Prepared) lit() {
 	n := len(r.crown.depth)
 	r.steps = make([]step, 0, len(s.Lit.Step))
 	r.sun = make([]float64, 0, len(s.Lit.Step)*n)
-	var sunlit [8]float64
+	var sunlit [maxDepths]float64
 	for d := range s.Days {
 		day := &s.Days[d]
 		share := p.Leaves.Share(day.Month, day.Day)

@@ -162,3 +162,18 @@ func jsonObject[T any](columns []column[T], row *T) (json.RawMessage, error) {
 	b.WriteByte('}')
 	return b.Bytes(), nil
 }
+
+// data writes rows as CSV, their notes apart, or as JSON with the notes in it.
+func data[T any](o Output, n notes, columns []column[T], list []T) error {
+	if o.Format == CSV {
+		if err := writeCSV(o.Out, columns, list); err != nil {
+			return err
+		}
+		return n.write(o.Notes)
+	}
+	rows, err := jsonRows(columns, list)
+	if err != nil {
+		return err
+	}
+	return n.writeJSON(o.Out, rows)
+}

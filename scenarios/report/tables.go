@@ -16,18 +16,8 @@ import (
 // Light writes the light of a run.
 func Light(o Output, r *scenarios.Results) error {
 	n := notesOf(r)
-	switch o.Format {
-	case CSV:
-		if err := writeCSV(o.Out, lightColumns, r.Light); err != nil {
-			return err
-		}
-		return n.write(o.Notes)
-	case JSON:
-		rows, err := jsonRows(lightColumns, r.Light)
-		if err != nil {
-			return err
-		}
-		return n.writeJSON(o.Out, rows)
+	if o.Format != Table {
+		return data(o, n, lightColumns, r.Light)
 	}
 	p := &printer{w: o.Out}
 	p.f("%s\n%s\n", Name(r.Plan), seasonLine(r.Plan))
@@ -63,18 +53,8 @@ const (
 // Balance writes the ledgers of a run.
 func Balance(o Output, r *scenarios.Results, v View) error {
 	n := notesOf(r)
-	switch o.Format {
-	case CSV:
-		if err := writeCSV(o.Out, balanceColumns, r.Balance); err != nil {
-			return err
-		}
-		return n.write(o.Notes)
-	case JSON:
-		rows, err := jsonRows(balanceColumns, r.Balance)
-		if err != nil {
-			return err
-		}
-		return n.writeJSON(o.Out, rows)
+	if o.Format != Table {
+		return data(o, n, balanceColumns, r.Balance)
 	}
 	var err error
 	switch v {
