@@ -81,6 +81,7 @@ type rule struct {
 type Catalogue struct {
 	species []*Species
 	byName  map[string]*Species
+	byAlias map[string][]*Species // by aliasKey
 	rules   map[string][]rule
 	order   []string // rule variables in file order
 }
@@ -102,11 +103,14 @@ func Find(name string) (*Species, error) { return Library().Find(name) }
 // All is every species in the order of the library.
 func All() []*Species { return append([]*Species(nil), Library().species...) }
 
-// Find looks a species up by botanical or common name, whatever the case and spacing. A name not
-// held gets an error with the nearest names.
+// Find looks a species up by botanical or common name, whatever the case and spacing, or by a published code or further
+// name. A name not held gets an error with the nearest names, one that stands for several species gets an error with them.
 func (c *Catalogue) Find(name string) (*Species, error) {
 	if s, ok := c.byName[plain(name)]; ok {
 		return s, nil
+	}
+	if s, err := c.alias(name); s != nil || err != nil {
+		return s, err
 	}
 	return nil, fmt.Errorf("species %q is not in the library; nearest names: %s", name, strings.Join(c.nearest(name), ", "))
 }
@@ -172,7 +176,7 @@ func distance(a, b string) int {
 }
 
 func load() (*Catalogue, error) {
-	c := &Catalogue{byName: map[string]*Species{}, rules: map[string][]rule{}}
+	c := &Catalogue{byName: map[string]*Species{}, byAlias: map[string][]*Species{}, rules: map[string][]rule{}}
 	sources := map[string]string{}
 	steps := []struct {
 		table string
@@ -181,6 +185,7 @@ func load() (*Catalogue, error) {
 		{sourcesTable, func(f []string) error { sources[f[0]] = f[1]; return nil }},
 		{rulesTable, func(f []string) error { return c.takeRule(f, sources) }},
 		{speciesTable, c.takeSpecies},
+		{aliasTable, c.takeAlias},
 		{libraryTable, func(f []string) error { return c.takeValue(f, sources) }},
 	}
 	for _, step := range steps {
