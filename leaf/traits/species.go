@@ -3,6 +3,7 @@ package traits
 import (
 	"fmt"
 	"math"
+	"strings"
 	"sync"
 
 	"shadeledger/leaf"
@@ -61,6 +62,12 @@ func (s *Species) Class() Class {
 
 // Deciduous tells whether the leaves fall each year.
 func (s *Species) Deciduous() bool { return s.Group == Broadleaf || s.Group == Larch }
+
+// Genus is the first word of the botanical name.
+func (s *Species) Genus() string {
+	genus, _, _ := strings.Cut(s.Botanical, " ")
+	return genus
+}
 
 // Paired tells whether the leaf traits are a measured sun set and a measured shade set.
 func (s *Species) Paired() bool { return s.shadePosition != "" }
