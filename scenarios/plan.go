@@ -6,6 +6,7 @@ import (
 	"time"
 
 	"shadeledger/canopy"
+	"shadeledger/canopy/inventory"
 	"shadeledger/leaf"
 	"shadeledger/radiation"
 	"shadeledger/radiation/weather"
@@ -92,11 +93,15 @@ type Stand struct {
 	CrownRadius float64 // m, of border trees
 	Layers      []Layer // the overstory, cut by openings
 	Understory  []Understory
-	// Facts as given, for "Read as" lines; NaN where not given.
-	BasalArea float64 // m2/ha
-	Area      float64 // ha
-	Age       float64 // y
+	Trees       inventory.Stand // what the layers are made of; without trees where the plan states layers
+	Foliage     Foliage         // how
+	Cruise      Cruise
+	Area        float64 // ha; NaN where not given
+	Age         float64 // y; NaN where not given
 }
+
+// Cruised tells whether the stand is known by its trees.
+func (s *Stand) Cruised() bool { return len(s.Trees.Trees) > 0 }
 
 // Layer is a canopy layer with its leaf calendar. canopy.Layer.Phenology is filled by Run.
 type Layer struct {
@@ -121,7 +126,9 @@ type Seedling struct {
 // Treatment is one alternative.
 type Treatment struct {
 	Name       string
-	Matrix     []Layer // the stand between openings after the treatment, understory not in
+	Matrix     []Layer             // the stand between openings after the treatment, understory not in
+	Trees      inventory.Stand     // what the matrix is made of; without trees where it is stated
+	Cut        []inventory.Removal // trees taken from the matrix
 	Understory []Understory
 	Opening    Opening
 }

@@ -32,6 +32,22 @@ func sortByBasalArea(list []SpeciesSums) {
 	slices.SortStableFunc(list, func(a, b SpeciesSums) int { return cmp.Compare(b.BasalArea, a.BasalArea) })
 }
 
+// BorderCrown is the mean crown radius, m, of the thickest trees, those that stand at an opening's edge.
+func BorderCrown(classes []Class) float64 {
+	trees := make([]Tree, len(classes))
+	for i, c := range classes {
+		trees[i].Class = c
+	}
+	left, sum, n := float64(topTrees), 0.0, 0.0
+	for _, t := range byDBH(trees, descending) {
+		take := math.Min(left, t.PerHa)
+		sum += take * CrownRadius(t.Species, t.DBH)
+		n += take
+		left -= take
+	}
+	return sum / n
+}
+
 // Chi of overstory leaves. Broadleaves: 2.1, the ellipsoid whose mean inclination, 9.65 (3 + chi)^-1.65 rad (Campbell 1990,
 // Agric. For. Meteorol. 49:173-176), is the 38 degrees found on 54 temperate and boreal species (Pisek et al. 2013,
 // Agric. For. Meteorol. 169:186-194). Needles: spherical.

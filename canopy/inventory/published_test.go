@@ -7,8 +7,8 @@ import (
 	"testing"
 )
 
-// stated is a stand known by height and basal area alone, in species of a share.
-func stated(t *testing.T, height, basalArea float64, shares map[string]float64) Stand {
+// byBasalArea is a stand known by height and basal area alone, in species of a share.
+func byBasalArea(t *testing.T, height, basalArea float64, shares map[string]float64) Stand {
 	t.Helper()
 	var classes []Class
 	for _, n := range slices.Sorted(maps.Keys(shares)) {
@@ -54,7 +54,7 @@ func TestLightAgainstBasalArea(t *testing.T) {
 		{"Comeau 2001", 14, 14, 14, aspen, 0, 40, false},
 		{"Comeau 2001", 8, 8, 14, aspen, 0, 60, false},
 	} {
-		s, _, err := stated(t, c.height, c.uncut, c.shares).Thin(Thinning{Order: AllSizes, Leave: c.ba})
+		s, _, err := byBasalArea(t, c.height, c.uncut, c.shares).Thin(Thinning{Order: AllSizes, Leave: c.ba})
 		if err != nil {
 			t.Fatal(err)
 		}

@@ -112,6 +112,8 @@ type Kept struct {
 	PerHa   float64           // trees per hectare of opening; taken from the thickest down
 	Share   float64           // of the trees, 0..1; used where PerHa is 0
 	Species []*traits.Species // where not empty, of these only
+	// Only trees of a dbh from Thinnest to Thickest, m, both in, stay.
+	Thinnest, Thickest float64
 }
 
 // Keep leaves only chosen trees: so many to the hectare from the thickest down, or a share of every class.
@@ -122,7 +124,7 @@ func (s Stand) Keep(k Kept) Stand {
 		x := s.Trees[i]
 		share[i] = 1
 		switch {
-		case len(k.Species) > 0 && !slices.Contains(k.Species, x.Species):
+		case len(k.Species) > 0 && !slices.Contains(k.Species, x.Species), x.DBH < k.Thinnest, x.DBH > k.Thickest:
 		case k.PerHa > 0:
 			stay := math.Min(room, x.PerHa)
 			room -= stay

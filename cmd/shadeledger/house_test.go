@@ -22,17 +22,19 @@ var allowed = map[string][]string{
 	"radiation/weather": {"radiation"},
 	"leaf":              {},
 	"leaf/traits":       {"leaf"},
-	"canopy":            {},
+	"canopy":            {"leaf"},
+	"canopy/correct":    {},
+	"canopy/inventory":  {"canopy", "leaf", "leaf/traits"},
 	"scenarios/light":   {"radiation", "radiation/weather", "canopy"},
 	"scenarios/ledger":  {"leaf", "canopy", "scenarios/light"},
-	"scenarios":         {"radiation", "radiation/weather", "canopy", "leaf", "scenarios/light", "scenarios/ledger"},
-	"scenarios/plan":    {"radiation", "radiation/weather", "canopy", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
-	"scenarios/report":  {"leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
+	"scenarios":         {"radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios/light", "scenarios/ledger"},
+	"scenarios/plan":    {"radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
+	"scenarios/report":  {"canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
 	"cmd/shadeledger":   {"leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
 }
 
 // theories hold the physics: the standard library and gonum only.
-var theories = []string{"radiation", "radiation/weather", "leaf", "leaf/traits", "canopy", "scenarios/light", "scenarios/ledger", "scenarios"}
+var theories = []string{"radiation", "radiation/weather", "leaf", "leaf/traits", "canopy", "canopy/correct", "canopy/inventory", "scenarios/light", "scenarios/ledger", "scenarios"}
 
 const mostLines = 400
 

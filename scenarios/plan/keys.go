@@ -127,7 +127,7 @@ func layerKeys(path string) []Key {
 		{Path: path + ".lai", Kind: Number, Low: 0, Top: 20, Range: "0 to 20", Example: "4.2", Meaning: "leaf area index, half of total leaf surface"},
 		{Path: path + ".wai", Kind: Number, Low: 0, Top: 5, Range: "0 to 5", Default: "0", Example: "0.6", Meaning: "wood area index"},
 		{Path: path + ".chi", Kind: Number, Low: 0.1, Top: 10, Range: "0.1 to 10", Default: "1", Example: "1.5", Meaning: "ellipsoidal leaf angle parameter, 1 spherical, more flatter"},
-		{Path: path + ".clumping", Kind: Number, Low: 0.3, Top: 1.2, Range: "0.3 to 1.2", Default: "1, or the region's", Example: "0.9", Meaning: "clumping index Omega"},
+		{Path: path + ".clumping", Kind: Number, Low: 0.05, Top: 1.2, Range: "0.05 to 1.2", Default: "1, or the region's", Example: "0.9", Meaning: "clumping index Omega"},
 		{Path: path + ".absorptance", Kind: Number, Low: 0.5, Top: 1, Range: "0.5 to 1", Default: "0.85", Example: "0.85", Meaning: "leaf absorptance of PAR"},
 		{Path: path + ".species", Kind: Text, Example: "Quercus rubra", Meaning: "library species, for its leaf dates"},
 		{Path: path + ".leaves", Kind: Any, Default: "the species', else evergreen", Example: "{out: 05-14, full: 06-04, colour: 09-28, bare: 10-18}", Meaning: leafKey},
@@ -158,20 +158,18 @@ func standKeys() []Key {
 		{Path: "stand.site_index.base_age", Kind: Number, Low: 1, Top: 200, Range: "1 to 200 years", Example: "50", Meaning: "base age, years"},
 		{Path: "stand.site_index.system", Kind: Text, Example: "sugar maple", Meaning: "name of the system"},
 		{Path: "stand.smallest_dbh", Kind: Quantity, dim: length, Low: 0, Top: 1, Range: "0 to 1 m", Example: "3 in", Meaning: "smallest diameter counted"},
-		{Path: "stand.layers", Kind: List, Meaning: "canopy layers, or lai for one layer"},
-		{Path: "stand.lai", Kind: Number, Low: 0, Top: 20, Range: "0 to 20", Example: "5.0", Meaning: "leaf area index of one layer from crown_base to height"},
+		{Path: "stand.layers", Kind: List, Meaning: "canopy layers, instead of stand_table, basal_area or lai"},
+		{Path: "stand.lai", Kind: Number, Low: 0, Top: 20, Range: "0 to 20", Example: "5.0", Meaning: "leaf area index: of one layer from crown_base to height, or, beside stand_table or basal_area, of their trees together"},
 		{Path: "stand.wai", Kind: Number, Low: 0, Top: 5, Range: "0 to 5", Default: "0", Example: "0.6", Meaning: "wood area index, beside lai"},
 		{Path: "stand.chi", Kind: Number, Low: 0.1, Top: 10, Range: "0.1 to 10", Default: "1", Example: "1", Meaning: "leaf angle parameter, beside lai"},
-		{Path: "stand.clumping", Kind: Number, Low: 0.3, Top: 1.2, Range: "0.3 to 1.2", Default: "1, or the region's", Example: "0.95", Meaning: "clumping index, beside lai"},
+		{Path: "stand.clumping", Kind: Number, Low: 0.05, Top: 1.2, Range: "0.05 to 1.2", Default: "1, or the region's", Example: "0.95", Meaning: "clumping index, beside lai"},
 		{Path: "stand.absorptance", Kind: Number, Low: 0.5, Top: 1, Range: "0.5 to 1", Default: "0.85", Example: "0.85", Meaning: "leaf absorptance, beside lai"},
 		{Path: "stand.species", Kind: Text, Example: "Quercus rubra", Meaning: "leading species, beside lai"},
 		{Path: "stand.leaves", Kind: Any, Example: "{out: 05-14, full: 06-04, colour: 09-28, bare: 10-18}", Meaning: "overrides the dates of deciduous layers"},
 		{Path: "stand.understory", Kind: List, Default: "none", Meaning: "layers that stay in openings unless a treatment removes them"},
 		{Path: "stand.understory[].name", Kind: Text, Example: "beech saplings", Meaning: "name, by which a treatment removes it"},
 	}
-	for _, later := range []string{"stand_table", "basal_area", "angle_count", "readings", "closure_readings"} {
-		k = append(k, Key{Path: "stand." + later, Kind: Later, Meaning: "not available in this version: give stand.layers or stand.lai"})
-	}
+	k = append(k, cruiseKeys()...)
 	k = append(k, layerKeys("stand.layers[]")...)
 	k = append(k, leavesKeys("stand.layers[].leaves")...)
 	k = append(k, leavesKeys("stand.leaves")...)
@@ -180,10 +178,9 @@ func standKeys() []Key {
 		k = append(k, l)
 	}
 	k = append(k, leavesKeys("stand.understory[].leaves")...)
-	for _, later := range []string{"cover", "stems"} {
-		k = append(k, Key{Path: "stand.understory[]." + later, Kind: Later, Meaning: "not available in this version: give lai"})
-	}
-	return k
+	return append(k,
+		Key{Path: "stand.understory[].cover", Kind: Quantity, dim: share, Low: 0, Top: 0.99, Range: "0 to 99 %", Example: "45 %", Meaning: "ground hidden from straight above, instead of lai"},
+		Key{Path: "stand.understory[].stems", Kind: Quantity, dim: density, Low: 0, Top: 1e6, Range: "0 to 1 000 000 stems/ha", Example: "900 stems/ac", Meaning: "stems, instead of lai; species and height give their leaves"})
 }
 
 // Find gives a key by its path; list items as [].

@@ -83,14 +83,20 @@ func treatmentKeys() []Key {
 		{Path: p + ".opening.strip.bearing", Kind: Bearing, Example: "E", Meaning: "bearing of the long side; required"},
 		{Path: p + ".opening.polygon", Kind: File, Example: "opening.geojson", Meaning: "GeoJSON polygon in metres or lon/lat"},
 		{Path: p + ".measured", Kind: Choice, Words: []string{"stems", "crowns"}, Default: "stems", Example: "crowns", Meaning: "how the size was taped: stem to stem or crown edge to crown edge"},
-		{Path: p + ".inside", Kind: Any, Default: "bare", Example: "bare", Meaning: "what stands in the opening: bare or layers"},
+		{Path: p + ".inside", Kind: Any, Default: "bare", Example: "bare", Meaning: "what stands in the opening: bare, layers or kept trees"},
 		{Path: p + ".inside.layers", Kind: List, Meaning: "layers inside the opening"},
 	}
 	k = append(k, layerKeys(p+".matrix.layers[]")...)
 	k = append(k, leavesKeys(p+".matrix.layers[].leaves")...)
 	k = append(k, layerKeys(p+".inside.layers[]")...)
 	k = append(k, leavesKeys(p+".inside.layers[].leaves")...)
-	for _, later := range []string{"thin", "steps", "centres", "count", "inside.keep"} {
+	k = append(k, thinKeys(p+".thin")...)
+	k = append(k, Key{Path: p + ".steps", Kind: List, Meaning: "thinnings one after another, each compared by itself, without growth between"},
+		Key{Path: p + ".steps[]", Kind: Map, Meaning: "one entry"},
+		Key{Path: p + ".steps[].year", Kind: Number, Low: 0, Top: 100, Range: "0 to 100 years", Example: "8", Meaning: "years from now; required"})
+	k = append(k, thinKeys(p+".steps[].thin")...)
+	k = append(k, keptKeys(p+".inside.keep")...)
+	for _, later := range []string{"centres", "count"} {
 		k = append(k, Key{Path: p + "." + later, Kind: Later, Meaning: "not available in this version: state the result with matrix or opening"})
 	}
 	return k

@@ -15,7 +15,8 @@ func init() {
 		"site", "site.latitude", "site.longitude", "weather", "season", "season.from", "season.to", "stand", "stand.height",
 		"seedlings", "treatments", "treatments[].name", "snow.from", "snow.to", "snow.depth",
 		"weather.normals.temperature_unit", "weather.normals.mean", "weather.normals.min", "weather.normals.max",
-		"stand.understory[].name", "stand.understory[].lai", "stand.understory[].height", "stations[].name", "stations[].distance",
+		"stand.understory[].name", "stand.understory[].height", "stand.angle_count.factor", "stand.angle_count.counts",
+		"stand.closure_readings.kind", "stand.closure_readings.values", "treatments[].steps[].year", "treatments[].steps[].thin", "stations[].name", "stations[].distance",
 		"treatments[].opening.ellipse.bearing", "treatments[].opening.strip.length", "treatments[].opening.strip.width",
 		"treatments[].opening.strip.bearing",
 	} {
@@ -187,6 +188,9 @@ func free(k Key) map[string]any {
 		return either(words("bare"), object(k.Path))
 	case "understory":
 		return either(words("keep", "remove"), map[string]any{"type": "object", "additionalProperties": words("keep", "remove")})
+	case "basal_area":
+		one := text(digitsPattern + `\s*(` + units(basalArea) + `)` + spreadPattern)
+		return map[string]any{"type": "object", "additionalProperties": either(one, doubt(one)), "minProperties": 1}
 	case "stations":
 		item, _ := Find("stations[]")
 		return either(words("default"), map[string]any{"type": "array", "items": value(item)})

@@ -6,6 +6,8 @@ import (
 
 	"go.yaml.in/yaml/v4"
 
+	"shadeledger/canopy"
+	"shadeledger/canopy/inventory"
 	"shadeledger/leaf"
 	"shadeledger/leaf/traits"
 	"shadeledger/scenarios"
@@ -47,28 +49,19 @@ func (r *reader) stand(v val, p *scenarios.Plan) map[string]val {
 		return f
 	}
 	s := &p.Stand
-	s.BasalArea, s.Area, s.Age = math.NaN(), math.NaN(), math.NaN()
+	s.Area, s.Age = math.NaN(), math.NaN()
 	if h, ok := r.quantity(r.need(v, f, "height")); ok {
 		s.Height, r.height = h, h
 	}
-	conifer := r.leadingConifer(f)
-	base, radius := 0.45, 3.5
-	if conifer {
-		base, radius = 0.55, 2.0
-	}
-	x, ok := r.quantity(f["crown_base"])
-	s.CrownBase = r.or(x, ok, f["crown_base"], "stand.crown_base", base*s.Height, fmt.Sprintf("%.3g m, %g H", base*s.Height, base), practice)
-	if ok && s.Height > 0 && s.CrownBase >= s.Height {
-		r.fault(f["crown_base"], "", fmt.Sprintf("a crown base below stand.height, %.4g m", s.Height))
-	}
-	x, ok = r.quantity(f["crown_radius"])
-	s.CrownRadius = r.or(x, ok, f["crown_radius"], "stand.crown_radius", radius, fmt.Sprintf("%g m", radius), practice+", by species group")
 	if x, ok := r.quantity(f["area"]); ok {
 		s.Area = x / 1e4
 	}
 	if x, ok := r.number(f["age"]); ok {
 		s.Age = x
 	}
+	before := len(r.faults)
+	classes := r.cruise(f, s)
+	r.crowns(f, s, classes)
 	index := r.fields(f["site_index"])
 	r.quantity(index["value"])
 	r.number(index["base_age"])
@@ -79,9 +72,41 @@ func (r *reader) stand(v val, p *scenarios.Plan) map[string]val {
 		r.warnings = append(r.warnings, scenarios.Warning{Key: "stand.height",
 			Text: fmt.Sprintf("%.3g m is taller than most stands; were feet meant? %.3g ft is %.3g m", s.Height, s.Height, s.Height*foot)})
 	}
-	s.Layers = r.overstory(v, f, p)
+	switch {
+	case len(classes) > 0 && len(r.faults) == before:
+		s.Layers = r.trees(v, f, classes, s)
+	case !cruised(f) && len(classes) == 0:
+		s.Layers = r.overstory(v, f, p)
+	}
 	s.Understory = r.understory(f["understory"], f["leaves"])
 	return f
+}
+
+// crowns reads where crowns begin and how far they reach; left out, both come from the trees, else from the species group.
+func (r *reader) crowns(f map[string]val, s *scenarios.Stand, classes []inventory.Class) {
+	conifer := r.leadingConifer(f)
+	if len(classes) > 0 {
+		conifer = conifers(classes)
+	}
+	base, radius, group := 0.45, 3.5, "hardwood"
+	if conifer {
+		base, radius, group = 0.55, 2.0, "conifer"
+	}
+	source := practice + ", " + group
+	if share, ok := crownBase(classes); ok {
+		base, source = share, "the stand table's measured crowns"
+	}
+	x, ok := r.quantity(f["crown_base"])
+	s.CrownBase = r.or(x, ok, f["crown_base"], "stand.crown_base", base*s.Height, fmt.Sprintf("%.3g m, %.2g H", base*s.Height, base), source)
+	if ok && s.Height > 0 && s.CrownBase >= s.Height {
+		r.fault(f["crown_base"], "", fmt.Sprintf("a crown base below stand.height, %.4g m", s.Height))
+	}
+	source = practice + ", by species group"
+	if len(classes) > 0 {
+		radius, source = inventory.BorderCrown(classes), "dbh of the thickest 100 trees/ha, by species group"
+	}
+	x, ok = r.quantity(f["crown_radius"])
+	s.CrownRadius = r.or(x, ok, f["crown_radius"], "stand.crown_radius", radius, fmt.Sprintf("%.2g m", radius), source)
 }
 
 // leadingConifer looks for the species named first.
@@ -281,9 +306,11 @@ func (r *reader) understory(v, leaves val) (out []scenarios.Understory) {
 		var u scenarios.Understory
 		u.Name, _ = r.text(r.need(item, f, "name"))
 		r.unique(f["name"], u.Name, seen)
-		r.need(item, f, "lai")
-		u.Layer = r.layerRest(item.path, f, leaves)
 		top, okTop := r.quantity(r.need(item, f, "height"))
+		lai := f["lai"]
+		delete(f, "lai")
+		u.Layer = r.layerRest(item.path, f, leaves)
+		u.LAI = r.underLeaves(item, f, lai, u.Layer, top)
 		base, ok := r.quantity(f["base"])
 		u.Bottom = r.or(base, ok, f["base"], item.path+".base", 0, "0 m", "left out: leaves down to the ground")
 		u.Top = top
@@ -293,4 +320,44 @@ func (r *reader) understory(v, leaves val) (out []scenarios.Understory) {
 		out = append(out, u)
 	}
 	return out
+}
+
+// saplingSlenderness is height over dbh of saplings in shade (common practice).
+const saplingSlenderness = 120
+
+// underLeaves is the leaf area of an understory: stated, or of its cover, -ln(1 - cover) over the projection of its leaves straight down, or
+// of its stems.
+func (r *reader) underLeaves(item val, f map[string]val, lai val, l scenarios.Layer, height float64) float64 {
+	given := 0
+	for _, v := range []val{lai, f["cover"], f["stems"]} {
+		if v.present() {
+			given++
+		}
+	}
+	if given != 1 {
+		r.fault(val{node: item.node, at: item.at, path: item.path}, " ", "one of lai, cover and stems, such as lai: 0.8")
+		return 0
+	}
+	switch {
+	case f["cover"].present():
+		cover, _ := r.quantity(f["cover"])
+		x := -math.Log(1-cover) / (l.Clumping * canopy.LeafProjection(l.Chi, 1, 0))
+		r.assume(item.path+".lai", fmt.Sprintf("%.2f", x), "its cover seen from straight above, leaves alone")
+		return x
+	case f["stems"].present():
+		stems, ok := r.quantity(f["stems"])
+		species := r.find(f["species"])
+		if f["species"].node == nil {
+			r.fault(f["stems"], "", "stems need the species beside them")
+		}
+		if !ok || species == nil || height <= 0 {
+			return 0
+		}
+		area, source := inventory.LeafArea(species, height/saplingSlenderness)
+		x := area * stems / 1e4
+		r.assume(item.path+".lai", fmt.Sprintf("%.2f", x), fmt.Sprintf("stems of %.1f cm, height over %d; %s", 100*height/saplingSlenderness, saplingSlenderness, source))
+		return x
+	}
+	x, _ := r.number(lai)
+	return x
 }

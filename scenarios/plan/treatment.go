@@ -7,6 +7,7 @@ import (
 	"go.yaml.in/yaml/v4"
 
 	"shadeledger/canopy"
+	"shadeledger/canopy/inventory"
 	"shadeledger/scenarios"
 )
 
@@ -24,9 +25,21 @@ func (r *reader) treatments(v val, p *scenarios.Plan, stand map[string]val) {
 		var t scenarios.Treatment
 		t.Name, _ = r.text(r.need(item, f, "name"))
 		r.unique(f["name"], t.Name, seen)
-		t.Matrix = r.matrix(f["matrix"], p, stand["leaves"])
+		t.Matrix, t.Trees = p.Stand.Layers, p.Stand.Trees
+		if f["matrix"].present() {
+			t.Matrix, t.Trees = r.matrix(f["matrix"], p, stand["leaves"]), inventory.Stand{}
+		}
 		t.Understory = r.keep(f["understory"], p)
 		t.Opening = r.opening(item, f, p, stand["leaves"])
+		if f["thin"].present() {
+			r.alone(f, "thin", "matrix", "steps")
+			r.thin(f["thin"], p, &t)
+		}
+		if f["steps"].present() {
+			r.alone(f, "steps", "matrix")
+			p.Treatments = append(p.Treatments, r.steps(f["steps"], p, t)...)
+			continue
+		}
 		p.Treatments = append(p.Treatments, t)
 	}
 }
@@ -34,9 +47,6 @@ func (r *reader) treatments(v val, p *scenarios.Plan, stand map[string]val) {
 // matrix is the stand between openings: the uncut one, scaled to an LAI, or stated layers.
 func (r *reader) matrix(v val, p *scenarios.Plan, leaves val) []scenarios.Layer {
 	uncut := p.Stand.Layers
-	if !v.present() {
-		return uncut
-	}
 	f := r.fields(v)
 	if f["layers"].present() {
 		if f["lai"].present() {
@@ -130,11 +140,12 @@ func (r *reader) opening(item val, f map[string]val, p *scenarios.Plan, leaves v
 	if !given && !f["measured"].present() {
 		r.assume(item.path+".measured", "stems", "sizes are taped from stem to stem")
 	}
-	c := scenarios.Cleared{Inside: r.inside(f["inside"], leaves)}
+	var c scenarios.Cleared
 	if o["polygon"].scalar() {
 		c.File = o["polygon"].node.Value
 	}
 	if taped == nil {
+		r.inside(f["inside"], leaves, p, 1)
 		return c
 	}
 	radius := p.Stand.CrownRadius
@@ -154,20 +165,26 @@ func (r *reader) opening(item val, f map[string]val, p *scenarios.Plan, leaves v
 		r.fault(v, " ", fmt.Sprintf("smaller than the crowns that reach %.3g m into it from every side%s; make it larger, or give measured: crowns", radius, why))
 		return scenarios.NoOpening{}
 	}
+	c.Inside = r.inside(f["inside"], leaves, p, c.Stems.Area())
 	return c
 }
 
-func (r *reader) inside(v, leaves val) []scenarios.Layer {
+// inside reads what stands in an opening of a stem area, m2.
+func (r *reader) inside(v, leaves val, p *scenarios.Plan, stemArea float64) []scenarios.Layer {
 	if !v.present() {
 		return nil
 	}
 	if v.scalar() {
 		if v.node.Value != "bare" {
-			r.fault(v, "", "bare, or a block with layers")
+			r.fault(v, "", "bare, or a block with layers or keep")
 		}
 		return nil
 	}
 	f := r.fields(v)
+	if f["keep"].present() {
+		r.alone(f, "keep", "layers")
+		return r.kept(f["keep"], p, stemArea)
+	}
 	return r.layers(f["layers"], leaves)
 }
 

@@ -6,6 +6,8 @@ import (
 	"regexp"
 	"strconv"
 	"strings"
+
+	"shadeledger/canopy/inventory"
 )
 
 // dimension is what a quantity measures; its unit in the program comes first in the table below.
@@ -23,15 +25,16 @@ const (
 	duration                     // h
 	share                        // 0..1
 	ppm                          // ppm
+	density                      // ha-1
 )
 
 // unit is a way to write a quantity: value * scale + offset in the program's unit.
 type unit struct{ scale, offset float64 }
 
-// Exact by definition: inch 0.0254 m, chain 66 ft, acre 43 560 ft2 (international foot), pound 453.59237 g.
+// Exact by definition, the chain 66 ft, the pound 453.59237 g.
 const (
-	foot = 0.3048
-	acre = 43560 * foot * foot
+	foot = inventory.Foot
+	acre = inventory.Acre
 )
 
 var unitTable = map[dimension]map[string]unit{
@@ -46,12 +49,13 @@ var unitTable = map[dimension]map[string]unit{
 	duration:    {"h": {1, 0}, "min": {1.0 / 60, 0}, "d": {24, 0}},
 	share:       {"%": {0.01, 0}},
 	ppm:         {"ppm": {1, 0}},
+	density:     {"stems/ha": {1, 0}, "trees/ha": {1, 0}, "stems/ac": {1e4 / acre, 0}, "trees/ac": {1e4 / acre, 0}},
 }
 
 // likely is the unit to name to someone who wrote none.
 var likely = map[dimension]string{
 	length: "m or ft", area: "m2 or ha or ac", basalArea: "m2/ha or ft2/ac", slope: "% or deg", bearing: "deg",
-	mass: "g", temperature: "C or F", duration: "h or min", share: "%", ppm: "ppm",
+	mass: "g", temperature: "C or F", duration: "h or min", share: "%", ppm: "ppm", density: "stems/ha or stems/ac",
 }
 
 var (

@@ -1,7 +1,6 @@
 package report
 
 import (
-	"math"
 	"strings"
 
 	"shadeledger/scenarios"
@@ -38,15 +37,14 @@ func heading(p *scenarios.Plan) []string {
 // readAs says what the stand was taken for.
 func readAs(p *scenarios.Plan, u scenarios.Units) string {
 	s := "Read as: "
-	if !math.IsNaN(p.Stand.BasalArea) && p.Stand.BasalArea > 0 {
-		s += basalArea(p.Stand.BasalArea, u) + ", "
+	if p.Stand.Cruised() {
+		sums, leading := p.Stand.Trees.Sums(), p.Stand.Trees.Leading()
+		s += basalArea(sums.BasalArea, u) + ", " + density(sums.PerHa, u) + ", QMD " + diameter(sums.QMD(), u) +
+			", H:D " + text0(p.Stand.Trees.Slenderness(), 0) + " (" + leading.Species.Common + ")"
+	} else {
+		s += "height " + length(p.Stand.Height, u)
 	}
-	s += "height " + length(p.Stand.Height, u) + ", leaf area " + text0(leafArea(p.Stand.Layers), 1)
-	for _, a := range p.Assumed {
-		if a.Key == "stand.lai" {
-			s += " (assumed)"
-		}
-	}
+	s += ", leaf area " + text0(leafArea(p.Stand.Layers), 1) + leafSource(p)
 	if n := len(p.Stand.Understory); n > 0 {
 		var names []string
 		for _, x := range p.Stand.Understory {
@@ -55,6 +53,22 @@ func readAs(p *scenarios.Plan, u scenarios.Units) string {
 		s += ", under it " + strings.Join(names, ", ")
 	}
 	return s
+}
+
+// leafSource says in a word where the leaf area comes from.
+func leafSource(p *scenarios.Plan) string {
+	switch {
+	case p.Stand.Cruised() && p.Stand.Foliage.LeafFactor == 1:
+		return " (allometry)"
+	case p.Stand.Cruised():
+		return " (stated)"
+	}
+	for _, a := range p.Assumed {
+		if a.Key == "stand.lai" {
+			return " (assumed)"
+		}
+	}
+	return ""
 }
 
 // footer points to the notes below the screen, to what was assumed and to the cautions.

@@ -6,13 +6,13 @@ import (
 	"strconv"
 	"unicode/utf8"
 
+	"shadeledger/canopy/inventory"
 	"shadeledger/scenarios"
 )
 
-// Exact by definition: the international foot and acre.
 const (
-	metresPerFoot = 0.3048
-	m2PerAcre     = 4046.8564224
+	metresPerFoot = inventory.Foot
+	m2PerAcre     = inventory.Acre
 	m2PerHectare  = 1e4
 )
 
@@ -54,6 +54,22 @@ func basalArea(v float64, u scenarios.Units) string {
 		return sig(v*m2PerAcre/m2PerHectare/(metresPerFoot*metresPerFoot), 3) + " ft2/ac"
 	}
 	return sig(v, 3) + " m2/ha"
+}
+
+// density takes trees/ha.
+func density(v float64, u scenarios.Units) string {
+	if u == scenarios.US {
+		return sig(v*m2PerAcre/m2PerHectare, 3) + " trees/ac"
+	}
+	return sig(v, 3) + " trees/ha"
+}
+
+// diameter takes m.
+func diameter(v float64, u scenarios.Units) string {
+	if u == scenarios.US {
+		return text0(v/inventory.Inch, 1) + " in"
+	}
+	return text0(100*v, 1) + " cm"
 }
 
 // sig prints a number to n significant digits, without an exponent.
