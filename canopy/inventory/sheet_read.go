@@ -242,7 +242,7 @@ func (r *sheetReader) ignoredColumns() {
 	titled := map[int]bool{}
 	for _, c := range r.head.columns {
 		titled[c.index] = true
-		if c.role != unknownRole {
+		if c.role != unknownRole && (c.role != totalRole || r.head.has(stemRole)) {
 			continue
 		}
 		if line, value := r.firstNumber(c.index); line > 0 && r.head.has(stemRole) && !sideColumn.MatchString(c.title) {

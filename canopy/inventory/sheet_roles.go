@@ -2,6 +2,7 @@ package inventory
 
 import (
 	"regexp"
+	"slices"
 	"strings"
 )
 
@@ -113,20 +114,18 @@ func words(text string) []string {
 func parseHeading(text string) heading {
 	h := heading{}
 	h.bare = strings.TrimSpace(bracketPattern.ReplaceAllStringFunc(text, func(b string) string {
-		inner := strings.Trim(b, "[]() ")
-		if u, ok := unitOf(inner); ok {
-			h.unit = u
-			return " "
-		}
-		if u, ok := unitOf(strings.TrimPrefix(strings.ToLower(inner), "in ")); ok {
-			h.unit = u
-			return " "
+		inner := strings.ToLower(strings.Trim(b, "[]() "))
+		for _, t := range []string{strings.TrimPrefix(inner, "in "), inner} {
+			if u, ok := unitOf(t); ok {
+				h.unit = u
+			}
 		}
 		return " "
 	}))
 	w := words(h.bare)
-	if !h.phrase(w) && len(w) > 1 && (w[0] == "total" || w[0] == "all") && h.phrase(w[1:]) {
-		h.total = true
+	if !h.phrase(w) {
+		rest := slices.DeleteFunc(slices.Clone(w), func(word string) bool { return word == "total" || word == "all" })
+		h.total = len(rest) > 0 && len(rest) < len(w) && h.phrase(rest)
 	}
 	h.total = h.total || h.role == totalRole
 	h.settle()
