@@ -13,6 +13,7 @@ type sheetColumn struct {
 	heading
 	index   int
 	title   string          // as the sheet writes it
+	lowest  string          // the part of the title nearest to the numbers
 	species *traits.Species // of stemRole
 }
 
@@ -37,7 +38,7 @@ func findHead(records []sheetRecord) (sheetHead, bool) {
 			continue
 		}
 		for rows := 1; rows <= headRows && first+rows <= len(records); rows++ {
-			if rows > 1 && (hasNumber(records[first+rows-1]) || hasSpecies(records[first+rows-1])) {
+			if rows > 1 && hasNumber(records[first+rows-1]) {
 				break
 			}
 			h := readHead(records[first : first+rows])
@@ -59,15 +60,6 @@ func hasNumber(r sheetRecord) bool {
 	return false
 }
 
-func hasSpecies(r sheetRecord) bool {
-	for _, c := range r.cells {
-		if s, _ := nameSpecies(c); !missing(c) && s != nil {
-			return true
-		}
-	}
-	return false
-}
-
 // readHead understands each column of a heading. A role counts ten, a unit one.
 func readHead(block []sheetRecord) sheetHead {
 	var h sheetHead
@@ -81,7 +73,7 @@ func readHead(block []sheetRecord) sheetHead {
 		if len(parts) == 0 {
 			continue
 		}
-		c := sheetColumn{heading: joined(parts), index: i, title: strings.Join(parts, " ")}
+		c := sheetColumn{heading: joined(parts), index: i, title: strings.Join(parts, " "), lowest: parts[len(parts)-1]}
 		classes = classes || c.role == dbhRole
 		h.columns = append(h.columns, c)
 	}
@@ -107,10 +99,10 @@ func (h *sheetHead) wide(classes bool) {
 	}
 	for i := range h.columns {
 		c := &h.columns[i]
-		if c.role != unknownRole {
+		if grouped := c.lowest != c.title; c.role != unknownRole && !grouped {
 			continue
 		}
-		if s, _ := nameSpecies(c.bare); s != nil {
+		if s, _ := nameSpecies(parseHeading(c.lowest).bare); s != nil {
 			c.role, c.species = stemRole, s
 		}
 	}
@@ -164,6 +156,7 @@ func stated(records []sheetRecord) map[sheetRole]sheetUnit {
 		}
 		for _, c := range r.cells {
 			for _, phrase := range phrasePattern.Split(c, -1) {
+				phrase, _, _ = strings.Cut(phrase, " by ")
 				h := parseHeading(phrase)
 				if h.role == unknownRole || h.unit.measure != h.role.measure() {
 					continue

@@ -82,6 +82,8 @@ func (c sheetColumn) same(unit string) error {
 		return fmt.Errorf("a number alone: %q is not a unit of %s", unit, c.role)
 	case u.measure == c.unit.measure && u.factor == c.unit.factor:
 		return nil
+	case c.needs():
+		return nil // its heading is a fault already
 	case c.unit.measure == noMeasure:
 		return fmt.Errorf("a number alone")
 	}
@@ -107,12 +109,30 @@ func (r *sheetReader) titleOf(role sheetRole) string {
 	return ""
 }
 
-// kindOf looks for the name of a total in the cells of a line that are no numbers.
-func kindOf(rec sheetRecord) (totalKind, string) {
+// plotOf is the plot of a line, "" where that cell names a total.
+func (r *sheetReader) plotOf(rec sheetRecord) string {
+	plot := r.text(rec, plotRole)
+	if kind, _ := totalLabel(plot); kind == wholeTotal || kind == meanLine && len(plot) > 2 {
+		return ""
+	}
+	return plot
+}
+
+// kindOf looks for the name of a total on a line. Only species, diameters and cells without a heading may say more than
+// that word.
+func (r *sheetReader) kindOf(rec sheetRecord) (totalKind, string) {
+	roles := map[int]sheetRole{}
+	for _, c := range r.head.columns {
+		roles[c.index] = c.role
+		if c.role == unknownRole {
+			roles[c.index] = totalRole
+		}
+	}
 	kind, rest := noTotal, ""
-	for _, c := range rec.cells {
+	for i, c := range rec.cells {
 		k, left := totalLabel(c)
-		if k == noTotal {
+		free := roles[i] == unknownRole || roles[i] == speciesRole || roles[i] == dbhRole
+		if k == noTotal || !free && (k == subTotal || len(c) <= 2 && k == meanLine) {
 			continue
 		}
 		if kind == noTotal || left != "" {
@@ -125,7 +145,7 @@ func kindOf(rec sheetRecord) (totalKind, string) {
 // readLong reads a line of one class.
 func (r *sheetReader) readLong(rec sheetRecord) {
 	name := r.text(rec, speciesRole)
-	kind, label := kindOf(rec)
+	kind, label := r.kindOf(rec)
 	switch {
 	case kind == meanLine:
 		r.note(rec.line, "a line of averages, not read")
@@ -135,7 +155,7 @@ func (r *sheetReader) readLong(rec sheetRecord) {
 		return
 	}
 	e := r.readValues(rec)
-	e.plot = r.text(rec, plotRole)
+	e.plot = r.plotOf(rec)
 	if kind != noTotal {
 		r.takeTotal(e, kind, totalName(name, label))
 		return
@@ -179,7 +199,7 @@ func (r *sheetReader) counted(rec sheetRecord) bool {
 
 // loneLine takes a species that heads the lines below, a plot without trees, or a remark.
 func (r *sheetReader) loneLine(rec sheetRecord, name string) {
-	plot := r.text(rec, plotRole)
+	plot := r.plotOf(rec)
 	if name == "" && plot != "" {
 		e := emptyEntry(rec.line)
 		e.plot, e.ground = plot, r.value(rec, plotAreaRole)
@@ -243,7 +263,7 @@ func (r *sheetReader) speciesOf(rec sheetRecord, name string) *traits.Species {
 			err = twoSpecies{cell + " beside " + name, found, s}
 		}
 		if err != nil {
-			r.fault(Fault{Line: rec.line, Column: c.title, Value: cell, Fix: err.Error()})
+			r.fault(Fault{Line: rec.line, Column: c.title, Value: cell, Fix: unknownFix(cell, err)})
 			r.filler = filler{}
 			return nil
 		}

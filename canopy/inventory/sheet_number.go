@@ -81,6 +81,9 @@ func (m decimalMark) number(numeral string) (float64, error) {
 	if !numeralPattern.MatchString(n) {
 		return 0, fmt.Errorf("a number such as 12 or 23.5")
 	}
+	if len(n) > 1 && n[0] == '0' && n[1] >= '0' && n[1] <= '9' {
+		return 0, fmt.Errorf("a number that does not begin with 0; a number with a thousands mark needs quotation marks round it")
+	}
 	decimal, err := m.decimalOf(n)
 	if err != nil {
 		return 0, err

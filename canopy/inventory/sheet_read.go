@@ -3,6 +3,7 @@ package inventory
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"shadeledger/leaf/traits"
@@ -82,11 +83,23 @@ func emptyEntry(line int) sheetEntry {
 
 func (r *sheetReader) fault(f Fault) { r.faults = append(r.faults, f) }
 
+// faultOnce keeps a fault that several lines or columns share from standing twice.
+func (r *sheetReader) faultOnce(f Fault) {
+	if !slices.Contains(r.faults, f) {
+		r.fault(f)
+	}
+}
+
 func (r *sheetReader) note(line int, text string) {
 	r.sheet.Notes = append(r.sheet.Notes, Note{line, text})
 }
 
-func (r *sheetReader) done() (Sheet, []Fault) { return r.sheet, r.faults }
+// done orders faults and notes by line.
+func (r *sheetReader) done() (Sheet, []Fault) {
+	slices.SortStableFunc(r.faults, func(a, b Fault) int { return a.Line - b.Line })
+	slices.SortStableFunc(r.sheet.Notes, func(a, b Note) int { return a.Line - b.Line })
+	return r.sheet, r.faults
+}
 
 // learnMarks looks at every number of the sheet for its decimal mark.
 func (r *sheetReader) learnMarks() {
@@ -125,7 +138,7 @@ func (r *sheetReader) findUnits(records []sheetRecord) {
 		}
 		if u, said := units[role]; said {
 			c.unit = u
-			r.note(0, fmt.Sprintf("column %q read in %s, as the lines about the table say", c.title, u.name))
+			r.note(0, fmt.Sprintf("column %q: %s, as the lines about the table say", c.title, u.name))
 		} else if u, said := r.pairedUnit(c.role); said {
 			c.unit = u
 		} else if u, said := r.cellUnits(*c); said {
@@ -174,9 +187,10 @@ func (r *sheetReader) checkHead() {
 	before := len(r.faults)
 	for _, c := range r.head.columns {
 		switch {
-		case c.role == totalRole && c.needs(), c.role == basalAreaRole && c.needs() && r.head.has(stemRole):
+		case c.role == basalAreaRole && c.needs() && r.head.has(stemRole):
+			r.note(0, fmt.Sprintf("column %q has no unit and was not read", c.title))
 		case c.role == stemRole && c.unit.measure == noMeasure && !r.tally:
-			r.fault(Fault{Column: c.title, Fix: fmt.Sprintf("say what the species columns count, in a line above or in brackets: %s is likely",
+			r.faultOnce(Fault{Column: r.titleOf(stemRole), Fix: fmt.Sprintf("say what the species columns count, in a line above or in brackets: %s is likely",
 				perAreaRole.likely(r.us()))})
 		case c.needs():
 			r.fault(Fault{Column: c.title, Value: c.title, Fix: fmt.Sprintf("write the unit into the heading: \"%s [%s]\" is likely",
@@ -239,15 +253,15 @@ func (r *sheetReader) readBody(head sheetRecord) {
 
 // ignoredColumns notes what is not read. A column between species that holds numbers must be a species.
 func (r *sheetReader) ignoredColumns() {
-	titled := map[int]bool{}
+	titled, leftmost := map[int]bool{}, math.MaxInt
 	for _, c := range r.head.columns {
-		titled[c.index] = true
+		titled[c.index], leftmost = true, min(leftmost, c.index)
 		if c.role != unknownRole && (c.role != totalRole || r.head.has(stemRole)) {
 			continue
 		}
 		if line, value := r.firstNumber(c.index); line > 0 && r.head.has(stemRole) && !sideColumn.MatchString(c.title) {
 			_, err := nameSpecies(c.bare)
-			r.fault(Fault{Line: line, Column: c.title, Value: value, Fix: fmt.Sprintf("a heading that names a species or a total: %v", err)})
+			r.fault(Fault{Line: line, Column: c.title, Value: value, Fix: "a heading that names a species or a total: " + unknownFix(c.bare, err)})
 			continue
 		}
 		r.note(0, fmt.Sprintf("column %q not read", c.title))
@@ -257,7 +271,12 @@ func (r *sheetReader) ignoredColumns() {
 		width = max(width, len(rec.cells))
 	}
 	for i := range width {
-		if line, value := r.firstNumber(i); line > 0 && !titled[i] {
+		line, value := r.firstNumber(i)
+		switch {
+		case line == 0 || titled[i]:
+		case i < leftmost:
+			r.note(0, fmt.Sprintf("column %d has no heading and was not read", i+1))
+		default:
 			r.fault(Fault{Line: line, Value: value, Fix: fmt.Sprintf("a heading over column %d, or nothing in it; decimal commas need semicolons or tabs between the cells", i+1)})
 		}
 	}

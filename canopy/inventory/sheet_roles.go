@@ -50,17 +50,17 @@ var rolePhrases = phraseTable(map[sheetRole]string{
 		"baumart|holzart|art|sp|spp",
 	dbhRole: "dbh|diameter|diameters|class|dbh class|diameter class|diameter classes|size class|bhd|durchmesser|bhd stufe|" +
 		"bhd klasse|durchmesserstufe|durchmesserklasse|diameter at breast height|breast height diameter|diam|dbh from|" +
-		"class from|diameter from|diameter class from|from|bhd von|von|dbh lower|dbh min|lower|stärkeklasse|d1 3|d13",
+		"class from|diameter from|diameter class from|from|bhd von|von|dbh lower|dbh min|lower|stärkeklasse|d1 3|d 1 3|d13|d|dg|qmd|quadratic diameter",
 	dbhToRole: "dbh to|class to|diameter to|diameter class to|dbh class to|to|bhd bis|bis|dbh upper|dbh max|upper",
 	perAreaRole: "per area|trees|stems|n|stem number|stammzahl|baumzahl|density|tree density|stem density|stand density|" +
 		"live trees|live stems|stocking|trees per area|stems per area",
 	countRole: "tree count|count|tally|number trees|no trees|number stems|anzahl|stückzahl|trees counted|stems counted|tree tally",
 	heightRole: "height|heights|ht|tree height|total height|heights total|height total|höhe|hoehe|baumhöhe|mittelhöhe|" +
-		"tree heights|total ht",
+		"tree heights|total ht|h|hg|hm",
 	crownBaseRole: "crown base|crown base height|base live crown|base crown|height crown base|height to crown base|" +
 		"heights crown base|height live crown|height to live crown|height to base live crown|live crown base|kronenansatz|" +
 		"kronenansatzhöhe|hcb|crown base ht|ht to crown base|ht to live crown",
-	basalAreaRole: "basal area|basal areas|ba|grundfläche|grundflaeche|kreisfläche|basal area per area|stand basal area",
+	basalAreaRole: "basal area|basal areas|ba|grundfläche|grundflaeche|kreisfläche|g|basal area per area|stand basal area",
 	percentRole: "percent|%|share|shares|pct|proportion|anteil|prozent|percent basal area|% basal area|basal area %|ba %|" +
 		"% ba|percent ba|basal area share|share basal area|ba share|basal area percent|grundflächenanteil|anteil grundfläche|" +
 		"percentage|pct ba|ba pct",

@@ -97,7 +97,7 @@ func (r *sheetReader) perHa(e sheetEntry, g plotGround) float64 {
 	case g.plots == 0 && r.options.Area > 0:
 		counted = e.count / r.options.Area
 	case math.IsNaN(stated):
-		r.countFault()
+		r.faultOnce(Fault{Column: r.titleOf(countRole), Fix: "the ground that was counted: a column plot_area [ac], [ha] or [m2] over all plots, or the area of the stand"})
 		return math.NaN()
 	}
 	switch {
@@ -110,17 +110,6 @@ func (r *sheetReader) perHa(e sheetEntry, g plotGround) float64 {
 	return stated
 }
 
-// countFault says once that counts need a ground area.
-func (r *sheetReader) countFault() {
-	f := Fault{Column: r.titleOf(countRole), Fix: "the ground that was counted: a column plot_area [ac], [ha] or [m2] over all plots, or the area of the stand"}
-	for _, had := range r.faults {
-		if had == f {
-			return
-		}
-	}
-	r.fault(f)
-}
-
 // rowOf completes a class from what its line gives; how says what was derived.
 func (r *sheetReader) rowOf(e sheetEntry, perHa, basal float64) (row Row, how string, ok bool) {
 	row = Row{Class: Class{e.species, e.dbh, perHa, e.height, e.crownBase}, Line: e.line, BasalArea: basal, Plot: e.plot}
@@ -128,7 +117,7 @@ func (r *sheetReader) rowOf(e sheetEntry, perHa, basal float64) (row Row, how st
 	switch {
 	case hasDBH && hasTrees:
 		row.BasalArea = row.Class.BasalArea()
-		r.missed(e.line, "m2/ha on this line", basal, row.BasalArea)
+		r.missed(e.line, basalAreaRole, basal, row.BasalArea)
 	case hasDBH && hasBasal:
 		row.PerHa, how = basal/StemArea(e.dbh), treesDerived
 	case hasTrees && hasBasal && perHa > 0:
@@ -142,7 +131,7 @@ func (r *sheetReader) rowOf(e sheetEntry, perHa, basal float64) (row Row, how st
 	case hasTrees:
 		r.lineFault(e.line, dbhRole, "the diameter or the diameter class")
 		return row, how, false
-	case math.IsNaN(e.count):
+	case math.IsNaN(e.count) && math.IsNaN(e.percent):
 		r.lineFault(e.line, perAreaRole, "how many trees, 0 for none")
 		return row, how, false
 	default:
@@ -200,7 +189,7 @@ func (e sheetEntry) shared() bool {
 // standBasal is the basal area that the sheet says of the whole stand, else that of the options.
 func (r *sheetReader) standBasal() float64 {
 	for _, t := range r.totals {
-		if t.species != nil || math.IsNaN(t.basal) {
+		if t.species != nil || t.total != wholeTotal || t.plot != "" || math.IsNaN(t.basal) {
 			continue
 		}
 		if r.options.BasalArea > 0 && !agree(t.basal, r.options.BasalArea) {

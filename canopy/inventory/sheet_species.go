@@ -1,6 +1,7 @@
 package inventory
 
 import (
+	"fmt"
 	"regexp"
 	"strings"
 
@@ -59,6 +60,14 @@ func sameSpecies(whole string, parts []string) (*traits.Species, error) {
 	return found, nil
 }
 
+// unknownFix is what to write for a name that was not found.
+func unknownFix(name string, err error) string {
+	if near, ok := traits.Library().NearAlias(name); ok {
+		return fmt.Sprintf("%v; or %s", err, near)
+	}
+	return err.Error()
+}
+
 // twoSpecies is a name whose parts do not agree.
 type twoSpecies struct {
 	name        string
@@ -91,7 +100,7 @@ func totalLabel(cell string) (totalKind, string) {
 	t := strings.Trim(strings.ToLower(strings.Join(strings.Fields(headingMarks.Replace(cell)), " ")), " ")
 	bare := strings.Trim(t, "* ")
 	switch {
-	case t == "" || missing(cell):
+	case t == "" || missing(cell) || numeric(bare) && bare != t && !strings.HasPrefix(t, "*"):
 		return noTotal, cell
 	case bare == "" || totalWord.MatchString(bare):
 		return wholeTotal, ""

@@ -48,7 +48,9 @@ func (r *sheetReader) settleTotal(t sheetEntry, g plotGround, place totalPlace) 
 	block := func(row Row) bool { return row.Line > place.above && row.Line < t.line }
 	switch {
 	case t.plot != "" && g.plots > 0:
-		r.compare(t, g, func(row Row) bool { return row.Plot == t.plot && (t.species == nil || row.Species == t.species) })
+		perHa, basal := r.sums(func(row Row) bool { return row.Plot == t.plot && (t.species == nil || row.Species == t.species) })
+		r.missed(t.line, perAreaRole, t.perArea, perHa*float64(g.plots))
+		r.missed(t.line, basalAreaRole, t.basal, basal*float64(g.plots))
 		r.note(t.line, fmt.Sprintf("a total of plot %s, not read as a class", t.plot))
 	case t.species != nil:
 		r.keep(t.species, r.compare(t, g, func(row Row) bool { return row.Species == t.species }))
@@ -131,7 +133,7 @@ func (r *sheetReader) fits(t sheetEntry, g plotGround, of func(Row) bool) bool {
 func (r *sheetReader) compare(t sheetEntry, g plotGround, of func(Row) bool) Total {
 	perHa, basal := r.sums(of)
 	total := r.totalOf(t, g, perHa, basal)
-	r.missed(t.line, "trees/ha in all", total.PerHa, perHa)
-	r.missed(t.line, "m2/ha in all", total.BasalArea, basal)
+	r.missed(t.line, perAreaRole, total.PerHa, perHa)
+	r.missed(t.line, basalAreaRole, total.BasalArea, basal)
 	return total
 }

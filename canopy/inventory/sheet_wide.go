@@ -26,7 +26,7 @@ func (r *sheetReader) stemUnits(units map[sheetRole]sheetUnit) {
 		if c.role == stemRole && c.unit.measure != densities && c.unit.measure != basals {
 			c.unit = unit
 		}
-		if c.role == totalRole && c.needs() {
+		if c.role == totalRole && c.unit.measure == noMeasure {
 			c.unit = unit
 		}
 	}
@@ -61,7 +61,8 @@ func (r *sheetReader) unitBySums() sheetUnit {
 func (r *sheetReader) stemSum(rec sheetRecord) float64 {
 	sum := 0.0
 	for _, c := range r.head.columns {
-		if x := r.plainNumber(rec.cell(c.index)); c.role == stemRole && !math.IsNaN(x) {
+		named := c.role == stemRole || c.role == unknownRole && !sideColumn.MatchString(c.title)
+		if x := r.plainNumber(rec.cell(c.index)); named && !math.IsNaN(x) {
 			sum += x
 		}
 	}
@@ -78,7 +79,7 @@ func (r *sheetReader) plainNumber(cell string) float64 {
 
 // readWide reads a line of one diameter class and many species.
 func (r *sheetReader) readWide(rec sheetRecord) {
-	kind, label := kindOf(rec)
+	kind, label := r.kindOf(rec)
 	if kind == meanLine || kind == noTotal && !r.counted(rec) {
 		r.note(rec.line, fmt.Sprintf("not read: %q", rec.cells[r.firstFilled(rec)]))
 		return
@@ -124,7 +125,7 @@ func (r *sheetReader) readClass(rec sheetRecord) sheetEntry {
 	e.dbh = r.diameter(rec)
 	e.height, e.crownBase = r.value(rec, heightRole), r.value(rec, crownBaseRole)
 	e.perArea, e.ground = r.value(rec, perAreaRole), r.value(rec, plotAreaRole)
-	e.plot = r.text(rec, plotRole)
+	e.plot = r.plotOf(rec)
 	for _, c := range r.head.columns {
 		switch {
 		case c.role == basalAreaRole && !c.needs():
@@ -187,14 +188,21 @@ func (r *sheetReader) lineTotals(rec sheetRecord, base sheetEntry) {
 			}
 		}
 	}
-	r.missed(rec.line, "trees/ha on this line", base.perArea, trees)
-	r.missed(rec.line, "m2/ha on this line", base.basal, basal)
+	r.missed(rec.line, perAreaRole, base.perArea, trees)
+	r.missed(rec.line, basalAreaRole, base.basal, basal)
 }
 
-// missed notes a stated number that is over 2 % from what the rows add to.
-func (r *sheetReader) missed(line int, what string, stated, summed float64) {
+// missed notes a stated number that is over 2 % from what the rows add to, in the unit of the sheet.
+func (r *sheetReader) missed(line int, role sheetRole, stated, summed float64) {
 	if math.IsNaN(stated) || math.IsNaN(summed) || agree(stated, summed) {
 		return
 	}
-	r.note(line, fmt.Sprintf("the sheet says %.4g %s, its rows add to %.4g", stated, what, summed))
+	unit := sheetUnit{factor: 1, name: role.likely(false)}
+	for _, c := range r.head.columns {
+		if c.unit.measure == role.measure() && (c.role == role || c.role == stemRole) {
+			unit = c.unit
+			break
+		}
+	}
+	r.note(line, fmt.Sprintf("the sheet says %.4g %s, the trees on its lines make %.4g", stated/unit.factor, unit.name, summed/unit.factor))
 }

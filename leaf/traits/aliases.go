@@ -31,6 +31,7 @@ func (c *Catalogue) takeAlias(f []string) error {
 			return fmt.Errorf("alias %q of %s stands twice", f[0], f[2])
 		}
 	}
+	c.aliases = append(c.aliases, f[0])
 	c.byAlias[k] = append(c.byAlias[k], s)
 	return nil
 }
@@ -50,6 +51,23 @@ func (c *Catalogue) alias(name string) (*Species, error) {
 		names[i] = fmt.Sprintf("%s (%s)", s.Botanical, s.Common)
 	}
 	return nil, fmt.Errorf("species %q may be %s; write which", name, strings.Join(names, " or "))
+}
+
+// NearAlias is the further name nearest to one that is not held, of those that differ in a third of its letters at most.
+func (c *Catalogue) NearAlias(name string) (string, bool) {
+	want, best, show := aliasKey(name), len(name), ""
+	for _, a := range c.aliases {
+		key := aliasKey(a)
+		d := distance(want, key)
+		if numbered := strings.Trim(key, "0123456789") == ""; numbered || 3*d > len(want) || d >= best {
+			continue
+		}
+		best, show = d, a
+		if held := c.byAlias[key]; len(held) == 1 {
+			show = fmt.Sprintf("%s (%s)", a, held[0].Botanical)
+		}
+	}
+	return show, show != ""
 }
 
 var germanLetters = strings.NewReplacer("ä", "ae", "ö", "oe", "ü", "ue", "ß", "ss")

@@ -82,6 +82,7 @@ type Catalogue struct {
 	species []*Species
 	byName  map[string]*Species
 	byAlias map[string][]*Species // by aliasKey
+	aliases []string              // in file order
 	rules   map[string][]rule
 	order   []string // rule variables in file order
 }
