@@ -263,7 +263,7 @@ func (r *sheetReader) speciesOf(rec sheetRecord, name string) *traits.Species {
 			err = twoSpecies{cell + " beside " + name, found, s}
 		}
 		if err != nil {
-			r.fault(Fault{Line: rec.line, Column: c.title, Value: cell, Fix: unknownFix(cell, err)})
+			r.fault(Fault{Line: rec.line, Column: c.title, Value: cell, Fix: err.Error()})
 			r.filler = filler{}
 			return nil
 		}

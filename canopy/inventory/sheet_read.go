@@ -261,7 +261,7 @@ func (r *sheetReader) ignoredColumns() {
 		}
 		if line, value := r.firstNumber(c.index); line > 0 && r.head.has(stemRole) && !sideColumn.MatchString(c.title) {
 			_, err := nameSpecies(c.bare)
-			r.fault(Fault{Line: line, Column: c.title, Value: value, Fix: "a heading that names a species or a total: " + unknownFix(c.bare, err)})
+			r.fault(Fault{Line: line, Column: c.title, Value: value, Fix: "a heading that names a species or a total: " + err.Error()})
 			continue
 		}
 		r.note(0, fmt.Sprintf("column %q not read", c.title))

@@ -1,7 +1,6 @@
 package inventory
 
 import (
-	"fmt"
 	"regexp"
 	"strings"
 
@@ -58,14 +57,6 @@ func sameSpecies(whole string, parts []string) (*traits.Species, error) {
 		return traits.Find(whole)
 	}
 	return found, nil
-}
-
-// unknownFix is what to write for a name that was not found.
-func unknownFix(name string, err error) string {
-	if near, ok := traits.Library().NearAlias(name); ok {
-		return fmt.Sprintf("%v; or %s", err, near)
-	}
-	return err.Error()
 }
 
 // twoSpecies is a name whose parts do not agree.

@@ -53,8 +53,8 @@ func (c *Catalogue) alias(name string) (*Species, error) {
 	return nil, fmt.Errorf("species %q may be %s; write which", name, strings.Join(names, " or "))
 }
 
-// NearAlias is the further name nearest to one that is not held, of those that differ in a third of its letters at most.
-func (c *Catalogue) NearAlias(name string) (string, bool) {
+// nearAlias is the further name nearest to one that is not held, of those that differ in a third of its letters at most.
+func (c *Catalogue) nearAlias(name string) (string, bool) {
 	want, best, show := aliasKey(name), len(name), ""
 	for _, a := range c.aliases {
 		key := aliasKey(a)

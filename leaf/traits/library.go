@@ -148,7 +148,10 @@ func (c *Catalogue) nearest(name string) []string {
 		hits = append(hits, hit{d, show})
 	}
 	sort.SliceStable(hits, func(i, j int) bool { return hits[i].distance < hits[j].distance })
-	names := make([]string, 0, 3)
+	names := make([]string, 0, 4)
+	if a, ok := c.nearAlias(name); ok && hits[0].distance > 1 {
+		names = append(names, a)
+	}
 	for _, h := range hits[:min(3, len(hits))] {
 		names = append(names, h.name)
 	}
