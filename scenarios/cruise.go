@@ -57,7 +57,8 @@ func (c Cruise) BasalArea() Estimate {
 // Foliage turns trees into canopy layers.
 type Foliage struct {
 	Calendars  map[string]leaf.Calendar // by botanical name
-	LeafFactor float64                  // on leaf area, 1 but where the plan states the stand's
+	LeafFactor float64                  // on leaf area: what readings tell, or the plan
+	LeafStated bool                     // the plan states the leaf area that LeafFactor brings
 	WoodFactor float64                  // on wood area
 	// What the plan states for all layers; NaN where species and crowns tell.
 	Chi, Clumping, Absorptance float64

@@ -82,7 +82,7 @@ func invented(t testing.TB) *scenarios.Plan {
 		Ground:  canopy.Ground{Slope: 10 * degree, Aspect: 155 * degree},
 		Weather: normals(), Par: weather.Par{Fraction: 0.45},
 		Season: scenarios.Period{From: scenarios.Date{Month: 5, Day: 1}, To: scenarios.Date{Month: 9, Day: 30}},
-		Stand:  scenarios.Stand{Height: 24, CrownBase: 9, CrownRadius: 3.5, Layers: full, BasalArea: math.NaN()},
+		Stand:  scenarios.Stand{Height: 24, CrownBase: 9, CrownRadius: 3.5, Layers: full},
 		Treatments: []scenarios.Treatment{
 			{Name: "No action", Matrix: full, Opening: scenarios.NoOpening{}},
 			{Name: "Thinned", Matrix: thin, Opening: scenarios.NoOpening{}},

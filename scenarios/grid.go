@@ -34,6 +34,10 @@ func RunGrid(p *Plan, q Grid) ([][]Spot, error) {
 	if q.Treatment < 0 || q.Treatment >= len(p.Treatments) || q.Columns < 1 || q.Rows < 1 || !(q.Step > 0) {
 		return nil, fmt.Errorf("a map needs a treatment of the plan, at least one row and column and a step above 0 m")
 	}
+	p, _, err := Corrected(p)
+	if err != nil {
+		return nil, err
+	}
 	source := p.Weather
 	if n, ok := source.(*weather.Normals); ok {
 		few := *n

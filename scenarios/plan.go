@@ -96,6 +96,7 @@ type Stand struct {
 	Trees       inventory.Stand // what the layers are made of; without trees where the plan states layers
 	Foliage     Foliage         // how
 	Cruise      Cruise
+	Readings    Readings
 	Area        float64 // ha; NaN where not given
 	Age         float64 // y; NaN where not given
 }

@@ -7,14 +7,15 @@ import (
 
 // Results is what a run found, in the plan's order of treatments, stations, seedlings.
 type Results struct {
-	Plan     *Plan
-	Series   *weather.Series
-	Stations []TreatmentStations // by treatment
-	Light    []LightRow
-	Balance  []BalanceRow
-	Neutral  []NeutralShade // by seedling, where break-evens were asked for
-	Warnings []Warning      // of the plan and of the run
-	Assumed  []Assumed
+	Plan       *Plan
+	Series     *weather.Series
+	Stations   []TreatmentStations // by treatment
+	Light      []LightRow
+	Balance    []BalanceRow
+	Neutral    []NeutralShade // by seedling, where break-evens were asked for
+	Correction Correction     // of the leaf area by readings; the plan here is the corrected one
+	Warnings   []Warning      // of the plan and of the run
+	Assumed    []Assumed
 }
 
 // NeutralShade is a seedling's break-even where sun and sky are dimmed alike all year: it depends on species and site only.

@@ -41,6 +41,10 @@ func RunSeries(p *Plan, series *weather.Series, opts Options) (*Results, error) 
 	if len(p.Treatments) == 0 {
 		return nil, errors.New("the plan has no treatment; at least one is needed")
 	}
+	p, correction, err := Corrected(p)
+	if err != nil {
+		return nil, err
+	}
 	r := &runner{
 		plan: p, opts: opts, above: light.NewAbove(series, p.Sampling.Sky, light.Station),
 		season: Mask(series, p.Season), years: calendarYears(series),
@@ -53,8 +57,9 @@ func RunSeries(p *Plan, series *weather.Series, opts Options) (*Results, error) 
 		r.prepared = prepare(p, r.above)
 	}
 	r.spans = r.divide()
-	res := &Results{Plan: p, Series: series, Assumed: p.Assumed}
+	res := &Results{Plan: p, Series: series, Assumed: p.Assumed, Correction: correction}
 	res.Warnings = append(res.Warnings, p.Warnings...)
+	res.Warnings = append(res.Warnings, correction.notes()...)
 	for _, w := range series.Warnings {
 		res.Warnings = append(res.Warnings, Warning{Key: "weather", Text: w})
 	}

@@ -179,7 +179,7 @@ func (r *reader) trees(v val, f map[string]val, classes []inventory.Class, s *sc
 	}
 	u := s.Trees.Sums()
 	if x, ok := r.number(f["lai"]); ok {
-		s.Foliage.LeafFactor = x / u.LAI
+		s.Foliage.LeafFactor, s.Foliage.LeafStated = x/u.LAI, true
 	}
 	if x, ok := r.number(f["wai"]); ok {
 		s.Foliage.WoodFactor = x / u.WAI

@@ -28,10 +28,16 @@ func again(t *testing.T, p *scenarios.Plan, example string) *scenarios.Plan {
 	return q
 }
 
-// difference of two plans but for where they came from and what was assumed on the way. NaN is not given.
+// difference of two plans but for where they came from and what was assumed on the way. NaN is not given. The effective plan
+// states layers where the plan gave trees: the trees and what is said of them are left out.
 func difference(a, b *scenarios.Plan) string {
+	left := []string{"File", "Example", "Assumed", "Doubts"}
+	if a.Stand.Cruised() {
+		left = append(left, "Warnings")
+	}
 	return cmp.Diff(a, b, cmp.Exporter(func(reflect.Type) bool { return true }), cmpopts.EquateNaNs(),
-		cmpopts.EquateEmpty(), cmpopts.IgnoreFields(scenarios.Plan{}, "File", "Example", "Assumed", "Doubts"),
+		cmpopts.EquateEmpty(), cmpopts.IgnoreFields(scenarios.Plan{}, left...),
+		cmpopts.IgnoreFields(scenarios.Stand{}, "Trees", "Foliage", "Cruise"), cmpopts.IgnoreFields(scenarios.Treatment{}, "Trees", "Cut"),
 		cmpopts.SortSlices(func(a, b scenarios.Fact) bool { return a.Key < b.Key }))
 }
 
@@ -75,6 +81,61 @@ func TestEffectivePlanKeepsEverything(t *testing.T) {
 		t.Errorf("the effective plan leaves %s to assume", a.Key)
 	}
 }
+
+// A stand by its trees, with all that may be asked of them, comes back as layers that are the same.
+func TestEffectivePlanOfTrees(t *testing.T) {
+	p, faults := parse("trees.yaml", []byte(fromTrees), Options{}, nil)
+	if p == nil {
+		t.Fatal(faults)
+	}
+	q, faults := parse("effective", Effective(p), Options{}, nil)
+	if q == nil {
+		t.Fatalf("%v\n%s", faults, Effective(p))
+	}
+	if d := difference(p, q); d != "" {
+		t.Errorf("(-plan +read back):\n%s", d)
+	}
+	if n := len(p.Treatments); n != 6 {
+		t.Errorf("%d treatments; two steps make two", n)
+	}
+}
+
+// fromTrees uses every key that works on trees.
+const fromTrees = `
+title: trees
+site: {latitude: 48.2 N, longitude: 12.4 E}
+weather:
+  normals:
+    temperature_unit: C
+    radiation_unit: MJ m-2 d-1
+    mean: [-8.3, -7.1, -1.6, 5.4, 12.4, 17.2, 19.6, 18.6, 14.3, 7.9, 1.9, -4.7]
+    min: [-13.9, -13.2, -7.4, -0.5, 5.7, 10.9, 13.4, 12.5, 8.3, 2.6, -2.4, -9.0]
+    max: [-2.7, -1.0, 4.2, 11.3, 19.1, 23.5, 25.8, 24.7, 20.3, 13.2, 6.2, -0.4]
+    radiation: [6.1, 9.4, 13.5, 16.4, 19.3, 21.1, 21.0, 17.9, 13.9, 8.9, 5.5, 4.7]
+season: {from: 05-01, to: 09-30}
+stand:
+  height: 31 m
+  basal_area: {Picea abies: 30 m2/ha, Fagus sylvatica: 12 m2/ha +- 2 m2/ha}
+  angle_count: {factor: 4 m2/ha, counts: [10, 11, 9, 12]}
+  closure_readings: {kind: closed, instrument: sight, values: [93, 95, 91.5]}
+  lai: 6.1
+  wai: 0.7
+  chi: 1.2
+  clumping: 0.7
+  absorptance: 0.86
+  leaves: {out: 05-01, full: 05-20, colour: 10-01, bare: 10-20}
+  understory:
+    - {name: bramble, height: 1 m, cover: 45 %, leaves: evergreen}
+    - {name: beech, species: Fagus sylvatica, height: 3 m, stems: 2000 stems/ha}
+seedlings:
+  - {species: Abies alba, height: 0.3 m}
+treatments:
+  - name: No action
+  - {name: Low, thin: {take: 30 %, only: [Fichte]}}
+  - {name: High, thin: {leave: 20 m2/ha, order: largest first, spare: [Fagus sylvatica]}, understory: {bramble: remove}}
+  - {name: Shelter, steps: [{year: 0, thin: {leave: 30 m2/ha}}, {year: 8, thin: {leave: 20 m2/ha, order: all sizes}}]}
+  - {name: Hole, opening: {circle: {diameter: 40 m}}, inside: {keep: {count: 4, species: Fagus sylvatica, from: 20 cm, to: 50 cm}}}
+`
 
 // everything uses what the examples do not.
 const everything = `

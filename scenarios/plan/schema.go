@@ -72,8 +72,18 @@ func object(path string) map[string]any {
 	if len(need) > 0 {
 		o["required"] = need
 	}
+	if list := oneOf[path[strings.LastIndex(path, ".")+1:]]; list != nil {
+		var one []any
+		for _, k := range list {
+			one = append(one, map[string]any{"required": []string{k}})
+		}
+		o["oneOf"] = one
+	}
 	return o
 }
+
+// oneOf are the keys of a block of which just one must stand.
+var oneOf = map[string][]string{"thin": {"leave", "take"}, "keep": {"count", "share"}, "understory[]": {"lai", "cover", "stems"}}
 
 func describeKey(k Key) string {
 	text := k.Meaning
@@ -173,7 +183,7 @@ func list(k Key) map[string]any {
 	if _, err := fmt.Sscanf(k.Range, "%d numbers", &n); err == nil {
 		out["minItems"], out["maxItems"] = n, n
 	}
-	if required[k.Path] && n == 0 {
+	if (required[k.Path] || k.Path == "treatments[].steps") && n == 0 {
 		out["minItems"] = 1
 	}
 	return out

@@ -66,6 +66,7 @@ func TestSchemaTakesSoundPlans(t *testing.T) {
 	}
 	check("sound", sound(t, ""))
 	check("everything", []byte(everything))
+	check("from trees", []byte(fromTrees))
 	for _, name := range Examples() {
 		text, err := examples.ReadFile("examples/" + name + "/plan.yaml")
 		if err != nil {
@@ -82,16 +83,19 @@ func TestSchemaTakesSoundPlans(t *testing.T) {
 
 // beyond are the bad plans whose fault lies between keys, in the size of a quantity, in a date, a name or a file, or in
 // how YAML writes a number (hex, overflow): only the reader sees it.
-var beyond = strings.Fields(`acclimation-none-of-two alias circle-both circle-feet circle-over-1-km co2 crown-base-above-height doubt-negative
-	doubt-out-of-order doubt-twice doubt-without-unit earlier-and-dates earlier-of-evergreen elevation ellipse-mixed ellipse-wide
-	grid growth-lights height-feet-as-metres height-in-h hex horizon-high horizon-order lai-beside-layers lai-missing
-	latitude-minutes layer-upside-down leaf-dates-order leaf-dates-three longitude-east magnetic-without-declination matrix-both matrix-lai-grows max-gap
-	measured-alone month-13 needles-without-basis normals-both normals-impossible normals-no-radiation-unit normals-order
-	normals-rain-unit overflow own-leaf-area-missing own-leaf-mass own-without-leaves own-without-rd own-without-traits
-	polygon-crossing polygon-hole polygon-missing polygon-point seedling-leafless seedling-nameless seedling-names seedling-tall
-	seedling-unknown slope-400 slope-negative slope-without-aspect smaller-than-crowns snow-deep species-unknown station-names
-	station-no-bearing step-long step-odd t-ref-of-library thirty-february treatment-names two-weathers understory-names
-	understory-stranger understory-upside-down weather-folder weather-no-file weather-none woody-and-stem-rate woody-and-stem`)
+var beyond = strings.Fields(`acclimation-none-of-two alias angle-count-alone basal-area-and-species basal-area-beside-layers basal-area-high basal-area-species
+	circle-both circle-feet circle-over-1-km closure-over co2 crown-base-above-height doubt-negative doubt-out-of-order doubt-twice
+	doubt-without-unit earlier-and-dates earlier-of-evergreen elevation ellipse-mixed ellipse-wide grid growth-lights
+	height-feet-as-metres height-in-h hex horizon-high horizon-order keep-and-layers keep-without-trees lai-beside-layers lai-missing
+	latitude-minutes layer-upside-down leaf-dates-order leaf-dates-three longitude-east magnetic-without-declination matrix-both
+	matrix-lai-grows max-gap measured-alone month-13 needles-without-basis normals-both normals-impossible normals-no-radiation-unit
+	normals-order normals-rain-unit overflow own-leaf-area-missing own-leaf-mass own-without-leaves own-without-rd own-without-traits
+	polygon-crossing polygon-hole polygon-missing polygon-point readings-dirty seedling-leafless seedling-nameless seedling-names
+	seedling-tall seedling-unknown slope-400 slope-negative slope-without-aspect smaller-than-crowns snow-deep species-unknown
+	stand-table-dirty stand-table-missing station-names station-no-bearing step-long step-odd steps-order t-ref-of-library
+	thin-and-matrix thin-grows thin-species thin-without-trees thirty-february treatment-names two-weathers understory-names
+	understory-stems understory-stranger understory-upside-down weather-folder weather-no-file weather-none woody-and-stem-rate
+	woody-and-stem`)
 
 // What the schema refuses, the reader refuses; and the schema refuses every bad plan but those beyond it.
 func TestSchemaRefusesBadPlans(t *testing.T) {
@@ -128,17 +132,10 @@ func TestRequiredKeysAreMissed(t *testing.T) {
 		if strings.HasPrefix(path, "cautions.") && path != "cautions.frost.state" {
 			continue // one table, one rule
 		}
-		var doc yaml.Node
-		if err := yaml.Load([]byte(layered), &doc); err != nil {
-			t.Fatal(err)
-		}
-		if n := drop(doc.Content[0], path); n == 0 {
-			t.Errorf("%s: the test's plan has no such key", path)
+		out, ok := without(t, path, layered, fromTrees)
+		if !ok {
+			t.Errorf("%s: the test's plans have no such key", path)
 			continue
-		}
-		out, err := yaml.Dump(&doc)
-		if err != nil {
-			t.Fatal(err)
 		}
 		if s.Validate(instance(t, out)) == nil {
 			t.Errorf("%s: the schema does not miss it", path)
@@ -153,6 +150,26 @@ func TestRequiredKeysAreMissed(t *testing.T) {
 			t.Errorf("%s: the reader does not miss it: %v", path, faults)
 		}
 	}
+}
+
+// without gives the first of some plans that has a key, without it.
+func without(t *testing.T, path string, texts ...string) ([]byte, bool) {
+	t.Helper()
+	for _, text := range texts {
+		var doc yaml.Node
+		if err := yaml.Load([]byte(text), &doc); err != nil {
+			t.Fatal(err)
+		}
+		if drop(doc.Content[0], path) == 0 {
+			continue
+		}
+		out, err := yaml.Dump(&doc)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return out, true
+	}
+	return nil, false
 }
 
 // drop takes a key out of every block at its path.

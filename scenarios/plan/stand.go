@@ -75,11 +75,32 @@ func (r *reader) stand(v val, p *scenarios.Plan) map[string]val {
 	switch {
 	case len(classes) > 0 && len(r.faults) == before:
 		s.Layers = r.trees(v, f, classes, s)
-	case !cruised(f) && len(classes) == 0:
+	case !cruised(f) && len(classes) == 0 && len(r.faults) == before:
 		s.Layers = r.overstory(v, f, p)
 	}
 	s.Understory = r.understory(f["understory"], f["leaves"])
+	r.readings(f, p)
+	r.slender(s)
 	return f
+}
+
+// H:D above which a stand is unstable, and very (common practice).
+const slender, verySlender = 80, 95
+
+// slender warns of trees thin for their height.
+func (r *reader) slender(s *scenarios.Stand) {
+	if !s.Cruised() {
+		return
+	}
+	word, x := "caution", s.Trees.Slenderness()
+	switch {
+	case x <= slender:
+		return
+	case x > verySlender:
+		word = "high risk"
+	}
+	r.warnings = append(r.warnings, scenarios.Warning{Key: "windthrow", Text: fmt.Sprintf(
+		"%s: H:D %.0f (dominant height over QMD of %s), above %d; thin in steps, keep edges closed", word, x, s.Trees.Leading().Species.Common, map[string]int{"caution": slender, "high risk": verySlender}[word])})
 }
 
 // crowns reads where crowns begin and how far they reach; left out, both come from the trees, else from the species group.
@@ -150,7 +171,7 @@ func (r *reader) overstory(v val, f map[string]val, p *scenarios.Plan) []scenari
 	}
 	if !f["lai"].present() {
 		if r.region == nil {
-			r.fault(val{node: v.node, at: v.at, path: "stand.lai"}, " ", "missing; give stand.layers or stand.lai, or a region whose value is assumed")
+			r.fault(val{node: v.node, at: v.at, path: "stand.lai"}, " ", "missing; give stand_table, basal_area, layers or lai, or a region whose value is assumed")
 			return nil
 		}
 		r.assume("stand.lai", fmt.Sprint(r.region.lai), practice+", the region's")

@@ -13,7 +13,7 @@ func FirstScreen(o Output, r *scenarios.Results) error {
 	b := gather(r)
 	var lines []string
 	lines = append(lines, heading(r.Plan)...)
-	lines = append(lines, wrap(readAs(r.Plan, o.Units), Width, Width)...)
+	lines = append(lines, wrap(readAs(r, o.Units), Width, Width)...)
 	lines = append(lines, wrap(b.decision(), Width, Width)...)
 	last := footer(r)
 	lines = append(lines, b.grid(o.Units, Height-len(lines)-len(last))...)
@@ -35,7 +35,8 @@ func heading(p *scenarios.Plan) []string {
 }
 
 // readAs says what the stand was taken for.
-func readAs(p *scenarios.Plan, u scenarios.Units) string {
+func readAs(r *scenarios.Results, u scenarios.Units) string {
+	p := r.Plan
 	s := "Read as: "
 	if p.Stand.Cruised() {
 		sums, leading := p.Stand.Trees.Sums(), p.Stand.Trees.Leading()
@@ -44,7 +45,7 @@ func readAs(p *scenarios.Plan, u scenarios.Units) string {
 	} else {
 		s += "height " + length(p.Stand.Height, u)
 	}
-	s += ", leaf area " + text0(leafArea(p.Stand.Layers), 1) + leafSource(p)
+	s += ", leaf area " + text0(leafArea(p.Stand.Layers), 1) + leafSource(r)
 	if n := len(p.Stand.Understory); n > 0 {
 		var names []string
 		for _, x := range p.Stand.Understory {
@@ -56,14 +57,16 @@ func readAs(p *scenarios.Plan, u scenarios.Units) string {
 }
 
 // leafSource says in a word where the leaf area comes from.
-func leafSource(p *scenarios.Plan) string {
+func leafSource(r *scenarios.Results) string {
 	switch {
-	case p.Stand.Cruised() && p.Stand.Foliage.LeafFactor == 1:
-		return " (allometry)"
-	case p.Stand.Cruised():
+	case r.Correction.Source != "":
+		return " (by " + r.Correction.Source + ")"
+	case r.Plan.Stand.Foliage.LeafStated:
 		return " (stated)"
+	case r.Plan.Stand.Cruised():
+		return " (allometry)"
 	}
-	for _, a := range p.Assumed {
+	for _, a := range r.Plan.Assumed {
 		if a.Key == "stand.lai" {
 			return " (assumed)"
 		}

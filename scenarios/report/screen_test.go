@@ -26,7 +26,7 @@ func made(t *testing.T, class classOf) *scenarios.Results {
 	}
 	p := &scenarios.Plan{Title: "Stand 7, Kettle Bench", Example: true, Units: scenarios.US,
 		Season: scenarios.Period{From: scenarios.Date{Month: time.May, Day: 1}, To: scenarios.Date{Month: time.September, Day: 30}},
-		Stand:  scenarios.Stand{Height: 23.8, CrownBase: 9, Layers: layer(5), BasalArea: 29.2},
+		Stand:  scenarios.Stand{Height: 23.8, CrownBase: 9, Layers: layer(5)},
 	}
 	for _, name := range []string{"Red oak 2-0", "White pine", "Yellow birch", "Sugar maple", "Hemlock"} {
 		p.Seedlings = append(p.Seedlings, scenarios.Seedling{Name: name})
