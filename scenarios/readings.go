@@ -127,6 +127,23 @@ type readingModel struct {
 	dome          *canopy.Dome
 	open, through *canopy.CellLight
 	known         map[skyKey]float64
+	scans         map[scanKey]*canopy.SkyScan
+}
+
+// scanKey is what the sky seen through the stand depends on before its leaves do.
+type scanKey struct {
+	stand  *canopy.Stand
+	height float64
+}
+
+// scan is the sky seen at a height in the stand, kept for every factor.
+func (m *readingModel) scan(s *canopy.Stand, height float64) *canopy.SkyScan {
+	key := scanKey{s, height}
+	if m.scans[key] == nil {
+		m.scans[key] = s.NewSkyScan(m.dome)
+		m.scans[key].Scan(canopy.Point{Height: height})
+	}
+	return m.scans[key]
 }
 
 // skyKey is what the light of the sky at a reading depends on.
@@ -137,7 +154,7 @@ type skyKey struct {
 }
 
 func newReadingModel(p *Plan) (*readingModel, error) {
-	m := &readingModel{plan: p, dome: canopy.FixedSkyDome(), known: map[skyKey]float64{}}
+	m := &readingModel{plan: p, dome: canopy.FixedSkyDome(), known: map[skyKey]float64{}, scans: map[scanKey]*canopy.SkyScan{}}
 	m.open, m.through = m.dome.Open(), canopy.NewCellLight(m.dome)
 	matrix, err := m.calendars.profile(p.Stand.Layers, p.Stand.Understory)
 	if err != nil {
@@ -203,9 +220,7 @@ func (m *readingModel) sky(r LightReading, factor float64) float64 {
 	if v, ok := m.known[key]; ok {
 		return v
 	}
-	scan := m.stand.NewSkyScan(m.dome)
-	scan.Scan(canopy.Point{Height: r.Height})
-	scan.Transmit(m.shares(r.Time, factor), m.through)
+	m.scan(m.stand, r.Height).Transmit(m.shares(r.Time, factor), m.through)
 	below, above := 0.0, 0.0
 	for i := range m.dome.Rings() {
 		R := 1.0
@@ -224,13 +239,11 @@ const openCone = math.Pi / 3
 
 // openness is the share of the sky within the cone that is open, leaves at full, at breast height.
 func (m *readingModel) openness(factor float64) float64 {
-	scan := m.black.NewSkyScan(m.dome)
-	scan.Scan(canopy.Point{Height: breast})
 	shares := make([]float64, max(1, len(m.calendars.list)))
 	for i := range shares {
 		shares[i] = factor
 	}
-	scan.Transmit(shares, m.through)
+	m.scan(m.black, breast).Transmit(shares, m.through)
 	open, all := 0.0, 0.0
 	for i := range m.dome.Rings() {
 		if m.dome.Zenith[i+1] <= openCone*(1+1e-9) {

@@ -3,6 +3,7 @@ package main
 import (
 	"github.com/spf13/cobra"
 
+	"shadeledger/scenarios"
 	"shadeledger/scenarios/plan"
 	"shadeledger/scenarios/report"
 )
@@ -34,7 +35,7 @@ same folder it gives the same results.`,
 		},
 	}
 	addPlanFlags(cmd)
-	cmd.Flags().BoolVar(&effective, "effective", false, "print the plan with every value explicit")
+	cmd.Flags().BoolVar(&effective, "effective", false, "print the plan with every value explicit, leaf area as readings correct it")
 	return cmd
 }
 
@@ -48,6 +49,9 @@ func runCheck(o checkOptions) error {
 	}
 	write := func(out report.Output) error { return report.Check(out, p) }
 	if o.effective {
+		if p, _, err = scenarios.Corrected(p); err != nil {
+			return err
+		}
 		write = func(out report.Output) error {
 			_, err := out.Out.Write(plan.Effective(p))
 			return err

@@ -41,7 +41,7 @@ func readAs(r *scenarios.Results, u scenarios.Units) string {
 	if p.Stand.Cruised() {
 		sums, leading := p.Stand.Trees.Sums(), p.Stand.Trees.Leading()
 		s += basalArea(sums.BasalArea, u) + ", " + density(sums.PerHa, u) + ", QMD " + diameter(sums.QMD(), u) +
-			", H:D " + text0(p.Stand.Trees.Slenderness(), 0) + " (" + leading.Species.Common + ")"
+			", H:D " + text0(p.Stand.Trees.Slenderness(), 0) + " (" + lastWord(leading.Species.Common) + ")"
 	} else {
 		s += "height " + length(p.Stand.Height, u)
 	}
@@ -56,15 +56,18 @@ func readAs(r *scenarios.Results, u scenarios.Units) string {
 	return s
 }
 
+// lastWord is the kind in a common name: oak of northern red oak.
+func lastWord(name string) string { return name[strings.LastIndex(name, " ")+1:] }
+
 // leafSource says in a word where the leaf area comes from.
 func leafSource(r *scenarios.Results) string {
 	switch {
 	case r.Correction.Source != "":
-		return " (by " + r.Correction.Source + ")"
+		return " (readings)"
 	case r.Plan.Stand.Foliage.LeafStated:
 		return " (stated)"
 	case r.Plan.Stand.Cruised():
-		return " (allometry)"
+		return " (dbh)"
 	}
 	for _, a := range r.Plan.Assumed {
 		if a.Key == "stand.lai" {

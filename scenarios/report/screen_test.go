@@ -11,12 +11,29 @@ import (
 	"unicode/utf8"
 
 	"shadeledger/canopy"
+	"shadeledger/canopy/inventory"
+	"shadeledger/leaf/traits"
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
 )
 
 // class of a seedling at a station of a treatment.
 type classOf func(treatment, station, seedling int) ledger.Class
+
+// oaks are 29.2 m2/ha of red oak, 25 cm thick.
+func oaks(t *testing.T) inventory.Stand {
+	t.Helper()
+	oak, err := traits.Find("Quercus rubra")
+	if err != nil {
+		t.Fatal(err)
+	}
+	class := inventory.Class{Species: oak, DBH: 0.25, PerHa: 29.2 / inventory.StemArea(0.25), Height: math.NaN(), CrownBase: math.NaN()}
+	s, err := inventory.NewStand([]inventory.Class{class}, inventory.Setting{Height: 23.8, CrownBase: 9})
+	if err != nil {
+		t.Fatal(err)
+	}
+	return s
+}
 
 // made is a run of nine treatments and five seedlings with classes as told; light falls from 59 % by station.
 func made(t *testing.T, class classOf) *scenarios.Results {
@@ -26,7 +43,7 @@ func made(t *testing.T, class classOf) *scenarios.Results {
 	}
 	p := &scenarios.Plan{Title: "Stand 7, Kettle Bench", Example: true, Units: scenarios.US,
 		Season: scenarios.Period{From: scenarios.Date{Month: time.May, Day: 1}, To: scenarios.Date{Month: time.September, Day: 30}},
-		Stand:  scenarios.Stand{Height: 23.8, CrownBase: 9, Layers: layer(5)},
+		Stand:  scenarios.Stand{Height: 23.8, CrownBase: 9, Layers: layer(5), Trees: oaks(t)},
 	}
 	for _, name := range []string{"Red oak 2-0", "White pine", "Yellow birch", "Sugar maple", "Hemlock"} {
 		p.Seedlings = append(p.Seedlings, scenarios.Seedling{Name: name})
@@ -122,7 +139,7 @@ func TestScreenShowsEveryTreatmentAndSeedling(t *testing.T) {
 	r := made(t, func(i, j, k int) ledger.Class { return ledger.Class((i + j + k) % 3) })
 	text := strings.Join(screen(t, r), "\n")
 	t.Log("\n" + text)
-	for _, want := range []string{"invented data", "127 ft2/ac", "78.1 ft", "(assumed)", "1 cautions open", "Hemlock", "Circle", "2.0 H", "comfortable"} {
+	for _, want := range []string{"invented data", "127 ft2/ac", "241 trees/ac", "QMD 9.8 in", "H:D 95 (oak)", "(dbh)", "1 cautions open", "Hemlock", "Circle", "2.0 H", "comfortable"} {
 		if !strings.Contains(text, want) {
 			t.Errorf("the screen does not show %q", want)
 		}
