@@ -66,7 +66,7 @@ func (r *sheetReader) checkStand() {
 	}
 	_, basal := r.sums(func(Row) bool { return true })
 	if basal > densest {
-		r.fault(Fault{Column: r.titleOf(dbhRole), Value: fmt.Sprintf("%.4g m2/ha in all", basal),
+		r.fault(Fault{Value: fmt.Sprintf("%.4g m2/ha in all", basal),
 			Fix: fmt.Sprintf("a stand of at most %g m2/ha: were feet meant, or acres?", densest)})
 	}
 }

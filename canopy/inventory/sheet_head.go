@@ -24,10 +24,10 @@ type sheetHead struct {
 	score       int
 }
 
-// headSearch is how many records of a sheet may stand above its heading, and headRows how many may make it up.
 const (
-	headSearch = 25
-	headRows   = 3
+	headSearch = 25 // records that may stand above the heading
+	headRows   = 3  // records that may make it up
+	headScore  = 20 // two columns understood
 )
 
 // findHead takes the records that can be understood best as headings; of equals the fewest and first.
@@ -48,7 +48,7 @@ func findHead(records []sheetRecord) (sheetHead, bool) {
 			}
 		}
 	}
-	return best, best.score >= 20
+	return best, best.score >= headScore
 }
 
 func hasNumber(r sheetRecord) bool {

@@ -100,14 +100,17 @@ func (r *sheetReader) text(rec sheetRecord, role sheetRole) string {
 	return ""
 }
 
-func (r *sheetReader) titleOf(role sheetRole) string {
+// firstOf is the first column of a role, empty where there is none.
+func (r *sheetReader) firstOf(role sheetRole) sheetColumn {
 	for _, c := range r.head.columns {
 		if c.role == role {
-			return c.title
+			return c
 		}
 	}
-	return ""
+	return sheetColumn{}
 }
+
+func (r *sheetReader) titleOf(role sheetRole) string { return r.firstOf(role).title }
 
 // plotOf is the plot of a line, "" where that cell names a total.
 func (r *sheetReader) plotOf(rec sheetRecord) string {

@@ -16,7 +16,7 @@ type decimalMark struct {
 var (
 	numeralPattern = regexp.MustCompile(`^[0-9][0-9.,'’]*$|^[.,][0-9]+$`)
 	leadPattern    = regexp.MustCompile(`^[+-]?[.,]?[0-9][0-9.,]*(?:['’ ][0-9]{3})*(?:[.,][0-9]+)?`)
-	rangePattern   = regexp.MustCompile(`^([0-9][0-9.,]*)\s*(?:"|″|cm|in)?\s*(?:-|–|—|to|bis)\s*<?([0-9][0-9.,]*)(.*)$`)
+	rangePattern   = regexp.MustCompile(`^([0-9][0-9.,]*)\s*(?:"|″|cm|in)?\s*(?:-|–|—|−|to|bis)\s*<?([0-9][0-9.,]*)(.*)$`)
 	groupPattern   = regexp.MustCompile(`^[1-9][0-9]{0,2}([.,'’ ][0-9]{3})+$`)
 )
 

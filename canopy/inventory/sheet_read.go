@@ -3,8 +3,8 @@ package inventory
 import (
 	"fmt"
 	"math"
+	"regexp"
 	"slices"
-	"strings"
 
 	"shadeledger/leaf/traits"
 )
@@ -31,12 +31,12 @@ func ReadSheet(data []byte, o SheetOptions) (Sheet, []Fault) {
 	}
 	r.head = head
 	r.mark.delimiter = delimiter
-	r.body = records[head.first+head.rows:]
+	r.heads, r.body = records[head.first:head.first+head.rows], records[head.first+head.rows:]
 	r.learnMarks()
 	r.findUnits(records)
 	r.statedBasal(records[:head.first])
 	r.checkHead()
-	r.readBody(records[head.first])
+	r.readBody()
 	if !r.broken {
 		r.checkEntries()
 		r.settle()
@@ -49,7 +49,8 @@ type sheetReader struct {
 	options SheetOptions
 	mark    decimalMark
 	head    sheetHead
-	body    []sheetRecord
+	heads   []sheetRecord // of the heading
+	body    []sheetRecord // below it
 	entries []sheetEntry
 	totals  []sheetEntry
 	faults  []Fault
@@ -184,28 +185,28 @@ func (r *sheetReader) cellUnits(c sheetColumn) (sheetUnit, bool) {
 
 // checkHead faults units that are nowhere stated, and columns that are missing or stand twice.
 func (r *sheetReader) checkHead() {
-	before := len(r.faults)
+	before, line := len(r.faults), r.heads[len(r.heads)-1].line
 	for _, c := range r.head.columns {
 		switch {
 		case c.role == basalAreaRole && c.needs() && r.head.has(stemRole):
 			r.note(0, fmt.Sprintf("column %q has no unit and was not read", c.title))
 		case c.role == stemRole && c.unit.measure == noMeasure && !r.tally:
-			r.faultOnce(Fault{Column: r.titleOf(stemRole), Fix: fmt.Sprintf("say what the species columns count, in a line above or in brackets: %s is likely",
+			r.faultOnce(Fault{Line: line, Column: r.titleOf(stemRole), Fix: fmt.Sprintf("say what the species columns count, in a line above or in brackets: %s is likely",
 				perAreaRole.likely(r.us()))})
 		case c.needs():
-			r.fault(Fault{Column: c.title, Value: c.title, Fix: fmt.Sprintf("write the unit into the heading: \"%s [%s]\" is likely",
+			r.fault(Fault{Line: line, Column: c.title, Value: c.title, Fix: fmt.Sprintf("write the unit into the heading: \"%s [%s]\" is likely",
 				c.role, c.role.likely(r.us()))})
 		}
 	}
 	r.checkPairs()
 	switch h := r.head; {
 	case !h.has(speciesRole) && !h.has(stemRole):
-		r.fault(Fault{Fix: "a column headed species"})
+		r.fault(Fault{Line: line, Fix: "a column headed species"})
 	case h.has(stemRole):
 	case !h.has(perAreaRole) && !h.has(countRole) && !h.has(basalAreaRole) && !h.has(percentRole) && !h.has(treeRole):
-		r.fault(Fault{Fix: "a column of how many trees, such as per_area [trees/ac] or per_area [trees/ha], or tree_count"})
+		r.fault(Fault{Line: line, Fix: "a column of how many trees, such as per_area [trees/ac] or per_area [trees/ha], or tree_count"})
 	case !h.has(dbhRole) && !h.has(basalAreaRole) && !h.has(percentRole):
-		r.fault(Fault{Fix: "a column of diameters, such as dbh [in] or dbh [cm], or of basal area"})
+		r.fault(Fault{Line: line, Fix: "a column of diameters, such as dbh [in] or dbh [cm], or of basal area"})
 	}
 	r.broken = len(r.faults) > before
 }
@@ -216,7 +217,7 @@ func (r *sheetReader) checkPairs() {
 		for _, b := range r.head.columns[:i] {
 			same := a.role == b.role && a.role.numeric() && a.unit.factor == b.unit.factor && a.species == b.species
 			if same && a.role != totalRole && a.total == b.total {
-				r.fault(Fault{Column: a.title, Value: a.title, Fix: fmt.Sprintf("one column of %s: %q is another", a.role, b.title)})
+				r.fault(Fault{Line: r.heads[0].line, Column: a.title, Value: a.title, Fix: fmt.Sprintf("one column of %s: %q is another", a.role, b.title)})
 			}
 		}
 	}
@@ -238,11 +239,15 @@ func (r *sheetReader) us() bool {
 }
 
 // readBody turns the records below the heading to entries.
-func (r *sheetReader) readBody(head sheetRecord) {
+func (r *sheetReader) readBody() {
 	r.ignoredColumns()
 	for _, rec := range r.body {
+		repeats := func(head sheetRecord) bool { return slices.Equal(head.cells, rec.cells) }
 		switch {
-		case strings.Join(rec.cells, "\x00") == strings.Join(head.cells, "\x00"):
+		case slices.ContainsFunc(r.heads, repeats):
+		case !hasNumber(rec) && readHead([]sheetRecord{rec}).score >= headScore:
+			r.fault(Fault{Line: rec.line, Value: rec.cells[r.firstFilled(rec)], Fix: "one table a sheet: another begins here"})
+			return
 		case r.head.has(stemRole):
 			r.readWide(rec)
 		default:
@@ -265,7 +270,30 @@ func (r *sheetReader) ignoredColumns() {
 			continue
 		}
 		r.note(0, fmt.Sprintf("column %q not read", c.title))
+		r.checkLiving(c)
 	}
+	r.untitledColumns(titled, leftmost)
+}
+
+var (
+	statusColumn = regexp.MustCompile(`(?i)status|condition|zustand|live|dead|vigou?r`)
+	deadWord     = regexp.MustCompile(`(?i)^(d|dead|snag|standing dead|tot|dürr|dürrständer)$`)
+)
+
+// checkLiving faults lines that a column of the trees' state calls dead.
+func (r *sheetReader) checkLiving(c sheetColumn) {
+	if !statusColumn.MatchString(c.title) {
+		return
+	}
+	for _, rec := range r.body {
+		if cell := rec.cell(c.index); deadWord.MatchString(cell) {
+			r.fault(Fault{Line: rec.line, Column: c.title, Value: cell, Fix: "living trees alone: take this line out"})
+		}
+	}
+}
+
+// untitledColumns notes numbers left of the table, and faults those within and right of it.
+func (r *sheetReader) untitledColumns(titled map[int]bool, leftmost int) {
 	width := 0
 	for _, rec := range r.body {
 		width = max(width, len(rec.cells))

@@ -48,7 +48,7 @@ func decodeSheet(data []byte) (text string, encoding string) {
 		return utf16Text(data[2:], 1), "UTF-16"
 	}
 	if utf8.Valid(data) {
-		return string(data), ""
+		return composed.Replace(string(data)), ""
 	}
 	letters := []rune(windows)
 	var b strings.Builder
@@ -61,6 +61,9 @@ func decodeSheet(data []byte) (text string, encoding string) {
 	}
 	return b.String(), "Windows-1252"
 }
+
+// composed puts letters and the dots over them together.
+var composed = strings.NewReplacer("a\u0308", "ä", "o\u0308", "ö", "u\u0308", "ü", "A\u0308", "Ä", "O\u0308", "Ö", "U\u0308", "Ü")
 
 // utf16Text reads UTF-16 with the low byte of each pair at the given place.
 func utf16Text(data []byte, low int) string {
@@ -134,7 +137,7 @@ func firstLine(text string) string {
 // missing tells whether a cell says that nothing was measured.
 func missing(cell string) bool {
 	switch strings.ToLower(cell) {
-	case "", "-", "--", "–", "—", ".", "na", "n/a", "#n/a", "nan", "k.a.":
+	case "", "-", "--", "–", "—", "−", ".", "na", "n/a", "#n/a", "nan", "k.a.":
 		return true
 	}
 	return false

@@ -26,9 +26,14 @@ func (r *sheetReader) stemUnits(units map[sheetRole]sheetUnit) {
 		if c.role == stemRole && c.unit.measure != densities && c.unit.measure != basals {
 			c.unit = unit
 		}
-		if c.role == totalRole && c.unit.measure == noMeasure {
-			c.unit = unit
+	}
+	for i := range r.head.columns {
+		if c := &r.head.columns[i]; c.role == totalRole && c.unit.measure == noMeasure {
+			c.unit = r.firstOf(stemRole).unit
 		}
+	}
+	if r.head.has(stemRole) && (r.head.has(heightRole) || r.head.has(crownBaseRole)) {
+		r.note(0, "heights of a line read as those of all its species")
 	}
 }
 
