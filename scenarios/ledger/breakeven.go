@@ -3,6 +3,7 @@ package ledger
 import (
 	"math"
 
+	"shadeledger/canopy"
 	"shadeledger/leaf"
 	"shadeledger/scenarios/light"
 )
@@ -161,7 +162,7 @@ func (r *Prepared) rough(w *scratch, set leaf.Set, k float64) float64 {
 	n := len(r.crown.depth)
 	mid := n / 2
 	c := newCurve(set)
-	var node [muNodes]float64
+	var node [canopy.IncidenceNodes]float64
 	sum := 0.0
 	for x := range w.bins.list {
 		q := &w.bins.list[x]

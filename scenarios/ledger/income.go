@@ -3,6 +3,7 @@ package ledger
 import (
 	"math"
 
+	"shadeledger/canopy"
 	"shadeledger/leaf"
 	"shadeledger/scenarios/light"
 )
@@ -35,18 +36,15 @@ func (c *curve) gross(I, ag float64) float64 {
 
 // uniformMu is a rule for the mean over mu uniform on 0..1: Gauss-Legendre of five nodes in sqrt(mu), dense where
 // leaves saturate.
-var uniformMu = func() (rule struct{ node, weight [muNodes]float64 }) {
-	x := [muNodes]float64{-0.906179845938664, -0.5384693101056831, 0, 0.5384693101056831, 0.906179845938664}
-	w := [muNodes]float64{0.23692688505618908, 0.47862867049936647, 0.5688888888888889, 0.47862867049936647, 0.23692688505618908}
-	for i := range x {
-		t := (1 + x[i]) / 2
-		rule.node[i], rule.weight[i] = t*t, w[i]*t
-	}
-	return rule
-}()
+var uniformMu = func() (rule struct {
+	node, weight [canopy.IncidenceNodes]float64
+}) { x := [canopy.IncidenceNodes]float64{-0.906179845938664, -0.5384693101056831, 0, 0.5384693101056831, 0.906179845938664}; w := [canopy.IncidenceNodes]float64{0.23692688505618908, 0.47862867049936647, 0.5688888888888889, 0.47862867049936647, 0.23692688505618908}; for i := range x {
+	t := (1 + x[i]) / 2
+	rule.node[i], rule.weight[i] = t*t, w[i]*t
+}; return rule }()
 
 // rule gives the nodes (as PPFD from the beam) and weights of the incidence mean of a step.
-func (r *Prepared) rule(s *step, node *[muNodes]float64) *[muNodes]float64 {
+func (r *Prepared) rule(s *step, node *[canopy.IncidenceNodes]float64) *[canopy.IncidenceNodes]float64 {
 	if r.angle == nil {
 		for i, v := range uniformMu.node {
 			node[i] = s.normal * v
@@ -54,10 +52,10 @@ func (r *Prepared) rule(s *step, node *[muNodes]float64) *[muNodes]float64 {
 		return &uniformMu.weight
 	}
 	scale := s.normal * s.mu
-	for i, v := range r.angle.node[s.rule] {
+	for i, v := range r.angle.Node[s.rule] {
 		node[i] = scale * v
 	}
-	return &r.angle.weight[s.rule]
+	return &r.angle.Weight[s.rule]
 }
 
 // scratch is one worker's working space for one plant.
@@ -92,7 +90,7 @@ type moment struct {
 
 // rate is the crown's mean gross income in one step.
 func (r *Prepared) rate(s *step, m *moment, c *curve) (out rates) {
-	var node [muNodes]float64
+	var node [canopy.IncidenceNodes]float64
 	ag := c.ag * s.factor
 	if m.beam <= 0 || s.normal <= 0 {
 		for j, wj := range r.crown.weight {

@@ -21,7 +21,7 @@ type Prepared struct {
 	steps []step
 	sun   []float64 // by step and depth: exp(-G_s l / cos theta_sun)
 	open  []float64 // by sky pattern and depth: I_d of the free sky for unit D_above
-	angle *incidence
+	angle *canopy.Incidence
 	// leaf respiration of a unit of Rd and of leaf area, g C m-2 per (umol m-2 s-1), by day
 	leafDay, leafNight []float64
 	// sums over the mean year
@@ -52,7 +52,7 @@ func Prepare(p *Plant, above *light.Above) *Prepared {
 		r.made = madeSet(p)
 	}
 	if p.Chi != 1 {
-		r.angle = newIncidence(p.Chi)
+		r.angle = canopy.NewIncidence(p.Chi)
 	}
 	days := len(s.Days)
 	r.leafDay, r.leafNight = make([]float64, days), make([]float64, days)
@@ -156,7 +156,7 @@ func (r *Prepared) lit() {
 			sinβ, cosβ := math.Sincos(β)
 			T := s.Temperature[s.Lit.Step[i]]
 			r.steps = append(r.steps, step{
-				lit: int32(i), day: int32(d), rule: int32(elevationIndex(β)),
+				lit: int32(i), day: int32(d), rule: int32(canopy.IncidenceRule(β)),
 				normal: s.Lit.Beam[i] / sinβ, mu: canopy.LeafProjection(p.Chi, sinβ, cosβ),
 				factor: p.Temperature.AgFactor(T),
 				weight: s.Seconds * share * gramsPerMol * 1e-6,

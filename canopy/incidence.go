@@ -1,4 +1,4 @@
-package ledger
+package canopy
 
 import (
 	"math"
@@ -7,30 +7,32 @@ import (
 	"gonum.org/v1/gonum/mat"
 )
 
-// incidence holds, for a leaf angle distribution, rules for the mean over mu, the cosine of incidence of the
+// Incidence holds, for a leaf angle distribution, rules for the mean over mu, the cosine of incidence of the
 // beam on a leaf, for every elevation of the sun: mu = |cos theta cos a + sin theta sin a cos psi|, psi
 // uniform, leaf inclination a from g(a) ~ chi^3 sin a / (cos^2 a + chi^2 sin^2 a)^2 (Campbell 1990, Agric. For.
 // Meteorol. 49:173-176). Each is the Gauss rule of the distribution itself, by the discretised Stieltjes
 // procedure (Gautschi 2004, Orthogonal Polynomials, sec. 2.2), scaled so that the mean of mu is G exactly.
-type incidence struct {
-	node, weight [elevations][muNodes]float64 // nodes relative to their mean
+type Incidence struct {
+	Node, Weight [elevations][IncidenceNodes]float64 // nodes relative to their mean
 }
 
+// IncidenceNodes is how many incidences a rule has.
+const IncidenceNodes = 5
+
 const (
-	muNodes    = 5
 	elevations = 46 // every 2 degrees
 	angleNodes = 32 // of leaf inclination
 	turnNodes  = 48 // of leaf azimuth, half a turn
 )
 
-// elevationIndex is the rule nearest to a sun elevation, rad.
-func elevationIndex(β float64) int {
+// IncidenceRule is the index of the rule nearest to a sun elevation, rad.
+func IncidenceRule(β float64) int {
 	return max(0, min(elevations-1, int(math.Round(β/(math.Pi/2)*(elevations-1)))))
 }
 
-// newIncidence works out the rules for chi.
-func newIncidence(chi float64) *incidence {
-	var in incidence
+// NewIncidence works out the rules for chi.
+func NewIncidence(chi float64) *Incidence {
+	var in Incidence
 	a, wa := make([]float64, angleNodes), make([]float64, angleNodes)
 	quad.Legendre{}.FixedLocations(a, wa, 0, math.Pi/2)
 	for j := range a {
@@ -54,13 +56,13 @@ func newIncidence(chi float64) *incidence {
 				w = append(w, wa[j])
 			}
 		}
-		in.node[e], in.weight[e] = gaussRule(mu, w)
+		in.Node[e], in.Weight[e] = gaussRule(mu, w)
 		mean := 0.0
-		for i := range muNodes {
-			mean += in.weight[e][i] * in.node[e][i]
+		for i := range IncidenceNodes {
+			mean += in.Weight[e][i] * in.Node[e][i]
 		}
-		for i := range muNodes {
-			in.node[e][i] /= mean
+		for i := range IncidenceNodes {
+			in.Node[e][i] /= mean
 		}
 	}
 	return &in
@@ -68,18 +70,18 @@ func newIncidence(chi float64) *incidence {
 
 // gaussRule is the Gauss rule of a discrete measure, its weights summing to 1: recurrence coefficients by Stieltjes,
 // nodes and weights from the Jacobi matrix (Golub & Welsch 1969).
-func gaussRule(x, w []float64) (node, weight [muNodes]float64) {
+func gaussRule(x, w []float64) (node, weight [IncidenceNodes]float64) {
 	n := len(x)
 	prev, cur := make([]float64, n), make([]float64, n)
 	for i := range cur {
 		cur[i] = 1
 	}
-	J := mat.NewSymDense(muNodes, nil)
+	J := mat.NewSymDense(IncidenceNodes, nil)
 	norm, before := 0.0, 0.0
 	for _, v := range w {
 		norm += v
 	}
-	for k := range muNodes {
+	for k := range IncidenceNodes {
 		xpp := 0.0
 		for i := range x {
 			xpp += w[i] * x[i] * cur[i] * cur[i]
@@ -97,13 +99,13 @@ func gaussRule(x, w []float64) (node, weight [muNodes]float64) {
 			next += w[i] * p * p
 		}
 		before, norm = norm, next
-		if k+1 < muNodes {
+		if k+1 < IncidenceNodes {
 			J.SetSym(k, k+1, math.Sqrt(next/before))
 		}
 	}
 	var eig mat.EigenSym
 	if !eig.Factorize(J, true) {
-		panic("ledger: eigenvalues of a symmetric matrix did not converge")
+		panic("canopy: eigenvalues of a symmetric matrix did not converge")
 	}
 	var V mat.Dense
 	eig.VectorsTo(&V)
