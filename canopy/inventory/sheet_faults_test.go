@@ -52,7 +52,8 @@ var faulty = []struct {
 	{"two tables", "species,dbh [in],trees/ac\nred oak,10,20\nspecies,height [ft],trees/ac\nred oak,60,20\n", []string{"3||one table a sheet"}},
 	{"no diameters", "species,girth [cm],trees/ha\nBuche,110,200\n", []string{"1||a column of diameters"}},
 	{"no trees", "species,dbh [cm]\nBuche,10\n", []string{"1||how many trees"}},
-	{"twice the same", "species,dbh [cm],trees/ha,stems/ha\nBuche,10,20,20\n", []string{"1|stems/ha|one column of per_area"}},
+	{"twice the same", "species,dbh [cm],trees/ha,stems/ha\nBuche,10,20,20\nBuche,12,20,22\n", []string{"3|stems/ha|the same number"}},
+	{"two columns of a species", "dbh [cm],QURU [N/ha],833 [N/ha]\n10,20,20\n", []string{"1|833 [N/ha]|one column of Quercus rubra"}},
 	{"only zeros", "species,dbh [cm],trees/ha\nBuche,10,0\n", []string{"0||at least one line"}},
 }
 

@@ -2,6 +2,7 @@ package inventory
 
 import (
 	"fmt"
+	"math"
 	"regexp"
 	"strings"
 
@@ -13,7 +14,7 @@ type sheetColumn struct {
 	heading
 	index   int
 	title   string          // as the sheet writes it
-	lowest  string          // the part of the title nearest to the numbers
+	parts   []string        // of the title, from above
 	species *traits.Species // of stemRole
 }
 
@@ -73,7 +74,8 @@ func readHead(block []sheetRecord) sheetHead {
 		if len(parts) == 0 {
 			continue
 		}
-		c := sheetColumn{heading: joined(parts), index: i, title: strings.Join(parts, " "), lowest: parts[len(parts)-1]}
+		c := sheetColumn{index: i, parts: parts}
+		c.heading, c.title = joined(parts)
 		classes = classes || c.role == dbhRole
 		h.columns = append(h.columns, c)
 	}
@@ -99,11 +101,12 @@ func (h *sheetHead) wide(classes bool) {
 	}
 	for i := range h.columns {
 		c := &h.columns[i]
-		if grouped := c.lowest != c.title; c.role != unknownRole && !grouped {
+		if c.role != unknownRole && len(c.parts) == 1 {
 			continue
 		}
-		if s, _ := nameSpecies(parseHeading(c.lowest).bare); s != nil {
-			c.role, c.species = stemRole, s
+		lowest := c.parts[len(c.parts)-1]
+		if s, _ := nameSpecies(parseHeading(lowest).bare); s != nil {
+			c.role, c.species, c.title = stemRole, s, lowest
 		}
 	}
 }
@@ -136,13 +139,21 @@ func partsOf(block []sheetRecord, column int) []string {
 	return parts
 }
 
-// joined understands the parts together, else the lowest part that can be understood alone.
-func joined(parts []string) heading {
-	h := parseHeading(strings.Join(parts, " "))
+// joined understands the parts together, else the lowest part that can be understood alone, and says which that was.
+func joined(parts []string) (h heading, title string) {
+	title = strings.Join(parts, " ")
+	h = parseHeading(title)
 	for k := len(parts) - 1; k >= 0 && h.role == unknownRole && len(parts) > 1; k-- {
-		h = parseHeading(parts[k])
+		if alone := parseHeading(parts[k]); alone.role != unknownRole {
+			h, title = alone, parts[k]
+		}
 	}
-	return h
+	for k := 0; k < len(parts) && h.needs(); k++ {
+		if u, ok := unitOf(strings.Trim(parts[k], "[]() ")); ok && u.measure == h.role.measure() {
+			h.unit = u
+		}
+	}
+	return h, title
 }
 
 var phrasePattern = regexp.MustCompile(`\s*(?:[,;.:/]\s|[,;]|\band\b|\bund\b|\s-\s|\s–\s)\s*`)
@@ -156,12 +167,8 @@ func stated(records []sheetRecord) map[sheetRole]sheetUnit {
 		}
 		for _, c := range r.cells {
 			for _, phrase := range phrasePattern.Split(c, -1) {
-				phrase, _, _ = strings.Cut(phrase, " by ")
-				h := parseHeading(phrase)
-				if h.role == unknownRole || h.unit.measure != h.role.measure() {
-					continue
-				}
-				if _, said := units[h.role]; !said {
+				h := parsePhrase(phrase)
+				if _, said := units[h.role]; !said && h.role != unknownRole {
 					units[h.role] = h.unit
 				}
 			}
@@ -170,20 +177,51 @@ func stated(records []sheetRecord) map[sheetRole]sheetUnit {
 	return units
 }
 
+// parsePhrase reads role and unit from the end of a phrase: "stand table with dbh in inches". The role is unknown where
+// either is missing.
+func parsePhrase(phrase string) heading {
+	phrase, _, _ = strings.Cut(phrase, " by ")
+	fields := strings.Fields(strings.Trim(phrase, "()[] "))
+	for i := range fields {
+		rest := strings.Join(fields[i:], " ")
+		for _, text := range []string{rest, strings.Trim(rest, "()[]"), rest + ")"} {
+			if h := parseHeading(text); h.role != unknownRole && !h.needs() && (i == 0 || h.role.measure() != noMeasure) {
+				return h
+			}
+		}
+	}
+	return heading{}
+}
+
 var basalPattern = regexp.MustCompile(`(?i)(?:basal area|grundfläche|\bba\b)[^0-9]{0,15}([0-9][0-9.,]*)\s*((?:m2|m²|ft2|ft²|sq\.? ?ft\.?)\s*(?:/|per|je)\s*(?:ha|ac|acre|hectare|hektar)\b)`)
+
+// basalLine reads a line such as "basal area [m2/ha]; 32": NaN where it is none.
+func (r *sheetReader) basalLine(rec sheetRecord) float64 {
+	first := r.firstFilled(rec)
+	if h := parseHeading(rec.cells[first]); h.role == basalAreaRole && !h.needs() && rec.filled() == 2 {
+		for _, cell := range rec.cells[first+1:] {
+			if v, err := r.mark.cellNumber(cell); err == nil && v.unit == "" && v.value > 0 {
+				return v.value * h.unit.factor
+			}
+		}
+	}
+	return math.NaN()
+}
 
 // statedBasal is the basal area of the stand in m2/ha that the lines about the table give.
 func (r *sheetReader) statedBasal(records []sheetRecord) {
 	for _, rec := range records {
-		g := basalPattern.FindStringSubmatch(strings.Join(rec.cells, " "))
-		if g == nil {
-			continue
+		x := r.basalLine(rec)
+		if g := basalPattern.FindStringSubmatch(strings.Join(rec.cells, " ")); g != nil && math.IsNaN(x) {
+			u, known := unitOf(g[2])
+			n, err := r.mark.number(strings.TrimRight(g[1], ".,"))
+			if known && err == nil {
+				x = n * u.factor
+			}
 		}
-		u, known := unitOf(g[2])
-		x, err := r.mark.number(strings.TrimRight(g[1], ".,"))
-		if known && err == nil && x > 0 {
+		if x > 0 {
 			t := emptyEntry(rec.line)
-			t.total, t.basal = wholeTotal, x*u.factor
+			t.total, t.basal = wholeTotal, x
 			r.totals = append(r.totals, t)
 			r.note(rec.line, fmt.Sprintf("basal area of the stand taken from the line %q", strings.Join(rec.cells, " ")))
 		}

@@ -20,9 +20,19 @@ func agree(a, b float64) bool {
 	return math.Abs(a-b) <= agreement*math.Max(math.Abs(a), math.Abs(b))
 }
 
+// lastDigit is what the last digit of a number stands for: 0.1 in 12.5, where its mark can be nothing but decimal.
+func lastDigit(cell string) float64 {
+	numeral := leadPattern.FindString(cell)
+	if mark := decisive(numeral); mark != 0 {
+		return math.Pow(10, -float64(len(numeral)-1-strings.LastIndexByte(numeral, mark)))
+	}
+	return 1
+}
+
 // value reads the columns of a role on one line: NaN where none is filled. Two columns that do not agree are a fault.
 func (r *sheetReader) value(rec sheetRecord, role sheetRole) float64 {
 	found, at := math.NaN(), sheetColumn{}
+	rounding := func(c sheetColumn) float64 { return 0.501 * c.factor() * lastDigit(rec.cell(c.index)) }
 	for _, c := range r.head.columns {
 		if c.role != role {
 			continue
@@ -32,7 +42,7 @@ func (r *sheetReader) value(rec sheetRecord, role sheetRole) float64 {
 		case math.IsNaN(x):
 		case math.IsNaN(found):
 			found, at = x, c
-		case !agree(found, x):
+		case !agree(found, x) && math.Abs(found-x) > rounding(at)+rounding(c):
 			r.fault(Fault{Line: rec.line, Column: c.title, Value: rec.cell(c.index),
 				Fix: fmt.Sprintf("the same number as %s in column %q, within 2 %%: these differ by %.0f %%",
 					rec.cell(at.index), at.title, 100*math.Abs(x-found)/math.Max(x, found))})
@@ -121,21 +131,12 @@ func (r *sheetReader) plotOf(rec sheetRecord) string {
 	return plot
 }
 
-// kindOf looks for the name of a total on a line. Only species, diameters and cells without a heading may say more than
-// that word.
+// kindOf looks for the name of a total on a line.
 func (r *sheetReader) kindOf(rec sheetRecord) (totalKind, string) {
-	roles := map[int]sheetRole{}
-	for _, c := range r.head.columns {
-		roles[c.index] = c.role
-		if c.role == unknownRole {
-			roles[c.index] = totalRole
-		}
-	}
 	kind, rest := noTotal, ""
 	for i, c := range rec.cells {
 		k, left := totalLabel(c)
-		free := roles[i] == unknownRole || roles[i] == speciesRole || roles[i] == dbhRole
-		if k == noTotal || !free && (k == subTotal || len(c) <= 2 && k == meanLine) {
+		if k == noTotal || !r.mayTotal(i, c, k) {
 			continue
 		}
 		if kind == noTotal || left != "" {
@@ -143,6 +144,21 @@ func (r *sheetReader) kindOf(rec sheetRecord) (totalKind, string) {
 		}
 	}
 	return kind, rest
+}
+
+// mayTotal tells whether a cell may name a total: remarks may not, and only species, diameters and cells without a
+// heading may say more than that word. A plot may be named SE.
+func (r *sheetReader) mayTotal(index int, cell string, kind totalKind) bool {
+	for _, c := range r.head.columns {
+		switch {
+		case c.index != index || c.role == speciesRole || c.role == dbhRole:
+		case c.role == unknownRole && sideColumn.MatchString(c.title):
+			return false
+		case kind == subTotal || kind == meanLine && len(cell) <= 2:
+			return false
+		}
+	}
+	return true
 }
 
 // readLong reads a line of one class.

@@ -51,6 +51,33 @@ func (m *decimalMark) learn(cell string) {
 	}
 }
 
+// learnColumn takes what a column of trees shows: a mark before three digits is that of thousands where the other
+// numbers of the column are whole and of three digits or more.
+func (m *decimalMark) learnColumn(cells []string) (mark byte) {
+	whole := false
+	for _, c := range cells {
+		switch last := strings.LastIndexAny(c, ".,"); {
+		case !numeralPattern.MatchString(c) || decisive(c) != 0:
+			return 0
+		case last >= 0 && mark != 0 && mark != c[last]:
+			return 0
+		case last >= 0:
+			mark = c[last]
+		default:
+			whole = whole || len(c) >= 3
+		}
+	}
+	switch {
+	case !whole:
+		return 0
+	case mark == '.':
+		m.comma = true
+	case mark == ',':
+		m.point = true
+	}
+	return mark
+}
+
 // numeralsOf are the one or two numerals a cell begins with.
 func numeralsOf(cell string) []string {
 	if g := rangePattern.FindStringSubmatch(cell); g != nil {

@@ -114,6 +114,20 @@ func (r *sheetReader) learnMarks() {
 	if r.mark.comma && !r.mark.point {
 		r.note(0, "commas read as decimal marks")
 	}
+	for _, c := range r.head.columns {
+		if r.mark.comma || r.mark.point || c.role != perAreaRole && c.role != countRole && c.role != stemRole {
+			continue
+		}
+		var cells []string
+		for _, rec := range r.body {
+			if cell := rec.cell(c.index); !missing(cell) {
+				cells = append(cells, cell)
+			}
+		}
+		if mark := r.mark.learnColumn(cells); mark != 0 {
+			r.note(0, fmt.Sprintf("%q read as the mark of thousands: the other numbers of column %q are whole", mark, c.title))
+		}
+	}
 }
 
 // numeric tells whether the cells of a role are numbers.
@@ -127,7 +141,7 @@ func (r sheetRole) numeric() bool {
 
 // findUnits looks for units that the headings do not give in the lines above and below the table, then in the cells.
 func (r *sheetReader) findUnits(records []sheetRecord) {
-	units := stated(append(append([]sheetRecord(nil), records[:r.head.first]...), r.body...))
+	units := stated(append(append([]sheetRecord(nil), records[:r.head.first+r.head.rows-1]...), r.body...))
 	for i := range r.head.columns {
 		c := &r.head.columns[i]
 		if !c.needs() {
@@ -211,13 +225,12 @@ func (r *sheetReader) checkHead() {
 	r.broken = len(r.faults) > before
 }
 
-// checkPairs faults two columns that say the same in the same unit.
+// checkPairs faults two columns of one species.
 func (r *sheetReader) checkPairs() {
 	for i, a := range r.head.columns {
 		for _, b := range r.head.columns[:i] {
-			same := a.role == b.role && a.role.numeric() && a.unit.factor == b.unit.factor && a.species == b.species
-			if same && a.role != totalRole && a.total == b.total {
-				r.fault(Fault{Line: r.heads[0].line, Column: a.title, Value: a.title, Fix: fmt.Sprintf("one column of %s: %q is another", a.role, b.title)})
+			if a.role == stemRole && b.role == stemRole && a.species == b.species {
+				r.fault(Fault{Line: r.heads[0].line, Column: a.title, Value: a.title, Fix: fmt.Sprintf("one column of %s: %q is another", a.species.Botanical, b.title)})
 			}
 		}
 	}
@@ -248,6 +261,8 @@ func (r *sheetReader) readBody() {
 		case !hasNumber(rec) && readHead([]sheetRecord{rec}).score >= headScore:
 			r.fault(Fault{Line: rec.line, Value: rec.cells[r.firstFilled(rec)], Fix: "one table a sheet: another begins here"})
 			return
+		case r.basalLine(rec) > 0:
+			r.statedBasal([]sheetRecord{rec})
 		case r.head.has(stemRole):
 			r.readWide(rec)
 		default:

@@ -47,6 +47,18 @@ var readable = []struct {
 		"3|Quercus rubra|25.4|49.42|2.504", "5|Acer rubrum|30.48|12.36|0.902"}},
 	{"a heading again, a remark, averages", "species,dbh [in],trees/ac\nred oak,10,20\nMean,10,20\nspecies,dbh [in],trees/ac\nred maple,10,20\nby the east crew\n", bareOptions, []string{
 		"2|Quercus rubra|25.4|49.42|2.504", "5|Acer rubrum|25.4|49.42|2.504"}},
+	{"units in a row above", ",inches,trees per acre\nspecies,dbh,trees\nred oak,10,20\n", bareOptions, []string{"3|Quercus rubra|25.4|49.42|2.504"}},
+	{"units in a sentence", "Stand table with dbh in inches and trees per acre\nspecies,dbh,trees\nred oak,10,20\n", bareOptions, []string{"3|Quercus rubra|25.4|49.42|2.504"}},
+	{"units in brackets above", "Stand 12 (dbh in cm; N per ha)\nspecies,dbh,N\nBuche,20,100\n", bareOptions, []string{"3|Fagus sylvatica|20|100|3.142"}},
+	{"German headings", "Ø (cm);Baumart;Stammzahl/ha;Ho\u0308he in m\n20;La\u0308rche;100;18,5\n", bareOptions, []string{"2|Larix decidua|20|100|3.142"}},
+	{"names turned and shortened", "species,dbh [cm],N/ha\n\"Oak, northern red\",20,100\nQ. alba,20,100\nPIST-white pine,20,100\nQuercus rubra L.,20,100\n", bareOptions, []string{
+		"2|Quercus rubra|20|100|3.142", "3|Quercus alba|20|100|3.142", "4|Pinus strobus|20|100|3.142", "5|Quercus rubra|20|100|3.142"}},
+	{"thousands by the other numbers", "Art;BHD [cm];N/ha\nBuche;6;1.250\nBuche;10;640\n", bareOptions, []string{"2|Fagus sylvatica|6|1250|3.534", "3|Fagus sylvatica|10|640|5.027"}},
+	{"three decimals", "species,dbh [in],TPA\nred oak,10,6.018\n", bareOptions, []string{"2|Quercus rubra|25.4|14.87|0.7535"}},
+	{"acre and hectare rounded", "species,dbh [in],trees/ac,stems/ha\nred oak,10,3,7\n", bareOptions, []string{"2|Quercus rubra|25.4|7.413|0.3756"}},
+	{"class beside its middle", "Species,DBH,,Trees\n,class (in),mid (in),per acre\nred oak,9-11,10,20\n", bareOptions, []string{"3|Quercus rubra|25.4|49.42|2.504"}},
+	{"shares of one", "Basal area (m2/ha),30\nspecies,proportion\nBuche,0.6\nFichte,0.4\n", bareOptions, []string{"3|Fagus sylvatica|||18", "4|Picea abies|||12"}},
+	{"remarks with the word of a total", "species,dbh [in],trees/ac,notes\nred oak,10,20,all\n", bareOptions, []string{"2|Quercus rubra|25.4|49.42|2.504"}},
 	{"UTF-16", "\xff\xfes\x00p\x00e\x00c\x00i\x00e\x00s\x00;\x00B\x00A\x00 \x00m\x002\x00/\x00h\x00a\x00\n\x00B\x00u\x00;\x009\x00\n\x00", bareOptions, []string{"2|Fagus sylvatica|||9"}},
 }
 

@@ -53,7 +53,7 @@ var rolePhrases = phraseTable(map[sheetRole]string{
 		"class from|diameter from|diameter class from|from|bhd von|von|dbh lower|dbh min|lower|stärkeklasse|d1 3|d 1 3|d13|d|dg|qmd|quadratic diameter",
 	dbhToRole: "dbh to|class to|diameter to|diameter class to|dbh class to|to|bhd bis|bis|dbh upper|dbh max|upper",
 	perAreaRole: "per area|trees|stems|n|stem number|stammzahl|baumzahl|density|tree density|stem density|stand density|" +
-		"live trees|live stems|stocking|trees per area|stems per area",
+		"live trees|live stems|stocking|densities|trees per area|stems per area",
 	countRole: "tree count|count|tally|number trees|no trees|number stems|anzahl|stückzahl|trees counted|stems counted|tree tally",
 	heightRole: "height|heights|ht|tree height|total height|heights total|height total|höhe|hoehe|baumhöhe|mittelhöhe|" +
 		"tree heights|total ht|h|hg|hm",
@@ -63,7 +63,7 @@ var rolePhrases = phraseTable(map[sheetRole]string{
 	basalAreaRole: "basal area|basal areas|ba|grundfläche|grundflaeche|kreisfläche|g|basal area per area|stand basal area",
 	percentRole: "percent|%|share|shares|pct|proportion|anteil|prozent|percent basal area|% basal area|basal area %|ba %|" +
 		"% ba|percent ba|basal area share|share basal area|ba share|basal area percent|grundflächenanteil|anteil grundfläche|" +
-		"percentage|pct ba|ba pct",
+		"percentage|pct ba|ba pct|g%|g %|ba%|composition|species composition|mix|mixture|mischung|flächenanteil",
 	plotRole: "plot|point|plot no|plot number|plot id|plot name|sample plot|sample point|probefläche|probekreis|plots",
 	plotAreaRole: "plot area|plot size|area plot|probeflächengröße|probeflächengrösse|probeflächengroesse|" +
 		"probekreisfläche|plot area each",
@@ -92,7 +92,7 @@ type heading struct {
 var (
 	bracketPattern = regexp.MustCompile(`[\[(]([^\])]*)[\])]`)
 	perMinusOne    = strings.NewReplacer("ac-1", "/ac", "ha-1", "/ha", "ac⁻¹", "/ac", "ha⁻¹", "/ha")
-	headingMarks   = strings.NewReplacer("_", " ", ".", "", ",", " ", ":", " ", ";", " ", "-", " ", "#", "no ", "=", " ", "\u00d8", " ")
+	headingMarks   = strings.NewReplacer("_", " ", ".", "", ",", " ", ":", " ", ";", " ", "-", " ", "#", "no ", "=", " ", "ø", " d ")
 )
 
 var fillerWords = map[string]bool{"of": true, "the": true, "mean": true, "average": true, "avg": true, "mittlere": true,

@@ -161,9 +161,13 @@ func (r *sheetReader) settlePercent(g plotGround) {
 	if !wanted {
 		return
 	}
-	title := r.titleOf(percentRole)
-	if !agree(sum, 100) && len(r.faults) == 0 {
-		r.fault(Fault{Column: title, Value: fmt.Sprintf("%.4g %%", sum), Fix: "shares that add to 100 %"})
+	title, whole := r.titleOf(percentRole), 100.0
+	if agree(sum, 1) {
+		whole = 1
+		r.note(0, fmt.Sprintf("column %q read as shares of one, which they add to", title))
+	}
+	if !agree(sum, whole) && len(r.faults) == 0 {
+		r.fault(Fault{Column: title, Value: fmt.Sprintf("%.4g", sum), Fix: "shares that add to 100 %"})
 	}
 	if g.plots > 1 {
 		r.fault(Fault{Column: title, Fix: "shares of the whole stand, not of plots"})
@@ -173,10 +177,10 @@ func (r *sheetReader) settlePercent(g plotGround) {
 		r.fault(Fault{Column: title, Fix: "the basal area of the stand beside the shares: a totals row with basal_area [m2/ha] or [ft2/ac], or the stand's own"})
 		return
 	}
-	r.note(0, fmt.Sprintf("column %q read as percent of a basal area of %.4g m2/ha", title, total))
+	r.note(0, fmt.Sprintf("column %q read as shares of a basal area of %.4g m2/ha", title, total))
 	for i := range r.entries {
 		if e := &r.entries[i]; e.shared() {
-			e.basal = e.percent / 100 * total
+			e.basal = e.percent / whole * total
 		}
 	}
 }

@@ -10,6 +10,7 @@ import (
 var (
 	nameParts    = regexp.MustCompile(`\s*[()/=|]\s*|\s+[-–—]\s+|\s*[,;:]\s+`)
 	codeBefore   = regexp.MustCompile(`^([0-9]{2,3})\s+(\D.*)$`)
+	codeName     = regexp.MustCompile(`^([A-Z]{4}[0-9]{0,2})-(.+)$`)
 	codeBehind   = regexp.MustCompile(`^(\D.*)\s+([0-9]{2,3})$`)
 	authorBehind = regexp.MustCompile(`^([A-Z][a-z]+ [a-z]+)\s+(?:\(?[A-Z][a-z.]*\)?\.?\s*)+$`)
 )
@@ -17,7 +18,7 @@ var (
 // nameSpecies finds a species by one name, or by several that all say the same: "833 - Northern red oak".
 func nameSpecies(text string) (*traits.Species, error) {
 	t := strings.TrimSpace(strings.TrimRight(text, " *†‡"))
-	for _, p := range []*regexp.Regexp{codeBefore, codeBehind} {
+	for _, p := range []*regexp.Regexp{codeBefore, codeBehind, codeName} {
 		if g := p.FindStringSubmatch(t); g != nil {
 			return sameSpecies(t, g[1:])
 		}
@@ -29,12 +30,43 @@ func nameSpecies(text string) (*traits.Species, error) {
 	if g := authorBehind.FindStringSubmatch(t); g != nil {
 		return traits.Find(g[1])
 	}
+	if g := turnedName.FindStringSubmatch(t); g != nil {
+		if turned, wrong := traits.Find(g[2] + " " + g[1]); wrong == nil {
+			return turned, nil
+		}
+	}
+	if g := shortGenus.FindStringSubmatch(t); g != nil {
+		return ofGenus(g[1], g[2], err)
+	}
 	if parts := nameParts.Split(t, -1); len(parts) > 1 {
 		if s, all := sameSpecies(t, parts); all == nil {
 			return s, nil
 		}
 	}
 	return nil, err
+}
+
+var (
+	turnedName = regexp.MustCompile(`^([^,]+),\s*([^,]+)$`)
+	shortGenus = regexp.MustCompile(`^([A-Z])\. ?([a-z]+)$`)
+)
+
+// ofGenus is the one species of the library with that initial and epithet: "Q. alba". The error is kept where none is.
+func ofGenus(initial, epithet string, otherwise error) (*traits.Species, error) {
+	var found *traits.Species
+	for _, s := range traits.All() {
+		if !strings.HasPrefix(s.Botanical, initial) || !strings.HasSuffix(s.Botanical, " "+epithet) {
+			continue
+		}
+		if found != nil {
+			return nil, twoSpecies{initial + ". " + epithet, found, s}
+		}
+		found = s
+	}
+	if found == nil {
+		return nil, otherwise
+	}
+	return found, nil
 }
 
 // sameSpecies wants every part that is not empty to name one species.
@@ -82,9 +114,27 @@ const (
 var (
 	totalWord = regexp.MustCompile(`^(grand |stand )?(totals?|sums?|all|all species|all trees|all classes|summe|summen|gesamt|insgesamt|gesamtsumme|alle|σ|∑|\*\*+|stand total|whole stand)$`)
 	subWord   = regexp.MustCompile(`^(sub ?totals?|zwischensumme|teilsumme)\b`)
-	meanWord  = regexp.MustCompile(`^(mean|means|average|avg|median|mittel|mittelwert|durchschnitt|qmd|std dev|sd|se|standard error|cv)$`)
+	meanWord  = regexp.MustCompile(`^(weighted |stand |overall )?(mean|means|average|avg|median|mittel|mittelwert|durchschnitt)\b|^(qmd|std dev|sd|se|standard (error|deviation)|cv)$`)
 	totalPart = regexp.MustCompile(`(?i)^(?:total|sum|all|summe|gesamt|subtotal|sub-total|zwischensumme)\b[\s:,-]*|[\s:,-]*\b(?:totals?|sum|all|summe|gesamt|subtotal|sub-total)$|^\*+|\*\*+$`)
 )
+
+// wholeWords may stand beside the word of a total without making it one of a part.
+var wholeWords = map[string]bool{"all": true, "species": true, "stand": true, "trees": true, "stems": true, "live": true,
+	"living": true, "grand": true, "classes": true, "whole": true, "overall": true, "per": true, "acre": true, "ac": true,
+	"ha": true, "hectare": true, "alle": true, "arten": true, "baumarten": true, "bestand": true, "je": true, "mean": true, "average": true, "avg": true}
+
+// onlyTotal tells whether a label says total, and nothing beside it that the total would be of.
+func onlyTotal(label string) bool {
+	total := false
+	for _, w := range strings.FieldsFunc(label, func(r rune) bool { return strings.ContainsRune(" /()&+", r) }) {
+		isTotal := totalWord.MatchString(w)
+		if !isTotal && !wholeWords[w] {
+			return false
+		}
+		total = total || isTotal && w != "all" && w != "alle"
+	}
+	return total
+}
 
 // totalLabel tells whether a cell names a total, and what is left of it without that word.
 func totalLabel(cell string) (totalKind, string) {
@@ -93,7 +143,7 @@ func totalLabel(cell string) (totalKind, string) {
 	switch {
 	case t == "" || missing(cell) || numeric(bare) && bare != t && !strings.HasPrefix(t, "*"):
 		return noTotal, cell
-	case bare == "" || totalWord.MatchString(bare):
+	case bare == "" || totalWord.MatchString(bare) || onlyTotal(bare):
 		return wholeTotal, ""
 	case subWord.MatchString(bare) || strings.Contains(t, "**") || totalPart.MatchString(cell):
 		return subTotal, strings.TrimSpace(totalPart.ReplaceAllString(totalPart.ReplaceAllString(cell, ""), ""))

@@ -137,7 +137,7 @@ func firstLine(text string) string {
 // missing tells whether a cell says that nothing was measured.
 func missing(cell string) bool {
 	switch strings.ToLower(cell) {
-	case "", "-", "--", "–", "—", "−", ".", "na", "n/a", "#n/a", "nan", "k.a.":
+	case "", "-", "--", "–", "—", "−", ".", "na", "n/a", "#n/a", "n.a.", "nan", "null", "k.a.":
 		return true
 	}
 	return false

@@ -9,7 +9,7 @@ import (
 
 // TestTotalsAreNoClasses writes a totals row in many ways below two classes; none may become a class.
 func TestTotalsAreNoClasses(t *testing.T) {
-	for _, label := range []string{"Total", "TOTALS", "total:", "All", "All species", "Sum", "Summe", "gesamt", "Insgesamt", "**", "*** ", "Grand total", "Stand total", "Total**"} {
+	for _, label := range []string{"Total", "TOTALS", "total:", "All", "All species", "Sum", "Summe", "gesamt", "Insgesamt", "**", "*** ", "Grand total", "Stand total", "Total**", "Total / all species", "TOTAL (all)", "Total trees per ha"} {
 		for _, form := range []string{"%s,,70", "%s,8.9,70", ",%s,70"} {
 			text := "species,dbh [cm],trees/ha\nBuche,20,30\nFichte,10,40\n" + fmt.Sprintf(form, label) + "\n"
 			sheet, faults := ReadSheet([]byte(text), bareOptions)

@@ -65,7 +65,7 @@ var wholeDensities = map[string]sheetUnit{
 }
 
 // countedWords may stand before the slash of a density.
-const countedWords = " trees tree stems stem n no number stk stück stueck bäume baeume stämme staemme st 1 count live livetrees "
+const countedWords = " trees tree stems stem n no number stk stück stueck bäume baeume stämme staemme st 1 count anzahl stammzahl baumzahl ind individuals live livetrees livestems "
 
 // unitOf reads a unit as people write it: "ft² ac⁻¹", "sq. ft. per acre", "Stk/ha".
 func unitOf(text string) (sheetUnit, bool) {
