@@ -114,6 +114,11 @@ func (r *sheetReader) learnMarks() {
 	if r.mark.comma && !r.mark.point {
 		r.note(0, "commas read as decimal marks")
 	}
+	r.learnThousands()
+}
+
+// learnThousands looks at columns of trees where no number shows a decimal mark.
+func (r *sheetReader) learnThousands() {
 	for _, c := range r.head.columns {
 		if r.mark.comma || r.mark.point || c.role != perAreaRole && c.role != countRole && c.role != stemRole {
 			continue

@@ -17,7 +17,7 @@ func (r *sheetReader) settle() {
 	r.settlePercent(g)
 	derived := map[string]bool{}
 	for _, e := range r.entries {
-		if e.species == nil || e.zero() && e.dated() {
+		if e.species == nil || e.zero() && e.given() {
 			continue
 		}
 		perHa := r.perHa(e, g)
@@ -40,8 +40,8 @@ const (
 	dbhDerived   = "diameters taken as the quadratic mean from basal area and trees per area"
 )
 
-// dated tells whether any amount is given.
-func (e sheetEntry) dated() bool {
+// given tells whether any amount is given.
+func (e sheetEntry) given() bool {
 	return !math.IsNaN(e.perArea) || !math.IsNaN(e.count) || !math.IsNaN(e.basal) || !math.IsNaN(e.percent)
 }
 
