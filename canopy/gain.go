@@ -8,12 +8,24 @@ import (
 
 // Foliage is the leaves of one kind in a slab of an endless canopy at one instant.
 type Foliage struct {
-	LAI         float64 // present, m2 per m2 of level ground
-	Chi         float64
-	Clumping    float64 // Omega, at most 1 here: a share of leaves cannot be lit more than wholly
-	Absorptance float64 // 0..1, above 0
-	Incidence   *Incidence
-	Response    leaf.Response // at the slab's growth light and the air's temperature, per hemisurface area
+	LAI      float64       // present, m2 per m2 of level ground
+	Response leaf.Response // at the slab's growth light and the air's temperature, per hemisurface area
+
+	chi, clumping, absorptance float64
+	norm, sqrtA                float64
+	incidence                  *Incidence
+}
+
+// NewFoliage is a kind of leaves by angle parameter, clumping (over 1 it is taken as 1: leaves cannot be lit more than wholly) and
+// absorptance, without area and response yet.
+func NewFoliage(chi, clumping, absorptance float64) Foliage {
+	return Foliage{chi: chi, clumping: min(1, clumping), absorptance: absorptance, norm: projectionNorm(chi),
+		sqrtA: math.Sqrt(absorptance), incidence: NewIncidence(chi)}
+}
+
+// towards is Omega G LAI for a zenith angle.
+func (f *Foliage) towards(cosZ, sinZ float64) float64 {
+	return f.clumping * projection(f.chi, f.norm, cosZ, sinZ) * f.LAI
 }
 
 // Slab is a thin piece of an endless canopy between two heights.
@@ -64,8 +76,8 @@ func (s *Slab) Take(a *Arriving, g *Gain) {
 func (s *Slab) beam(a *Arriving, g *Gain) (scattered float64) {
 	cosZ, sinZ := math.Sincos(a.Elevation)
 	weight := WoodProjection * s.Wood
-	for _, f := range s.Leaves {
-		weight += f.Clumping * LeafProjection(f.Chi, cosZ, sinZ) * f.LAI
+	for i := range s.Leaves {
+		weight += s.Leaves[i].towards(cosZ, sinZ)
 	}
 	g.Leaves, g.Wood, g.Sunlit = 0, 0, 0
 	for i := range g.sunlitA {
@@ -78,11 +90,12 @@ func (s *Slab) beam(a *Arriving, g *Gain) (scattered float64) {
 	caught := flux * (a.Chance[0] - a.Chance[1])
 	scattered = flux * (a.Through[0] - a.Through[1])
 	lit := (a.Chance[0] - a.Chance[1]) / (a.Path * weight) // mean chance through the slab
-	for i, f := range s.Leaves {
-		direct := f.Absorptance * caught * f.Clumping * LeafProjection(f.Chi, cosZ, sinZ) * f.LAI / weight
+	for i := range s.Leaves {
+		f := &s.Leaves[i]
+		direct := f.absorptance * caught * f.towards(cosZ, sinZ) / weight
 		g.Leaves += direct
 		scattered -= direct
-		g.sunlitA[i] = f.LAI * min(1, f.Clumping*lit)
+		g.sunlitA[i] = f.LAI * min(1, f.clumping*lit)
 	}
 	g.Wood = caught * WoodProjection * s.Wood / weight
 	return scattered - g.Wood
@@ -91,8 +104,9 @@ func (s *Slab) beam(a *Arriving, g *Gain) (scattered float64) {
 // assimilate shares the pool of scattered light out and sums what leaves make of their light.
 func (s *Slab) assimilate(a *Arriving, g *Gain, pool float64) {
 	weight, area, lit := s.Wood, 0.0, 0.0
-	for _, f := range s.Leaves {
-		weight += math.Sqrt(f.Absorptance) * f.Clumping * f.LAI
+	for i := range s.Leaves {
+		f := &s.Leaves[i]
+		weight += f.sqrtA * f.clumping * f.LAI
 		area += f.LAI
 	}
 	g.Gross = 0
@@ -100,14 +114,15 @@ func (s *Slab) assimilate(a *Arriving, g *Gain, pool float64) {
 		return
 	}
 	g.Wood += pool * s.Wood / weight
-	for i, f := range s.Leaves {
+	for i := range s.Leaves {
+		f := &s.Leaves[i]
 		g.Of[i] = 0
 		if f.LAI <= 0 {
 			continue
 		}
-		absorbed := pool * math.Sqrt(f.Absorptance) * f.Clumping * f.LAI / weight
+		absorbed := pool * f.sqrtA * f.clumping * f.LAI / weight
 		g.Leaves += absorbed
-		diffuse := absorbed / (f.LAI * f.Absorptance)
+		diffuse := absorbed / (f.LAI * f.absorptance)
 		shade := f.Response.Gross(diffuse)
 		g.Of[i] = shade * f.LAI
 		if g.sunlitA[i] > 0 && a.Normal > 0 {
@@ -123,14 +138,14 @@ func (s *Slab) assimilate(a *Arriving, g *Gain, pool float64) {
 
 // sunlit is the mean gross rate of leaves that see the sun.
 func (f *Foliage) sunlit(a *Arriving, diffuse float64) (sum float64) {
-	if f.Chi == 1 {
+	if f.chi == 1 {
 		return f.Response.MeanGross(diffuse, a.Normal)
 	}
 	cosZ, sinZ := math.Sincos(a.Elevation)
 	k := IncidenceRule(a.Elevation)
-	scale := a.Normal * LeafProjection(f.Chi, cosZ, sinZ)
-	for j, node := range f.Incidence.Node[k] {
-		sum += f.Incidence.Weight[k][j] * f.Response.Gross(diffuse+scale*node)
+	scale := a.Normal * projection(f.chi, f.norm, cosZ, sinZ)
+	for j, node := range f.incidence.Node[k] {
+		sum += f.incidence.Weight[k][j] * f.Response.Gross(diffuse+scale*node)
 	}
 	return sum
 }

@@ -20,7 +20,9 @@ type endless struct {
 var testLeaf = leaf.Set{Ag: 9, Rd: 0.8, Phi: 0.05, Theta: 0.8, LMA: 60}
 
 func foliage(lai, chi, omega, alpha float64) Foliage {
-	return Foliage{LAI: lai, Chi: chi, Clumping: omega, Absorptance: alpha, Incidence: NewIncidence(chi), Response: testLeaf.Response()}
+	f := NewFoliage(chi, omega, alpha)
+	f.LAI, f.Response = lai, testLeaf.Response()
+	return f
 }
 
 // depth is tau of the whole towards a zenith angle, leaves weighted by a power of their absorptance.
@@ -30,9 +32,9 @@ func (e endless) depth(zenith float64, scatter bool) float64 {
 	for _, f := range e.leaves {
 		w := 1.0
 		if scatter {
-			w = math.Sqrt(f.Absorptance)
+			w = math.Sqrt(f.absorptance)
 		}
-		tau += w * f.Clumping * LeafProjection(f.Chi, cos, sin) * f.LAI
+		tau += w * f.clumping * LeafProjection(f.chi, cos, sin) * f.LAI
 	}
 	return tau / cos
 }
@@ -136,14 +138,14 @@ func (e endless) brute() (gross float64) {
 		// what leaves and wood take of the beam itself
 		direct, share := WoodProjection*e.wood/steps/math.Cos(zenith), e.wood
 		for _, f := range e.leaves {
-			direct += f.Absorptance * f.Clumping * LeafProjection(f.Chi, math.Cos(zenith), math.Sin(zenith)) * f.LAI / steps / math.Cos(zenith)
-			share += math.Sqrt(f.Absorptance) * f.Clumping * f.LAI
+			direct += f.absorptance * f.clumping * LeafProjection(f.chi, math.Cos(zenith), math.Sin(zenith)) * f.LAI / steps / math.Cos(zenith)
+			share += math.Sqrt(f.absorptance) * f.clumping * f.LAI
 		}
 		pool := lost - e.beam*chance*direct
 		for _, f := range e.leaves {
-			diffuse := pool * math.Sqrt(f.Absorptance) * f.Clumping / share * steps / f.Absorptance
-			sunlit := f.Clumping * chance
-			gross += f.LAI / steps * ((1-sunlit)*testLeaf.Gross(diffuse) + sunlit*turned(f.Chi, zenith, diffuse, e.beam/math.Cos(zenith)))
+			diffuse := pool * math.Sqrt(f.absorptance) * f.clumping / share * steps / f.absorptance
+			sunlit := f.clumping * chance
+			gross += f.LAI / steps * ((1-sunlit)*testLeaf.Gross(diffuse) + sunlit*turned(f.chi, zenith, diffuse, e.beam/math.Cos(zenith)))
 		}
 	}
 	return gross

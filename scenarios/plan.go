@@ -130,6 +130,7 @@ type Treatment struct {
 	Matrix     []Layer             // the stand between openings after the treatment, understory not in
 	Trees      inventory.Stand     // what the matrix is made of; without trees where it is stated
 	Cut        []inventory.Removal // trees taken from the matrix
+	Thinning   inventory.Thinning  // the last one; of a treatment that is thinned
 	Understory []Understory
 	Opening    Opening
 }

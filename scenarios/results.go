@@ -12,6 +12,7 @@ type Results struct {
 	Stations   []TreatmentStations // by treatment
 	Light      []LightRow
 	Balance    []BalanceRow
+	Gains      []StandGain    // by treatment, where asked for
 	Neutral    []NeutralShade // by seedling, where break-evens were asked for
 	Correction Correction     // of the leaf area by readings; the plan here is the corrected one
 	Warnings   []Warning      // of the plan and of the run
@@ -51,6 +52,7 @@ type BalanceRow struct {
 	Light       float64 // percent of full light over the season
 	LightLeafOn float64 // percent over the leaf-on period
 	PAR         float64 // mol m-2 d-1 over the season
+	SkyView     float64 // percent
 	Lines       ledger.Lines
 	BreakEven   ledger.BreakEven
 	Class       ledger.Class // by the year's net and the leaf-on light, the same for every period

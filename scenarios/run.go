@@ -27,7 +27,8 @@ const (
 type Options struct {
 	Workers int // goroutines over stations; below 1 is 1. The results do not depend on it
 	Depth   Depth
-	By      By // how light rows (Depth Light) or ledger rows divide the time
+	By      By   // how light rows (Depth Light) or ledger rows divide the time
+	Gain    bool // the stand's own carbon gain too
 }
 
 // Run works a plan out: stand -> light -> ledger, for every treatment, station and seedling.
@@ -193,6 +194,14 @@ func (r *runner) treatment(t *Treatment, res *Results) error {
 		}
 	}
 	res.Stations = append(res.Stations, named)
+	if r.opts.Gain {
+		gain, warnings, err := r.standGain(t)
+		if err != nil {
+			return err
+		}
+		res.Gains = append(res.Gains, gain)
+		res.Warnings = append(res.Warnings, warnings...)
+	}
 	if r.opts.Depth == Light {
 		r.lightRows(s, points, res)
 		return nil
@@ -265,7 +274,7 @@ func (r *runner) balanceRows(s *scene, points []canopy.Point, res *Results) {
 			row := BalanceRow{
 				Treatment: s.treatment.Name, Station: s.stations[station].Name,
 				Species: r.plan.Seedlings[i].Name, Botanical: r.plan.Seedlings[i].Botanical,
-				Light: sums.Percent(), LightLeafOn: keeper.LeafOnPercent(), PAR: sums.Spot() / days,
+				Light: sums.Percent(), LightLeafOn: keeper.LeafOnPercent(), PAR: sums.Spot() / days, SkyView: 100 * g.SkyView,
 			}
 			r.keep(keeper, i, &accounts[worker], &row)
 			mismatch[at] = keeper.LeafMassMismatch(r.prepared[i])

@@ -38,10 +38,15 @@ func (c *curve) gross(I, ag float64) float64 {
 // leaves saturate.
 var uniformMu = func() (rule struct {
 	node, weight [canopy.IncidenceNodes]float64
-}) { x := [canopy.IncidenceNodes]float64{-0.906179845938664, -0.5384693101056831, 0, 0.5384693101056831, 0.906179845938664}; w := [canopy.IncidenceNodes]float64{0.23692688505618908, 0.47862867049936647, 0.5688888888888889, 0.47862867049936647, 0.23692688505618908}; for i := range x {
-	t := (1 + x[i]) / 2
-	rule.node[i], rule.weight[i] = t*t, w[i]*t
-}; return rule }()
+}) {
+	x := [canopy.IncidenceNodes]float64{-0.906179845938664, -0.5384693101056831, 0, 0.5384693101056831, 0.906179845938664}
+	w := [canopy.IncidenceNodes]float64{0.23692688505618908, 0.47862867049936647, 0.5688888888888889, 0.47862867049936647, 0.23692688505618908}
+	for i := range x {
+		t := (1 + x[i]) / 2
+		rule.node[i], rule.weight[i] = t*t, w[i]*t
+	}
+	return rule
+}()
 
 // rule gives the nodes (as PPFD from the beam) and weights of the incidence mean of a step.
 func (r *Prepared) rule(s *step, node *[canopy.IncidenceNodes]float64) *[canopy.IncidenceNodes]float64 {

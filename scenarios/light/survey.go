@@ -150,18 +150,23 @@ func (s *Scene) anchor(v []float64) int {
 // Survey finds the regime at every point and hands it to visit, which must not keep it. Points are shared out over
 // workers; visit is called once for each point, from one of them, with the worker's number.
 func (s *Scene) Survey(points []canopy.Point, workers int, visit func(worker, point int, r *Regime)) {
-	workers = max(1, min(workers, len(points)))
+	observers := make([]*observer, max(1, workers))
+	Share(len(points), workers, func(worker, i int) {
+		if observers[worker] == nil {
+			observers[worker] = s.newObserver()
+		}
+		visit(worker, i, observers[worker].observe(points[i]))
+	})
+}
+
+// Share has n pieces of work done by workers, each piece once; a piece writes its own places only.
+func Share(n, workers int, do func(worker, piece int)) {
 	var next atomic.Int64
 	var group sync.WaitGroup
-	for w := range workers {
+	for w := range max(1, min(workers, n)) {
 		group.Go(func() {
-			o := s.newObserver()
-			for {
-				i := int(next.Add(1)) - 1
-				if i >= len(points) {
-					return
-				}
-				visit(w, i, o.observe(points[i]))
+			for i := int(next.Add(1)) - 1; i < n; i = int(next.Add(1)) - 1 {
+				do(w, i)
 			}
 		})
 	}

@@ -37,7 +37,7 @@ func difference(a, b *scenarios.Plan) string {
 	}
 	return cmp.Diff(a, b, cmp.Exporter(func(reflect.Type) bool { return true }), cmpopts.EquateNaNs(),
 		cmpopts.EquateEmpty(), cmpopts.IgnoreFields(scenarios.Plan{}, left...),
-		cmpopts.IgnoreFields(scenarios.Stand{}, "Trees", "Foliage", "Cruise"), cmpopts.IgnoreFields(scenarios.Treatment{}, "Trees", "Cut"),
+		cmpopts.IgnoreFields(scenarios.Stand{}, "Trees", "Foliage", "Cruise"), cmpopts.IgnoreFields(scenarios.Treatment{}, "Trees", "Cut", "Thinning"),
 		cmpopts.SortSlices(func(a, b scenarios.Fact) bool { return a.Key < b.Key }))
 }
 

@@ -78,7 +78,7 @@ func (r *reader) thin(v val, p *scenarios.Plan, t *scenarios.Treatment) {
 	if got := left.Sums().BasalArea; got > th.Leave+0.01*math.Max(1, th.Leave) {
 		r.warnings = append(r.warnings, scenarios.Warning{Key: v.path, Text: fmt.Sprintf("%.3g m2/ha stay where %.3g were to: no more trees may be taken", got, th.Leave)})
 	}
-	t.Trees, t.Cut = left, append(t.Cut, cut...)
+	t.Trees, t.Cut, t.Thinning = left, append(t.Cut[:len(t.Cut):len(t.Cut)], cut...), th
 	t.Matrix = p.Stand.Foliage.Layers(left)
 }
 
