@@ -26,6 +26,7 @@ var faulty = []struct {
 	{"species columns without a unit", "DBH (in),QURU,ACSA3\n4,1,24\n", []string{"1|QURU|trees/ac is likely"}},
 	{"acre and hectare disagree", "species,dbh [in],trees/ac,stems/ha\nred oak,10,20,49.4\nred oak,12,20,60\n", []string{"3|stems/ha|within 2 %"}},
 	{"feet and metres disagree", "species,dbh [in],trees/ac,height [ft],height [m]\nred oak,10,20,60,20\n", []string{"2|height [m]|within 2 %"}},
+	{"a title of another unit", "Stand 3, dbh in inches\nspecies,dbh [cm],trees/ha\nBuche,10,20\n", []string{"2|dbh [cm]|a line above says in"}},
 	{"two units in a column", "species,dbh [cm],trees/ha\nBuche,10 in,20\n", []string{"2|dbh [cm]|a number in cm"}},
 	{"stout", "species,dbh [cm],trees/ha\nBuche,300,10\nBuche,30,10\n", []string{"2|dbh [cm]|which unit was meant"}},
 	{"thin", "species,dbh [mm],trees/ha\nBuche,12,10\nBuche,15,10\n", []string{"0|dbh [mm]|which unit was meant"}},

@@ -138,6 +138,9 @@ func onlyTotal(label string) bool {
 
 // totalLabel tells whether a cell names a total, and what is left of it without that word.
 func totalLabel(cell string) (totalKind, string) {
+	if strings.Trim(cell, "0123456789.,") == "" {
+		return noTotal, cell
+	}
 	t := strings.Trim(strings.ToLower(strings.Join(strings.Fields(headingMarks.Replace(cell)), " ")), " ")
 	bare := strings.Trim(t, "* ")
 	switch {
