@@ -171,14 +171,15 @@ func (r *sheetReader) findUnits(records []sheetRecord) {
 
 // twoUnits faults a length whose heading and the lines above it say different units.
 func (r *sheetReader) twoUnits(above map[sheetRole]sheetUnit) {
-	for role, said := range above {
+	for _, role := range []sheetRole{dbhRole, heightRole, crownBaseRole} {
+		said, known := above[role]
 		columns, first := 0, r.firstOf(role)
 		for _, c := range r.head.columns {
 			if c.role == role {
 				columns++
 			}
 		}
-		if columns == 1 && role.measure() == lengths && first.unit.measure == lengths && first.unit.factor != said.factor {
+		if known && columns == 1 && first.unit.measure == lengths && first.unit.factor != said.factor {
 			r.fault(Fault{Line: r.heads[len(r.heads)-1].line, Column: first.title, Value: first.title,
 				Fix: fmt.Sprintf("one unit: a line above says %s", said.name)})
 		}
