@@ -68,8 +68,8 @@ func Corrected(p *Plan) (*Plan, Correction, error) {
 	return p.scaled(c.Factor), c, nil
 }
 
-// notes say what a correction did.
-func (c Correction) notes() (out []Warning) {
+// Notes say what a correction did.
+func (c Correction) Notes() (out []Warning) {
 	if c.Source == "" {
 		return nil
 	}

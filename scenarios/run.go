@@ -60,7 +60,7 @@ func RunSeries(p *Plan, series *weather.Series, opts Options) (*Results, error) 
 	r.spans = r.divide()
 	res := &Results{Plan: p, Series: series, Assumed: p.Assumed, Correction: correction}
 	res.Warnings = append(res.Warnings, p.Warnings...)
-	res.Warnings = append(res.Warnings, correction.notes()...)
+	res.Warnings = append(res.Warnings, correction.Notes()...)
 	for _, w := range series.Warnings {
 		res.Warnings = append(res.Warnings, Warning{Key: "weather", Text: w})
 	}

@@ -317,3 +317,18 @@ func (b *slabBooks) arriving(i int) canopy.Arriving {
 		Sky: [2]float64{f.sky[k+1][i], f.sky[k][i]},
 	}
 }
+
+// PeriodGain is what a slab gains over a period, g C m-2.
+type PeriodGain struct {
+	Period      string
+	Gross, Leaf float64
+}
+
+// By divides a slab's gain as ledgers are: by year, month or day.
+func (g *SlabGain) By(s *weather.Series, by By) (out []PeriodGain) {
+	for _, sp := range spans(s, by) {
+		gross, respired := g.Over(s, sp.days, sp.years)
+		out = append(out, PeriodGain{sp.name, gross, respired})
+	}
+	return out
+}

@@ -29,12 +29,13 @@ var allowed = map[string][]string{
 	"scenarios/ledger":  {"leaf", "canopy", "scenarios/light"},
 	"scenarios":         {"radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios/light", "scenarios/ledger"},
 	"scenarios/plan":    {"radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
-	"scenarios/report":  {"canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
-	"cmd/shadeledger":   {"leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
+	"scenarios/decide":  {"canopy/inventory", "scenarios", "scenarios/ledger"},
+	"scenarios/report":  {"canopy/correct", "canopy/inventory", "scenarios/decide", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
+	"cmd/shadeledger":   {"canopy/inventory", "scenarios/decide", "leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
 }
 
 // theories hold the physics: the standard library and gonum only.
-var theories = []string{"radiation", "radiation/weather", "leaf", "leaf/traits", "canopy", "canopy/correct", "canopy/inventory", "scenarios/light", "scenarios/ledger", "scenarios"}
+var theories = []string{"radiation", "radiation/weather", "leaf", "leaf/traits", "canopy", "canopy/correct", "canopy/inventory", "scenarios/light", "scenarios/ledger", "scenarios", "scenarios/decide"}
 
 const mostLines = 400
 

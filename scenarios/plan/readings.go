@@ -116,3 +116,17 @@ func (r *reader) closure(v val, to *scenarios.Readings) {
 		r.fault(f["values"], describe(f["values"].node), "at least 2 values; 8 points are usual")
 	}
 }
+
+// ReadReadings reads a file of paired light readings at a site.
+func ReadReadings(path string, site radiation.Site) (scenarios.Readings, []Fault) {
+	data, err := load(path, largestData)
+	if err != nil {
+		return scenarios.Readings{}, []Fault{{File: path, Fix: explain(err, largestData, "check the name")}}
+	}
+	r := &reader{file: path}
+	out := scenarios.Readings{File: path, Pairs: r.pairs(path, data, site)}
+	if len(r.faults) == 0 && len(out.Pairs) < 2 {
+		r.faults = append(r.faults, Fault{File: path, Fix: "at least 2 pairs of readings; 12 are the floor for trust"})
+	}
+	return out, sortFaults(r.faults)
+}

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"strconv"
+	"strings"
 	"unicode/utf8"
 
 	"shadeledger/canopy/inventory"
@@ -50,26 +51,68 @@ func area(m2 float64, u scenarios.Units) string {
 
 // basalArea takes m2/ha.
 func basalArea(v float64, u scenarios.Units) string {
+	return sig(basalValue(v, u), 3) + " " + basalUnit(u)
+}
+
+func basalValue(v float64, u scenarios.Units) float64 {
 	if u == scenarios.US {
-		return sig(v*m2PerAcre/m2PerHectare/(metresPerFoot*metresPerFoot), 3) + " ft2/ac"
+		return v / inventory.BasalUS
 	}
-	return sig(v, 3) + " m2/ha"
+	return v
+}
+
+func basalUnit(u scenarios.Units) string {
+	if u == scenarios.US {
+		return "ft2/ac"
+	}
+	return "m2/ha"
 }
 
 // density takes trees/ha.
 func density(v float64, u scenarios.Units) string {
 	if u == scenarios.US {
-		return sig(v*m2PerAcre/m2PerHectare, 3) + " trees/ac"
+		return count(densityValue(v, u)) + " trees/ac"
 	}
-	return sig(v, 3) + " trees/ha"
+	return count(v) + " trees/ha"
+}
+
+// count shows trees: whole from ten up, two digits below.
+func count(v float64) string {
+	if v >= 10 {
+		return text0(v, 0)
+	}
+	return short(v, 1)
+}
+
+// short prints a number to some decimal places, without zeros at its end.
+func short(v float64, places int) string {
+	s := text0(v, places)
+	if strings.Contains(s, ".") {
+		s = strings.TrimRight(strings.TrimRight(s, "0"), ".")
+	}
+	return s
+}
+
+func densityValue(v float64, u scenarios.Units) float64 {
+	if u == scenarios.US {
+		return v * m2PerAcre / m2PerHectare
+	}
+	return v
 }
 
 // diameter takes m.
 func diameter(v float64, u scenarios.Units) string {
 	if u == scenarios.US {
-		return text0(v/inventory.Inch, 1) + " in"
+		return short(diameterValue(v, u), 1) + " in"
 	}
-	return text0(100*v, 1) + " cm"
+	return short(diameterValue(v, u), 1) + " cm"
+}
+
+func diameterValue(v float64, u scenarios.Units) float64 {
+	if u == scenarios.US {
+		return v / inventory.Inch
+	}
+	return 100 * v
 }
 
 // sig prints a number to n significant digits, without an exponent.

@@ -1,0 +1,129 @@
+package decide
+
+import (
+	"fmt"
+	"math"
+
+	"shadeledger/scenarios"
+	"shadeledger/scenarios/ledger"
+)
+
+// Target is what a residual basal area is sought for: LightTarget or ComfortTarget.
+type Target interface {
+	// met tells whether a thinned stand's rows are bright enough.
+	met(rows []scenarios.BalanceRow) bool
+	depth() scenarios.Depth
+	String() string
+}
+
+// LightTarget is a percent of full light over the season.
+type LightTarget struct{ Percent float64 }
+
+// ComfortTarget is a seedling, by its name, in the class comfortable.
+type ComfortTarget struct{ Seedling string }
+
+func (t LightTarget) met(rows []scenarios.BalanceRow) bool { return rows[0].Light >= t.Percent }
+
+func (t ComfortTarget) met(rows []scenarios.BalanceRow) bool {
+	for _, r := range rows {
+		if r.Species == t.Seedling {
+			return r.Class == ledger.Comfortable
+		}
+	}
+	return false
+}
+
+func (LightTarget) depth() scenarios.Depth   { return scenarios.Ledgers }
+func (ComfortTarget) depth() scenarios.Depth { return scenarios.BreakEvens }
+
+func (t LightTarget) String() string   { return fmt.Sprintf("%.3g %% of full light", t.Percent) }
+func (t ComfortTarget) String() string { return t.Seedling + " comfortable" }
+
+// Residual is the answer: the most basal area that meets a target.
+type Residual struct {
+	Target  Target
+	Found   bool    // false: not even with all trees gone that may go
+	Uncut   bool    // the uncut stand meets it
+	Leave   float64 // m2/ha
+	Cut     float64 // percent of the basal area
+	Light   float64 // percent over the season there, computed forward
+	Next    float64 // the least basal area tried that misses the target, m2/ha
+	Runs    int
+	Rows    []scenarios.BalanceRow // at Leave, by seedling
+	Results *scenarios.Results
+}
+
+// width is to what basal area residuals are found, m2/ha.
+const width = 0.2
+
+// FindResidual halves the basal area between the uncut stand and none until the target is met to 0.2 m2/ha. Light never falls as more
+// is taken, so that one crossing is all there is; a class may in principle cross twice, and the last stand that is bright enough counts.
+func FindResidual(p *scenarios.Plan, q ThinQuery, t Target) (*Residual, error) {
+	if c, ok := t.(ComfortTarget); ok && !HasSeedling(p, c.Seedling) {
+		return nil, fmt.Errorf("%q is not a seedling of the plan; there are %v", c.Seedling, Seedlings(p))
+	}
+	s, err := newStands(p, q)
+	if err != nil {
+		return nil, err
+	}
+	series := s.base.Weather.Series(s.base.Site, s.base.Sampling.Step, s.base.Par)
+	out := &Residual{Target: t}
+	try := func(ba float64) (bool, error) {
+		plan, trees, err := s.plan([]float64{ba})
+		if err != nil {
+			return false, err
+		}
+		r, err := scenarios.RunSeries(plan, series, scenarios.Options{Workers: q.Workers, Depth: t.depth()})
+		if err != nil {
+			return false, err
+		}
+		out.Runs++
+		ok := t.met(r.Balance)
+		if ok {
+			out.Found, out.Leave = true, trees[0].Sums().BasalArea
+			out.Cut, out.Light = 100*(1-out.Leave/s.uncut), r.Balance[0].Light
+			out.Rows, out.Results = r.Balance, r
+		}
+		return ok, nil
+	}
+	if out.Uncut, err = try(s.uncut); err != nil || out.Uncut {
+		return out, err
+	}
+	low, high := 0.0, s.uncut
+	if ok, err := try(low); err != nil || !ok {
+		return out, err
+	}
+	low = out.Leave // spared trees may keep it above 0
+	for high-low > width/2 {
+		mid := (low + high) / 2
+		ok, err := try(mid)
+		if err != nil {
+			return out, err
+		}
+		if ok {
+			low = math.Max(low, mid)
+		} else {
+			high = mid
+		}
+	}
+	out.Next = high
+	return out, nil
+}
+
+// Seedlings are the names of a plan's seedlings.
+func Seedlings(p *scenarios.Plan) (out []string) {
+	for _, s := range p.Seedlings {
+		out = append(out, s.Name)
+	}
+	return out
+}
+
+// HasSeedling tells whether a plan has a seedling of a name.
+func HasSeedling(p *scenarios.Plan, name string) bool {
+	for _, s := range Seedlings(p) {
+		if s == name {
+			return true
+		}
+	}
+	return false
+}
