@@ -71,8 +71,8 @@ func (o *outcome) take(row *scenarios.BalanceRow) {
 	}
 }
 
-// Cut is how much a treatment takes: the share of the overstory's leaf area between openings, and one opening's
-// legal area.
+// Cut is how much a treatment takes: the share of the basal area between openings, of leaf area where the stand is stated by layers, and
+// one opening's legal area.
 type Cut struct {
 	Matrix  float64 // 0..1
 	Opening float64 // m2
@@ -82,6 +82,9 @@ type Cut struct {
 func CutOf(p *scenarios.Plan, t *scenarios.Treatment) Cut {
 	var c Cut
 	before, after := leafArea(p.Stand.Layers), leafArea(t.Matrix)
+	if len(t.Trees.Trees) > 0 {
+		before, after = p.Stand.Trees.Sums().BasalArea, t.Trees.Sums().BasalArea
+	}
 	if before > 0 {
 		c.Matrix = math.Max(0, 1-after/before)
 	}
