@@ -58,27 +58,31 @@ func Chi(s *traits.Species) float64 {
 	return 1
 }
 
-// needleClumping is the clumping of needles within shoots: silhouette of spruce and pine shoots is some 0.8 of that of their needles
-// laid apart at random, low in what is published (0.56 to 0.8: Stenberg 1996, Tree Physiol. 16:99-108, from memory).
-const needleClumping = 0.8
+// within is the clumping of leaves within a crown, on branches and shoots: 0.8. Shoots of spruce and pine show 0.56 to 0.8 of the silhouette of
+// their needles laid apart at random (Stenberg 1996, Tree Physiol. 16:99-108, from memory); broadleaf crowns 0.7 to 0.9 (Chen, Menges &
+// Leblanc 2005, Remote Sens. Environ. 97:447-457, from memory). Chosen with sampled and regularity on replicate A of the Michigan subplots.
+const within = 0.8
 
-// within is the clumping of leaves within a crown.
-func within(s *traits.Species) float64 {
+// Regularity D of the stand of crowns before any thinning: at 0 they stand at random, at 1 side by side (the binomial gap model, Nilson
+// 1971, Agric. Meteorol. 8:25-38). Broadleaves: chosen on replicate A of the Michigan subplots (Atkins et al. 2021) and held since. Conifers,
+// mostly planted and even in age: from floors of closed spruce and Douglas-fir stands at 3 to 6 % of full light (common practice).
+const (
+	broadleafRegularity = 0.55
+	coniferRegularity   = 0.9
+)
+
+// regular says how much more ground crowns cover than at random: exp(-regular S) of it is open, regular = -ln(1-D)/D. Taking trees at
+// random from a regular stand leaves one that is less so: D falls as the share of crowns that stay (a binomial count thinned is binomial). In
+// conifer stands thinning keeps an even spacing, and floors stay dark long after it (Johansson 1987; Heithecker & Halpern 2006): D stays.
+func regular(s *traits.Species, stay float64) float64 {
+	d := coniferRegularity
 	if s.Group == traits.Broadleaf {
+		d = broadleafRegularity * stay
+	}
+	if d < 1e-9 {
 		return 1
 	}
-	return needleClumping
-}
-
-// regular says how much more ground crowns cover than at random: exp(-regular S) of it is open. It is -ln(1-D)/D of the binomial
-// gap model with regularity D (Nilson 1971, Agric. Meteorol. 8:25-38). Broadleaf stands: chosen on replicate A of the
-// Michigan subplots (Atkins et al. 2021) and held since. Conifers, mostly planted and even in age: D = 0.9, from
-// floors of closed spruce and Douglas-fir stands at 3 to 6 % of full light (common practice).
-func regular(s *traits.Species) float64 {
-	if s.Group == traits.Broadleaf {
-		return 1.05
-	}
-	return 2.56
+	return -math.Log1p(-d) / d
 }
 
 // slants are the zenith angles over which gaps are summed, with the cosine weights of an even sky.
@@ -86,7 +90,8 @@ const slants = 24
 
 // Clumping is Omega of the stand's layers: what makes an endless layer of the same leaf and wood area pass as much of an even sky as
 // ellipsoidal crowns do, with cover c(theta) = 1 - exp(-regular S(theta)) and P = 1 - c + c exp(-tau/c) (Nilson 1971). Fewer crowns
-// leave more gaps, so it falls as a stand is thinned, and never rises. wood and leaves of a species share it.
+// leave more gaps, so it falls as a stand is thinned, and never rises. Leaves and wood have their clumping
+// within crowns besides.
 func (s Stand) Clumping() float64 {
 	if len(s.Trees) == 0 {
 		return 1
@@ -96,16 +101,16 @@ func (s Stand) Clumping() float64 {
 
 func (s Stand) clump() float64 {
 	var tau, open [slants]float64
-	light := 0.0
+	light, stay := 0.0, math.Min(1, s.Sums().CrownSum/s.crowns)
 	for i := range tau {
 		sin, cos := math.Sincos((float64(i) + 0.5) / slants * math.Pi / 2)
 		crowns := 0.0
 		for _, t := range s.Trees {
 			perM2 := t.PerHa / hectare
 			half := (t.Height - t.CrownBase) / 2
-			crowns += regular(t.Species) * perM2 * math.Pi * t.Crown * math.Hypot(t.Crown, half*sin/cos)
-			leaf := within(t.Species) * canopy.LeafProjection(Chi(t.Species), cos, sin) * t.LeafArea
-			tau[i] += perM2 * (leaf + canopy.WoodProjection*(t.Stem+t.Branch)) / cos
+			crowns += regular(t.Species, stay) * perM2 * math.Pi * t.Crown * math.Hypot(t.Crown, half*sin/cos)
+			leaf := canopy.LeafProjection(Chi(t.Species), cos, sin) * t.LeafArea
+			tau[i] += within * perM2 * (leaf + canopy.WoodProjection*(t.Stem+t.Branch)) / cos
 		}
 		c := -math.Expm1(-crowns)
 		open[i] = sin * cos
@@ -166,7 +171,7 @@ func (s Stand) layersOf(sp *traits.Species, omega float64) (out []Layer) {
 		bounds = append(bounds, base+(top-base)*i/n)
 	}
 	for i := len(bounds) - 2; i >= 0; i-- {
-		l := Layer{sp, canopy.Layer{Bottom: bounds[i], Top: bounds[i+1], Chi: Chi(sp), Clumping: math.Max(0.05, omega*within(sp)), Absorptance: Absorptance}}
+		l := Layer{sp, canopy.Layer{Bottom: bounds[i], Top: bounds[i+1], Chi: Chi(sp), Clumping: math.Max(0.05, omega*within), Absorptance: Absorptance}}
 		for _, t := range s.Trees {
 			if t.Species != sp {
 				continue

@@ -220,13 +220,14 @@ func (r *reader) assumeTrees(f map[string]val, s *scenarios.Stand) {
 	}
 	u := t.Sums()
 	if t.Crowding < 1 && !f["lai"].present() {
-		r.assume("stand.lai, crowding", fmt.Sprintf("%.2f of the allometric leaf area", t.Crowding), "crowns share the ground that random crowns cover; sample trees taken to come from a crown sum of 2.4")
+		r.assume("stand.lai, crowding", fmt.Sprintf("%.2f of the allometric leaf area", t.Crowding), "crowns share the ground that random crowns cover; sample trees taken to come from a crown sum of 2.2")
 	}
+	r.assume("stand.lai, by tree", "more to tall trees, less to suppressed ones, the sum kept", "in proportion to height in the stand; Long & Smith 1988, DeRose & Seymour 2012")
 	if !f["wai"].present() {
 		r.assume("stand.wai", fmt.Sprintf("%.2f", u.WAI), "stems as cones, branches 2.5 times their surface, 0.5 under needles; Whittaker & Woodwell 1967, from memory")
 	}
 	if !f["clumping"].present() {
-		r.assume("stand.clumping", fmt.Sprintf("%.2f, needles %.2f", t.Clumping(), t.Clumping()*0.8), "random crowns over the stand's crown cover, "+fmt.Sprintf("%.0f %%", 100*u.Cover()))
+		r.assume("stand.clumping", fmt.Sprintf("%.2f", t.Layers()[0].Clumping), "0.8 within crowns; between them from the stand's crowns: Nilson 1971, Agric. Meteorol. 8:25-38")
 	}
 	if !f["chi"].present() {
 		r.assume("stand.chi", "2.1 broadleaves, 1 needles", "Pisek et al. 2013, Agric. For. Meteorol. 169:186-194; "+practice)
