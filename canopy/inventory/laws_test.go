@@ -145,7 +145,10 @@ func TestLayersHoldTheTrees(t *testing.T) {
 
 // Clumping falls as crowns are taken: 27 to 5 m2/ha of hardwoods.
 func TestThinnedStandsAreClumpier(t *testing.T) {
-	s := byBasalArea(t, 25, 27.1, map[string]float64{"Quercus alba": 0.7, "Acer rubrum": 0.3})
+	s, err := NewStand([]Class{FromBasalArea(species(t, "Quercus alba"), 19, 25), FromBasalArea(species(t, "Acer rubrum"), 8.1, 25)}, Setting{25, 11})
+	if err != nil {
+		t.Fatal(err)
+	}
 	last := 1.1
 	for _, ba := range []float64{27.1, 18.5, 10, 5.2, 1} {
 		left, _, err := s.Thin(Thinning{Order: AllSizes, Leave: ba})
