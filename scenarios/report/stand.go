@@ -115,26 +115,37 @@ func (b *standReport) species() {
 	b.p.f("\n")
 }
 
-// classes sums over species by dbh, as the table has it.
+// mostDiameters is how many distinct diameters are shown as they stand; a tree list is put in classes.
+const mostDiameters = 24
+
+// classes sums over species by dbh, as the table has it; a list of trees by classes of 2 in or 5 cm, named by their middle.
 func (b *standReport) classes(rows []treeRow) {
 	u := b.o.Units
+	width := 0.05
+	if u == scenarios.US {
+		width = 2 * inventory.Inch
+	}
+	distinct := map[float64]bool{}
+	for _, r := range rows {
+		distinct[r.DBH] = true
+	}
+	of := func(dbh float64) float64 { return dbh }
+	if len(distinct) > mostDiameters {
+		of = func(dbh float64) float64 { return width * math.Round(dbh/width) }
+	}
 	type sum struct{ trees, ba, lai float64 }
 	by := map[float64]*sum{}
 	var dbh []float64
 	for _, r := range rows {
-		if by[r.DBH] == nil {
-			by[r.DBH] = &sum{}
-			dbh = append(dbh, r.DBH)
+		d := of(r.DBH)
+		if by[d] == nil {
+			by[d] = &sum{}
+			dbh = append(dbh, d)
 		}
-		s := by[r.DBH]
+		s := by[d]
 		s.trees, s.ba, s.lai = s.trees+r.PerHa, s.ba+r.BasalArea(), s.lai+r.lai
 	}
 	slices.Sort(dbh)
-	const most = 30
-	if len(dbh) > most {
-		b.p.f("%d diameters, %s to %s: --format csv lists them.\n\n", len(dbh), diameter(dbh[0], u), diameter(dbh[len(dbh)-1], u))
-		return
-	}
 	t := newTable("dbh "+b.dbhUnit(), "trees/"+b.perArea(), "basal area "+basalUnit(u), "leaf area")
 	for _, d := range dbh {
 		s := by[d]
