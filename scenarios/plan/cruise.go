@@ -197,6 +197,11 @@ func (r *reader) calendars(f map[string]val, s *scenarios.Stand) {
 			s.Foliage.Calendars[sp.Species.Botanical] = r.calendar(f["leaves"], sp.Species)
 			continue
 		}
+		if r.region != nil && sp.Species.Deciduous() && r.region.leaves != leaf.Calendar(leaf.Evergreen{}) {
+			r.assume("stand.leaves, "+sp.Species.Botanical, calendarText(r.region.leaves), practice+", the region's")
+			s.Foliage.Calendars[sp.Species.Botanical] = r.region.leaves
+			continue
+		}
 		if sp.Species.Deciduous() {
 			r.assume("stand.leaves, "+sp.Species.Botanical, calendarText(sp.Species.Calendar()), "species library")
 		}

@@ -41,7 +41,7 @@ var unitTable = map[dimension]map[string]unit{
 	length: {"m": {1, 0}, "cm": {0.01, 0}, "mm": {0.001, 0}, "km": {1000, 0}, "ft": {foot, 0}, "in": {foot / 12, 0},
 		"chain": {66 * foot, 0}, "chains": {66 * foot, 0}, "yd": {3 * foot, 0}},
 	area:        {"m2": {1, 0}, "cm2": {1e-4, 0}, "ha": {1e4, 0}, "ft2": {foot * foot, 0}, "ac": {acre, 0}, "in2": {foot * foot / 144, 0}},
-	basalArea:   {"m2/ha": {1, 0}, "ft2/ac": {foot * foot / (acre / 1e4), 0}},
+	basalArea:   {"m2/ha": {1, 0}, "ft2/ac": {inventory.BasalUS, 0}},
 	slope:       {"%": {0, 0}, "deg": {math.Pi / 180, 0}}, // percent is an arctangent, not a factor
 	bearing:     {"deg": {math.Pi / 180, 0}},
 	mass:        {"g": {1, 0}, "mg": {1e-3, 0}, "kg": {1e3, 0}, "oz": {28.349523125, 0}, "lb": {453.59237, 0}},
