@@ -58,16 +58,17 @@ func Chi(s *traits.Species) float64 {
 	return 1
 }
 
-// within is the clumping of leaves within a crown, on branches and shoots: 0.8. Shoots of spruce and pine show 0.56 to 0.8 of the silhouette of
+// within is the clumping of leaves within a crown, on branches and shoots: 0.75. Shoots of spruce and pine show 0.56 to 0.8 of the silhouette of
 // their needles laid apart at random (Stenberg 1996, Tree Physiol. 16:99-108, from memory); broadleaf crowns 0.7 to 0.9 (Chen, Menges &
-// Leblanc 2005, Remote Sens. Environ. 97:447-457, from memory). Chosen with sampled and regularity on replicate A of the Michigan subplots.
-const within = 0.8
+// Leblanc 2005, Remote Sens. Environ. 97:447-457, from memory). Chosen with the crown sum
+// of sample stands and the regularities (DEVELOPERS.md).
+const within = 0.75
 
 // Regularity D of the stand of crowns before any thinning: at 0 they stand at random, at 1 side by side (the binomial gap model, Nilson
-// 1971, Agric. Meteorol. 8:25-38). Broadleaves: chosen on replicate A of the Michigan subplots (Atkins et al. 2021) and held since. Conifers,
+// 1971, Agric. Meteorol. 8:25-38). Broadleaves: chosen on the Michigan subplots (Atkins et al. 2021) and light against basal area. Conifers,
 // mostly planted and even in age: from floors of closed spruce and Douglas-fir stands at 3 to 6 % of full light (common practice).
 const (
-	broadleafRegularity = 0.55
+	broadleafRegularity = 0.15
 	coniferRegularity   = 0.9
 )
 
@@ -88,10 +89,9 @@ func regular(s *traits.Species, stay float64) float64 {
 // slants are the zenith angles over which gaps are summed, with the cosine weights of an even sky.
 const slants = 24
 
-// Clumping is Omega of the stand's layers: what makes an endless layer of the same leaf and wood area pass as much of an even sky as
-// ellipsoidal crowns do, with cover c(theta) = 1 - exp(-regular S(theta)) and P = 1 - c + c exp(-tau/c) (Nilson 1971). Fewer crowns
-// leave more gaps, so it falls as a stand is thinned, and never rises. Leaves and wood have their clumping
-// within crowns besides.
+// Clumping is Omega between crowns: what makes an endless layer of the same leaf area pass as much of an even sky as ellipsoidal crowns
+// do, with cover c(theta) = 1 - exp(-regular S(theta)) and P = 1 - c + c exp(-tau/c) (Nilson 1971). Fewer crowns leave more gaps, so it
+// falls as a stand is thinned, and never rises. Leaves have their clumping within crowns besides. Wood stands at random.
 func (s Stand) Clumping() float64 {
 	if len(s.Trees) == 0 {
 		return 1
@@ -110,7 +110,7 @@ func (s Stand) clump() float64 {
 			half := (t.Height - t.CrownBase) / 2
 			crowns += regular(t.Species, stay) * perM2 * math.Pi * t.Crown * math.Hypot(t.Crown, half*sin/cos)
 			leaf := canopy.LeafProjection(Chi(t.Species), cos, sin) * t.LeafArea
-			tau[i] += within * perM2 * (leaf + canopy.WoodProjection*(t.Stem+t.Branch)) / cos
+			tau[i] += within * perM2 * leaf / cos
 		}
 		c := -math.Expm1(-crowns)
 		open[i] = sin * cos
@@ -144,8 +144,9 @@ const thickness = 1
 // Absorptance of leaves in PAR (common practice).
 const Absorptance = 0.85
 
-// Layers spreads each tree's leaves and branches over its crown as the volume of an ellipsoid, its stem as a cone from the ground up, sums them to layers
-// of 1 m by species, from the top layer of the species named first down; wood below all crowns is one layer to a species.
+// Layers spreads each tree's leaves and branches over its crown as the volume of an ellipsoid and its stem as a cone from the ground up, and
+// sums them to layers of 1 m by species, the species of most basal area first, from the top down; wood below all crowns is one layer to a
+// species. A layer's clumping works on its wood too, which stands at random: its wood area is given over its clumping.
 func (s Stand) Layers() []Layer {
 	omega := s.Clumping()
 	var out []Layer
@@ -179,7 +180,7 @@ func (s Stand) layersOf(sp *traits.Species, omega float64) (out []Layer) {
 			perM2 := t.PerHa / hectare
 			crown := crownShare(t, l.Top) - crownShare(t, l.Bottom)
 			l.LAI += perM2 * t.LeafArea * crown
-			l.WAI += perM2 * (t.Branch*crown + t.Stem*(coneShare(t, l.Top)-coneShare(t, l.Bottom)))
+			l.WAI += perM2 / l.Clumping * (t.Branch*crown + t.Stem*(coneShare(t, l.Top)-coneShare(t, l.Bottom)))
 		}
 		if l.LAI+l.WAI > 0 {
 			out = append(out, l)

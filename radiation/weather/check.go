@@ -60,6 +60,10 @@ func (r *Records) Check(site radiation.Site, step time.Duration) []Problem {
 		checkRecord(&c, &r.Rows[i])
 	}
 	every := r.interval()
+	if every <= 0 {
+		c.add(r.Rows[1].Line, "time", stampText(r.Rows[1].Time), "a later time than the row before; each time once, in order")
+		return c.done()
+	}
 	sound := true
 	for i := 1; i < len(r.Rows); i++ {
 		d := r.Rows[i].Time.Sub(r.Rows[i-1].Time)

@@ -2,7 +2,6 @@ package decide
 
 import (
 	"fmt"
-	"math"
 
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
@@ -68,46 +67,51 @@ func FindResidual(p *scenarios.Plan, q ThinQuery, t Target) (*Residual, error) {
 	}
 	series := s.base.Weather.Series(s.base.Site, s.base.Sampling.Step, s.base.Par)
 	out := &Residual{Target: t}
-	try := func(ba float64) (bool, error) {
+	asked := 0.0 // the most that met the target, as it was asked for
+	try := func(ba float64, depth scenarios.Depth) (bool, error) {
 		plan, trees, err := s.plan([]float64{ba})
 		if err != nil {
 			return false, err
 		}
-		r, err := scenarios.RunSeries(plan, series, scenarios.Options{Workers: q.Workers, Depth: t.depth()})
+		r, err := scenarios.RunSeries(plan, series, scenarios.Options{Workers: q.Workers, Depth: depth})
 		if err != nil {
 			return false, err
 		}
 		out.Runs++
 		ok := t.met(r.Balance)
 		if ok {
-			out.Found, out.Leave = true, trees[0].Sums().BasalArea
+			asked, out.Found, out.Leave = ba, true, trees[0].Sums().BasalArea
 			out.Cut, out.Light = 100*(1-out.Leave/s.uncut), r.Balance[0].Light
 			out.Rows, out.Results = r.Balance, r
 		}
 		return ok, nil
 	}
-	if out.Uncut, err = try(s.uncut); err != nil || out.Uncut {
+	if out.Uncut, err = try(s.uncut, t.depth()); err != nil {
 		return out, err
 	}
-	low, high := 0.0, s.uncut
-	if ok, err := try(low); err != nil || !ok {
-		return out, err
-	}
-	low = out.Leave // spared trees may keep it above 0
-	for high-low > width/2 {
-		mid := (low + high) / 2
-		ok, err := try(mid)
-		if err != nil {
+	if !out.Uncut {
+		if out.Next, err = halve(s.uncut, func(ba float64) (bool, error) { return try(ba, t.depth()) }); err != nil || !out.Found {
 			return out, err
 		}
-		if ok {
-			low = math.Max(low, mid)
+	}
+	_, err = try(asked, scenarios.BreakEvens) // the answer computed forward, with its classes
+	return out, err
+}
+
+// halve looks for the most basal area that is enough between none and one that is not; it gives the least one tried that is not.
+func halve(high float64, enough func(float64) (bool, error)) (float64, error) {
+	low := 0.0
+	ok, err := enough(low)
+	for err == nil && ok && high-low > width/2 {
+		var good bool
+		mid := (low + high) / 2
+		if good, err = enough(mid); good {
+			low = mid
 		} else {
 			high = mid
 		}
 	}
-	out.Next = high
-	return out, nil
+	return high, err
 }
 
 // Seedlings are the names of a plan's seedlings.

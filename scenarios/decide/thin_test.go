@@ -81,6 +81,11 @@ func TestFindResidual(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
+		for k, r := range a.Rows { // the classes of the answer are those of the table
+			if want := table.Rows[k]; r.Class != want.Class || !near(r.Lines.Net(), want.Net) {
+				t.Errorf("%s, %s: %s is %s, %s in the table", c.plan, c.target, r.Species, r.Class, want.Class)
+			}
+		}
 		t.Logf("%s, %s: %.2f m2/ha in %d runs, light %.2f %%", c.plan, c.target, a.Leave, a.Runs, a.Light)
 		n := len(p.Seedlings)
 		for k, ok := range []bool{true, false} {

@@ -229,10 +229,10 @@ func (r *reader) assumeTrees(f map[string]val, s *scenarios.Stand) {
 	}
 	r.assume("stand.lai, by tree", "more to tall trees, less to suppressed ones, the sum kept", "in proportion to height in the stand; Long & Smith 1988, DeRose & Seymour 2012")
 	if !f["wai"].present() {
-		r.assume("stand.wai", fmt.Sprintf("%.2f", u.WAI), "stems as cones, branches 2.5 times their surface, 0.5 under needles; Whittaker & Woodwell 1967, from memory")
+		r.assume("stand.wai", fmt.Sprintf("%.2f", u.WAI), "stems as cones, branches 3 times their surface, 0.5 under needles, at random; Whittaker & Woodwell 1967, from memory")
 	}
 	if !f["clumping"].present() {
-		r.assume("stand.clumping", fmt.Sprintf("%.2f", t.Layers()[0].Clumping), "0.8 within crowns; between them from the stand's crowns: Nilson 1971, Agric. Meteorol. 8:25-38")
+		r.assume("stand.clumping", fmt.Sprintf("%.2f", t.Layers()[0].Clumping), "0.75 within crowns; between them from the stand's crowns: Nilson 1971, Agric. Meteorol. 8:25-38")
 	}
 	if !f["chi"].present() {
 		r.assume("stand.chi", "2.1 broadleaves, 1 needles", "Pisek et al. 2013, Agric. For. Meteorol. 169:186-194; "+practice)
