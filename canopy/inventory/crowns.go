@@ -58,11 +58,11 @@ func Chi(s *traits.Species) float64 {
 	return 1
 }
 
-// within is the clumping of leaves within a crown, on branches and shoots: 0.75. Shoots of spruce and pine show 0.56 to 0.8 of the silhouette of
+// Within is the clumping of leaves within a crown, on branches and shoots: 0.75. Shoots of spruce and pine show 0.56 to 0.8 of the silhouette of
 // their needles laid apart at random (Stenberg 1996, Tree Physiol. 16:99-108, from memory); broadleaf crowns 0.7 to 0.9 (Chen, Menges &
 // Leblanc 2005, Remote Sens. Environ. 97:447-457, from memory). Chosen with the crown sum
 // of sample stands and the regularities (DEVELOPERS.md).
-const within = 0.75
+const Within = 0.75
 
 // Regularity D of the stand of crowns before any thinning: at 0 they stand at random, at 1 side by side (the binomial gap model, Nilson
 // 1971, Agric. Meteorol. 8:25-38). Broadleaves: chosen on the Michigan subplots (Atkins et al. 2021) and light against basal area. Conifers,
@@ -110,7 +110,7 @@ func (s Stand) clump() float64 {
 			half := (t.Height - t.CrownBase) / 2
 			crowns += regular(t.Species, stay) * perM2 * math.Pi * t.Crown * math.Hypot(t.Crown, half*sin/cos)
 			leaf := canopy.LeafProjection(Chi(t.Species), cos, sin) * t.LeafArea
-			tau[i] += within * perM2 * leaf / cos
+			tau[i] += Within * perM2 * leaf / cos
 		}
 		c := -math.Expm1(-crowns)
 		open[i] = sin * cos
@@ -172,7 +172,7 @@ func (s Stand) layersOf(sp *traits.Species, omega float64) (out []Layer) {
 		bounds = append(bounds, base+(top-base)*i/n)
 	}
 	for i := len(bounds) - 2; i >= 0; i-- {
-		l := Layer{sp, canopy.Layer{Bottom: bounds[i], Top: bounds[i+1], Chi: Chi(sp), Clumping: math.Max(0.05, omega*within), Absorptance: Absorptance}}
+		l := Layer{sp, canopy.Layer{Bottom: bounds[i], Top: bounds[i+1], Chi: Chi(sp), Clumping: math.Max(0.05, omega*Within), Absorptance: Absorptance}}
 		for _, t := range s.Trees {
 			if t.Species != sp {
 				continue

@@ -18,6 +18,7 @@ type Class struct {
 	PerHa     float64         // trees per hectare, >= 0
 	Height    float64         // m; NaN where not measured
 	CrownBase float64         // m; NaN where not measured
+	DBHTaken  bool            // diameter and trees are taken from height and basal area, none was measured
 }
 
 // BasalArea of the class, m2/ha: pi/4 DBH^2 for each tree.

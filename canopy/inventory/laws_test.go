@@ -9,13 +9,18 @@ import (
 	"shadeledger/leaf/traits"
 )
 
+// tallied is a class of which species, diameter and number are known.
+func tallied(s *traits.Species, dbh, perHa float64) Class {
+	return Class{Species: s, DBH: dbh, PerHa: perHa, Height: math.NaN(), CrownBase: math.NaN()}
+}
+
 // anyStand is a stand of random classes of the library's species.
 func anyStand(t *testing.T, g *rand.Rand) Stand {
 	t.Helper()
 	all := traits.All()
 	var classes []Class
 	for range 1 + g.IntN(30) {
-		classes = append(classes, Class{all[g.IntN(len(all))], 0.03 + 0.9*g.Float64()*g.Float64(), 200 * g.Float64(), math.NaN(), math.NaN()})
+		classes = append(classes, tallied(all[g.IntN(len(all))], 0.03+0.9*g.Float64()*g.Float64(), 200*g.Float64()))
 	}
 	s, err := NewStand(classes, Setting{8 + 35*g.Float64(), 4 * g.Float64()})
 	if err != nil {
@@ -167,8 +172,7 @@ func TestThinnedStandsAreClumpier(t *testing.T) {
 // Kept trees: so many from the thickest, or a share, of a species and a class.
 func TestKeep(t *testing.T) {
 	oak, beech := species(t, "Quercus robur"), species(t, "Fagus sylvatica")
-	nan := math.NaN()
-	s, err := NewStand([]Class{{oak, 0.5, 30, nan, nan}, {oak, 0.3, 100, nan, nan}, {beech, 0.6, 40, nan, nan}}, Setting{28, 12})
+	s, err := NewStand([]Class{tallied(oak, 0.5, 30), tallied(oak, 0.3, 100), tallied(beech, 0.6, 40)}, Setting{28, 12})
 	if err != nil {
 		t.Fatal(err)
 	}

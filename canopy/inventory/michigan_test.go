@@ -92,7 +92,7 @@ func michigan(t *testing.T) []subplot {
 		if trees[p] == nil {
 			names = append(names, p)
 		}
-		trees[p] = append(trees[p], Class{species(t, r["species"]), float(t, r["dbh_cm"]) / 100, 10, math.NaN(), math.NaN()})
+		trees[p] = append(trees[p], tallied(species(t, r["species"]), float(t, r["dbh_cm"])/100, 10))
 	}
 	mean := func(file, column, plot string) float64 {
 		sum, n := 0.0, 0.0

@@ -21,7 +21,7 @@ func TestLeafAreaTakenByKindOfThinning(t *testing.T) {
 	var classes []Class
 	for i, d := range []float64{8, 12, 16, 20, 24, 28, 32, 36} {
 		n := []float64{420, 380, 320, 240, 160, 90, 40, 12}[i]
-		classes = append(classes, Class{spruce, d / 100, 0.67 * n, math.NaN(), math.NaN()}, Class{fir, d / 100, 0.33 * n, math.NaN(), math.NaN()})
+		classes = append(classes, tallied(spruce, d/100, 0.67*n), tallied(fir, d/100, 0.33*n))
 	}
 	s, err := NewStand(classes, Setting{18, 9})
 	if err != nil {

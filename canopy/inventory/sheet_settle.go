@@ -112,7 +112,7 @@ func (r *sheetReader) perHa(e sheetEntry, g plotGround) float64 {
 
 // rowOf completes a class from what its line gives; how says what was derived.
 func (r *sheetReader) rowOf(e sheetEntry, perHa, basal float64) (row Row, how string, ok bool) {
-	row = Row{Class: Class{e.species, e.dbh, perHa, e.height, e.crownBase}, Line: e.line, BasalArea: basal, Plot: e.plot}
+	row = Row{Class: Class{Species: e.species, DBH: e.dbh, PerHa: perHa, Height: e.height, CrownBase: e.crownBase}, Line: e.line, BasalArea: basal, Plot: e.plot}
 	hasDBH, hasTrees, hasBasal := !math.IsNaN(e.dbh), !math.IsNaN(perHa), !math.IsNaN(basal)
 	switch {
 	case hasDBH && hasTrees:

@@ -36,9 +36,9 @@ type Setting struct {
 	CrownBase float64 // of the dominant trees, m
 }
 
-// sampled is the crown area over ground, m2 m-2, of the closed stands that the trees of the regressions are taken to come
+// SampledCrowns is the crown area over ground, m2 m-2, of the closed stands that the trees of the regressions are taken to come
 // from. Chosen on the Michigan subplots (Atkins et al. 2021).
-const sampled = 2.2
+const SampledCrowns = 2.2
 
 // NewStand gives every class height, crown and leaf area. A sum of crown areas S over ground covers 1 - exp(-S) of it where crowns stand
 // at random (Crookston & Stage 1999, USDA FS RMRS-GTR-24); trees share that cover, so that a tree in a stand of crown sum S
@@ -65,7 +65,7 @@ func NewStand(classes []Class, set Setting) (Stand, error) {
 	if len(s.Trees) == 0 {
 		return s, errors.New("no trees; at least one class with trees is needed")
 	}
-	s.Crowding = math.Min(1, covered(sum)/covered(sampled))
+	s.Crowding = math.Min(1, covered(sum)/covered(SampledCrowns))
 	dominant := dominantDBH(s.Trees)
 	for i := range s.Trees {
 		if err := s.Trees[i].fill(set, dominant, s.Crowding); err != nil {
@@ -120,8 +120,8 @@ const heightExponent = 0.5
 // Wood area, hemisurface: stems as cones, pi/4 dbh height; branches a multiple of it. Bark of branches is some three to four times that of
 // stems in deciduous stands (Whittaker & Woodwell 1967, Am. J. Bot. 54:931-939, from memory; leafless towers ask for as much); under needles most branch wood is hidden.
 const (
-	bareBranches   = 3.0
-	hiddenBranches = 0.5
+	BareBranches   = 3.0
+	HiddenBranches = 0.5
 )
 
 func (t *Tree) fill(set Setting, dominant, crowding float64) error {
@@ -138,9 +138,9 @@ func (t *Tree) fill(set Setting, dominant, crowding float64) error {
 	t.LeafArea, t.Source = area*crowding, source
 	t.Crown = CrownRadius(t.Species, t.DBH) * math.Sqrt(crowding)
 	t.Stem = math.Pi / 4 * t.DBH * t.Height
-	t.Branch = hiddenBranches * t.Stem * crowding
+	t.Branch = HiddenBranches * t.Stem * crowding
 	if t.Species.Deciduous() {
-		t.Branch = bareBranches * t.Stem * crowding
+		t.Branch = BareBranches * t.Stem * crowding
 	}
 	return nil
 }
@@ -200,6 +200,17 @@ func (s Stand) BySpecies() []SpeciesSums {
 
 // Leading is the species of the largest basal area.
 func (s Stand) Leading() SpeciesSums { return s.BySpecies()[0] }
+
+// Measured tells whether the leading species has measured diameters, without which there is no H:D.
+func (s Stand) Measured() bool {
+	lead := s.Leading().Species
+	for _, t := range s.Trees {
+		if t.Species == lead && t.DBHTaken {
+			return false
+		}
+	}
+	return true
+}
 
 // Slenderness is H:D, dominant height over the quadratic mean diameter of the leading species (common practice).
 func (s Stand) Slenderness() float64 { return s.Height / s.Leading().QMD() }

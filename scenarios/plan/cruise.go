@@ -225,14 +225,14 @@ func (r *reader) assumeTrees(f map[string]val, s *scenarios.Stand) {
 	}
 	u := t.Sums()
 	if t.Crowding < 1 && !f["lai"].present() {
-		r.assume("stand.lai, crowding", fmt.Sprintf("%.2f of the allometric leaf area", t.Crowding), "crowns share the ground that random crowns cover; sample trees taken to come from a crown sum of 2.2")
+		r.assume("stand.lai, crowding", fmt.Sprintf("%.2f of the allometric leaf area", t.Crowding), fmt.Sprintf("crowns share the ground that random crowns cover; sample trees taken to come from a crown sum of %g", inventory.SampledCrowns))
 	}
 	r.assume("stand.lai, by tree", "more to tall trees, less to suppressed ones, the sum kept", "in proportion to height in the stand; Long & Smith 1988, DeRose & Seymour 2012")
 	if !f["wai"].present() {
-		r.assume("stand.wai", fmt.Sprintf("%.2f", u.WAI), "stems as cones, branches 3 times their surface, 0.5 under needles, at random; Whittaker & Woodwell 1967, from memory")
+		r.assume("stand.wai", fmt.Sprintf("%.2f", u.WAI), fmt.Sprintf("stems as cones, branches %g times their surface, %g under needles, at random; Whittaker & Woodwell 1967, from memory", inventory.BareBranches, inventory.HiddenBranches))
 	}
 	if !f["clumping"].present() {
-		r.assume("stand.clumping", fmt.Sprintf("%.2f", t.Layers()[0].Clumping), "0.75 within crowns; between them from the stand's crowns: Nilson 1971, Agric. Meteorol. 8:25-38")
+		r.assume("stand.clumping", fmt.Sprintf("%.2f", t.Layers()[0].Clumping), fmt.Sprintf("%g within crowns; between them from the stand's crowns: Nilson 1971, Agric. Meteorol. 8:25-38", inventory.Within))
 	}
 	if !f["chi"].present() {
 		r.assume("stand.chi", "2.1 broadleaves, 1 needles", "Pisek et al. 2013, Agric. For. Meteorol. 169:186-194; "+practice)
@@ -240,14 +240,20 @@ func (r *reader) assumeTrees(f map[string]val, s *scenarios.Stand) {
 	if !f["absorptance"].present() {
 		r.assume("stand.absorptance", fmt.Sprint(inventory.Absorptance), practice)
 	}
-	heights, bases := 0, 0
+	heights, bases, taken := 0, 0, 0
 	for _, x := range t.Trees {
 		if x.HeightTaken {
 			heights++
 		}
+		if x.DBHTaken {
+			taken++
+		}
 		if x.CrownBaseMade {
 			bases++
 		}
+	}
+	if taken > 0 {
+		r.assume("stand.basal_area, dbh", fmt.Sprintf("%.3g cm, height over %d", 100*s.Height/inventory.UsualSlenderness, inventory.UsualSlenderness), practice+"; for leaf area, crowns and the order of thinning")
 	}
 	if heights > 0 {
 		r.assume("stand.stand_table, height", fmt.Sprintf("of %d of %d classes from dominant height and dbh", heights, len(t.Trees)), "root of dbh over that of the thickest 100 trees/ha, "+practice)

@@ -89,7 +89,7 @@ const slender, verySlender = 80, 95
 
 // slender warns of trees thin for their height.
 func (r *reader) slender(s *scenarios.Stand) {
-	if !s.Cruised() {
+	if !s.Cruised() || !s.Trees.Measured() {
 		return
 	}
 	word, x := "caution", s.Trees.Slenderness()

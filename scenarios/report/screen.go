@@ -40,8 +40,13 @@ func readAs(r *scenarios.Results, u scenarios.Units) string {
 	s := "Read as: "
 	if p.Stand.Cruised() {
 		sums, leading := p.Stand.Trees.Sums(), p.Stand.Trees.Leading()
-		s += basalArea(sums.BasalArea, u) + ", " + density(sums.PerHa, u) + ", QMD " + diameter(sums.QMD(), u) +
-			", H:D " + text0(p.Stand.Trees.Slenderness(), 0) + " (" + lastWord(leading.Species.Common) + ")"
+		s += basalArea(sums.BasalArea, u)
+		if p.Stand.Trees.Measured() {
+			s += ", " + density(sums.PerHa, u) + ", QMD " + diameter(sums.QMD(), u) + ", H:D " + text0(p.Stand.Trees.Slenderness(), 0)
+		} else {
+			s += " without diameters, height " + length(p.Stand.Height, u)
+		}
+		s += " (" + lastWord(leading.Species.Common) + ")"
 	} else {
 		s += "height " + length(p.Stand.Height, u)
 	}
@@ -66,6 +71,8 @@ func leafSource(r *scenarios.Results) string {
 		return " (readings)"
 	case r.Plan.Stand.Foliage.LeafStated:
 		return " (stated)"
+	case r.Plan.Stand.Cruised() && !r.Plan.Stand.Trees.Measured():
+		return " (basal area)"
 	case r.Plan.Stand.Cruised():
 		return " (dbh)"
 	}
