@@ -161,7 +161,7 @@ func (b *standReport) counted() {
 	sums := s.Trees.Sums()
 	lead := s.Trees.Leading()
 	if !s.Trees.Measured() {
-		hang(b.p, "", "No diameters: trees and diameters above are supposed, the height over " + itoa(inventory.UsualSlenderness) + "; H:D is not known.")
+		hang(b.p, "", "No diameters: trees and diameters above are supposed, the height over "+itoa(inventory.UsualSlenderness)+"; H:D is not known.")
 	} else {
 		hang(b.p, "", fmt.Sprintf("H:D %.0f: dominant height %s over QMD of %s, %s.%s", s.Trees.Slenderness(), length(s.Height, u), lead.Species.Common,
 			diameter(lead.QMD(), u), map[bool]string{true: " Above 80 is a caution, above 95 high risk of windthrow.", false: ""}[s.Trees.Slenderness() > 80]))
