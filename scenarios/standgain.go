@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"shadeledger/canopy"
+	"shadeledger/canopy/inventory"
 	"shadeledger/leaf"
 	"shadeledger/leaf/traits"
 	"shadeledger/radiation/weather"
@@ -69,9 +70,6 @@ func (q *guild) holds(l Layer, standing bool) bool {
 	return q.standing == standing && q.Species == l.Species && q.Calendar == l.Calendar && q.Chi == l.Chi &&
 		q.Clumping == l.Clumping && q.Absorptance == l.Absorptance
 }
-
-// needleArea is the hemisurface of needles over the projected area that the library's rates are per (half a cylinder).
-const needleArea = (1 + math.Pi/2) / 2
 
 // standGain works the matrix of a treatment out, as if it had no opening. Layers without a species have no leaf traits: they take
 // light, and are named.
@@ -242,14 +240,15 @@ func (q *guild) heat(s *weather.Series) {
 	}
 }
 
-// set is the leaf traits of a kind at a growth light, per hemisurface area; none without a species.
+// set is the leaf traits of a kind at a growth light, per hemisurface area; none without a species. The library's rates of needles are per
+// projected area.
 func (q *guild) set(growth float64) leaf.Set {
 	if q.species == nil {
 		return leaf.Set{}
 	}
 	x := q.traits.At(growth)
 	if q.species.Group != traits.Broadleaf {
-		x.Ag, x.Rd, x.LMA = x.Ag/needleArea, x.Rd/needleArea, x.LMA/needleArea
+		x.Ag, x.Rd, x.LMA = x.Ag/inventory.Hemisurface, x.Rd/inventory.Hemisurface, x.LMA/inventory.Hemisurface
 	}
 	return x
 }

@@ -55,8 +55,8 @@ var regressions = sync.OnceValue(func() map[string]regression {
 	return out
 })
 
-// hemisurface of needles over their projected area, a needle taken as half a cylinder: (1 + pi/2)/2 (geometry).
-const hemisurface = (1 + math.Pi/2) / 2
+// Hemisurface of needles over their projected area, a needle taken as half a cylinder: (1 + pi/2)/2 (geometry).
+const Hemisurface = (1 + math.Pi/2) / 2
 
 // projectedSLA is the projected leaf area of needles per dry mass, m2 kg-1, mean over a whole tree: the mean of what leaf areas
 // over leaf masses of the same trees imply. Single needles: Picea rubens 4.4 (Maguire, Brissette & Gu 1998),
@@ -72,9 +72,9 @@ const meanLight = 50
 func specificLeafArea(s *traits.Species) float64 {
 	switch s.Group {
 	case traits.Needle, traits.Pine:
-		return projectedSLA[s.Group] * hemisurface
+		return projectedSLA[s.Group] * Hemisurface
 	case traits.Larch:
-		return hemisurface * 1000 / s.Acclimation().At(meanLight).LMA
+		return Hemisurface * 1000 / s.Acclimation().At(meanLight).LMA
 	}
 	return 1000 / s.Acclimation().At(meanLight).LMA
 }
@@ -95,7 +95,7 @@ func LeafArea(s *traits.Species, dbh float64) (area float64, source string) {
 	case !r.area:
 		return y * specificLeafArea(s), r.source + ", foliage mass; leaf mass per area from the species library"
 	case s.Group == traits.Needle || s.Group == traits.Pine:
-		return y * hemisurface, r.source + ", projected leaf area"
+		return y * Hemisurface, r.source + ", projected leaf area"
 	}
 	return y, r.source + ", leaf area"
 }

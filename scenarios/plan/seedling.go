@@ -7,6 +7,7 @@ import (
 
 	"go.yaml.in/yaml/v4"
 
+	"shadeledger/canopy/inventory"
 	"shadeledger/leaf"
 	"shadeledger/leaf/traits"
 	"shadeledger/scenarios"
@@ -196,7 +197,7 @@ func (r *plantReader) basis(f map[string]val, own bool) float64 {
 		return 2
 	case s == "projected" && needles:
 		r.assume(block+".area_basis", "rates and lma divided by 1.285", "needle as half a cylinder: total over projected area 1 + pi/2 (geometry)")
-		return 1 / ((1 + math.Pi/2) / 2)
+		return 1 / inventory.Hemisurface
 	}
 	return 1
 }
