@@ -22,6 +22,7 @@ var allowed = map[string][]string{
 	"radiation/weather": {"radiation"},
 	"leaf":              {},
 	"leaf/traits":       {"leaf"},
+	"leaf/fit":          {"leaf"},
 	"canopy":            {"leaf"},
 	"canopy/correct":    {},
 	"canopy/inventory":  {"canopy", "leaf", "leaf/traits"},
