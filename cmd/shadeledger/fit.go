@@ -17,11 +17,11 @@ type fitOptions struct {
 func newFit(io streams) *cobra.Command {
 	cmd := &cobra.Command{
 		Use:   "fit",
-		Short: "Parameters from readings: effective leaf area from light under and above the canopy",
+		Short: "Parameters from readings: leaf traits from light responses, leaf area from light",
 		Args:  cobra.NoArgs,
 		RunE:  func(cmd *cobra.Command, _ []string) error { return cmd.Help() },
 	}
-	cmd.AddCommand(newFitCanopy(io))
+	cmd.AddCommand(newFitLeaf(io), newFitCanopy(io))
 	return cmd
 }
 

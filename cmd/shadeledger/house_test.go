@@ -29,10 +29,10 @@ var allowed = map[string][]string{
 	"scenarios/light":   {"radiation", "radiation/weather", "canopy"},
 	"scenarios/ledger":  {"leaf", "canopy", "scenarios/light"},
 	"scenarios":         {"radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios/light", "scenarios/ledger"},
-	"scenarios/plan":    {"radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
+	"scenarios/plan":    {"leaf/fit", "radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
 	"scenarios/decide":  {"canopy/inventory", "scenarios", "scenarios/ledger"},
-	"scenarios/report":  {"canopy/correct", "canopy/inventory", "scenarios/decide", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
-	"cmd/shadeledger":   {"canopy/inventory", "scenarios/decide", "leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
+	"scenarios/report":  {"leaf/fit", "canopy/correct", "canopy/inventory", "scenarios/decide", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
+	"cmd/shadeledger":   {"leaf/fit", "canopy/inventory", "scenarios/decide", "leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
 }
 
 // theories hold the physics: the standard library and gonum only.

@@ -1,0 +1,117 @@
+package main
+
+import (
+	"math"
+	"slices"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"shadeledger/leaf/fit"
+	"shadeledger/scenarios/plan"
+	"shadeledger/scenarios/report"
+)
+
+type fitLeafOptions struct {
+	*settings
+	io      streams
+	file    string
+	columns map[string]string
+}
+
+func newFitLeaf(io streams) *cobra.Command {
+	var columns []string
+	cmd := &cobra.Command{
+		Use:   "leaf CSV",
+		Short: "Leaf parameters from light-response readings, leaf by leaf",
+		Long: `Fits the light response of every leaf in a CSV file by least squares: net light-saturated rate, respiration, initial
+slope, curvature and compensation point, each with its 95 % interval; says by AICc where an exponential or a
+rectangular hyperbola meets the leaf better, and flags what is wrong with a curve: few or no dim points, no plateau,
+drift, closed stomata, photoinhibition, a wrong sign. Then each species' mean with its spread between plants, and a
+block that a plan takes.
+
+Columns: ppfd_umol_m2_s, net_umol_m2_s, leaf; where known species, plant, leaf_temp_c, growth_light_pct, gsw_mol_m2_s,
+ci_ppm. Headings of common instruments are known; --column NAME=HEADING names others.`,
+		Example: "  shadeledger fit leaf curves.csv\n  shadeledger fit leaf licor.csv --column leaf=sample --column net_umol_m2_s=Photo --format csv",
+		Args:    cobra.ExactArgs(1),
+		RunE: func(cmd *cobra.Command, args []string) error {
+			s, err := readSettings(cmd)
+			if err != nil {
+				return err
+			}
+			o := fitLeafOptions{settings: s, io: io, file: args[0], columns: map[string]string{}}
+			for _, c := range columns {
+				name, heading, ok := strings.Cut(c, "=")
+				if !ok || !slices.Contains(plan.CurveColumns(), name) {
+					return usagef("--column %q: write NAME=HEADING, NAME one of %s", c, strings.Join(plan.CurveColumns(), ", "))
+				}
+				o.columns[name] = heading
+			}
+			return runFitLeaf(o)
+		},
+	}
+	addOutputFlags(cmd)
+	cmd.Flags().Bool("strict", false, "exit with 3 where a curve is flagged")
+	cmd.Flags().StringArrayVar(&columns, "column", nil, "NAME=HEADING, the heading of a column in the file; may be given again")
+	return cmd
+}
+
+func runFitLeaf(o fitLeafOptions) error {
+	if err := o.checkOutput(); err != nil {
+		return err
+	}
+	curves, faults := plan.ReadCurves(o.file, o.columns)
+	if len(faults) > 0 {
+		return faultsError{faults}
+	}
+	var out []report.LeafFit
+	for _, c := range curves {
+		l, err := fitOf(&c)
+		if err != nil {
+			faults = append(faults, plan.Fault{File: o.file, Line: c.Line, Key: "leaf", Value: c.Leaf, Fix: err.Error()})
+			continue
+		}
+		out = append(out, l)
+	}
+	if len(faults) > 0 {
+		return faultsError{faults}
+	}
+	flagged := false
+	for _, l := range out {
+		flagged = flagged || len(l.Flags) > 0
+	}
+	if err := o.deliver(o.io, nil, func(w report.Output) error { return report.FitLeaf(w, o.file, out) }); err != nil {
+		return err
+	}
+	if o.strict && flagged {
+		return errWarnings
+	}
+	return nil
+}
+
+// fitOf fits one leaf.
+func fitOf(c *plan.LeafCurve) (report.LeafFit, error) {
+	l := report.LeafFit{Species: c.Species, Plant: c.Plant, Leaf: c.Leaf, GrowthLight: c.GrowthLight, Temperature: math.NaN()}
+	points := make([]fit.Point, len(c.Readings))
+	sum, n := 0.0, 0.0
+	for i, r := range c.Readings {
+		points[i] = r.Point
+		if !math.IsNaN(r.Temperature) {
+			sum, n = sum+r.Temperature, n+1
+		}
+	}
+	if n > 0 {
+		l.Temperature = sum / n
+	}
+	var err error
+	if l.Fit, err = fit.Curve(points, fit.NonRectangular); err != nil {
+		return l, err
+	}
+	all, err := fit.Best(points)
+	if err != nil {
+		return l, err
+	}
+	l.Best, l.Gain = all[0].Shape, l.Fit.AICc-all[0].AICc
+	l.Flags = fit.Flags(c.Readings, &l.Fit)
+	return l, nil
+}

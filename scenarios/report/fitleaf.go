@@ -1,0 +1,164 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"github.com/jedib0t/go-pretty/v6/table"
+
+	"shadeledger/leaf/fit"
+)
+
+// LeafFit is the light response of one leaf: the non-rectangular hyperbola, which plans take, and the shape that AICc prefers.
+type LeafFit struct {
+	Species, Plant, Leaf string
+	GrowthLight          float64 // percent of full light; NaN where not known
+	Temperature          float64 // of the leaf, deg C, mean; NaN where not known
+	Fit                  fit.Fit
+	Best                 fit.Shape
+	Gain                 float64 // AICc of the hyperbola less that of the best shape, 0 where it is best
+	Flags                []string
+}
+
+func estimated(name string, of func(*fit.Fit) *fit.Estimate) []column[LeafFit] {
+	return []column[LeafFit]{
+		figure(name, func(l *LeafFit) float64 { return of(&l.Fit).Value }),
+		figure(name+"_low", func(l *LeafFit) float64 { return of(&l.Fit).Low }),
+		figure(name+"_high", func(l *LeafFit) float64 { return of(&l.Fit).High }),
+	}
+}
+
+var leafFitColumns = func() []column[LeafFit] {
+	c := []column[LeafFit]{
+		words("species", func(l *LeafFit) string { return l.Species }),
+		words("plant", func(l *LeafFit) string { return l.Plant }),
+		words("leaf", func(l *LeafFit) string { return l.Leaf }),
+		figure("points", func(l *LeafFit) float64 { return float64(l.Fit.Points) }),
+	}
+	c = append(c, estimated("amax", func(f *fit.Fit) *fit.Estimate { return &f.Amax })...)
+	c = append(c, estimated("rd", func(f *fit.Fit) *fit.Estimate { return &f.Rd })...)
+	c = append(c, estimated("phi", func(f *fit.Fit) *fit.Estimate { return &f.Phi })...)
+	c = append(c, estimated("theta", func(f *fit.Fit) *fit.Estimate { return &f.Theta })...)
+	c = append(c, estimated("compensation_umol_m2_s", func(f *fit.Fit) *fit.Estimate { return &f.Compensation })...)
+	return append(c,
+		figure("rmse_umol_m2_s", func(l *LeafFit) float64 { return l.Fit.RMSE }),
+		words("best_by_aicc", func(l *LeafFit) string { return l.Best.String() }),
+		figure("aicc_gain", func(l *LeafFit) float64 { return l.Gain }),
+		words("flags", func(l *LeafFit) string { return strings.Join(l.Flags, "; ") }),
+	)
+}()
+
+// clearly is how much lower AICc is where one shape is to be told from another (Burnham & Anderson 2002, Model Selection, sec. 2.6).
+const clearly = 2
+
+// plantsPerSpecies is the floor to print (common practice).
+const plantsPerSpecies = 5
+
+// FitLeaf writes fits leaf by leaf, then each species' mean with its spread between plants and a block that a plan takes.
+func FitLeaf(o Output, name string, fits []LeafFit) error {
+	switch o.Format {
+	case CSV:
+		return writeCSV(o.Out, leafFitColumns, fits)
+	case JSON:
+		rows, err := jsonRows(leafFitColumns, fits)
+		if err != nil {
+			return err
+		}
+		return writeNamed(o.Out, name, rows)
+	}
+	p := &printer{w: o.Out}
+	p.f("Light responses of %s: %d leaves, non-rectangular hyperbola, 95 %% intervals.\nAmax (net), Rd and RMSE in umol CO2 m-2 s-1, phi in mol mol-1, compensation point in umol m-2 s-1.\n", name, len(fits))
+	t := newTable("species", "leaf", "n", "Amax", "Rd", "phi", "theta", "comp.", "RMSE")
+	for i := range fits {
+		l := &fits[i]
+		f := &l.Fit
+		t.AppendRow(table.Row{l.Species, l.Leaf, f.Points, ranged(f.Amax, 1), ranged(f.Rd, 2), ranged(f.Phi, 3), decimal(f.Theta.Value, 2), ranged(f.Compensation, 0), decimal(f.RMSE, 2)})
+	}
+	if p.err == nil {
+		p.err = render(o.Out, t, 3, 4, 5, 6, 7, 8, 9)
+	}
+	for i := range fits {
+		if l := &fits[i]; len(l.Flags) > 0 {
+			hang(p, "  "+l.Leaf+": ", strings.Join(l.Flags, "; "))
+		}
+	}
+	for _, shape := range []fit.Shape{fit.Exponential, fit.Rectangular} {
+		n := 0
+		for i := range fits {
+			if fits[i].Best == shape && fits[i].Gain > clearly {
+				n++
+			}
+		}
+		if n > 0 {
+			p.f("%d leaves are met better by the %s (AICc lower by over %d).\n", n, shape, clearly)
+		}
+	}
+	summaries(p, fits)
+	return p.err
+}
+
+// ranged shows an estimate with its interval.
+func ranged(e fit.Estimate, places int) string {
+	if math.IsNaN(e.Value) {
+		return "-"
+	}
+	return fmt.Sprintf("%s (%s-%s)", text0(e.Value, places), text0(e.Low, places), text0(e.High, places))
+}
+
+// summaries prints each species' mean and a block for the plan.
+func summaries(p *printer, fits []LeafFit) {
+	var order []string
+	by := map[string][]LeafFit{}
+	for _, l := range fits {
+		if by[l.Species] == nil {
+			order = append(order, l.Species)
+		}
+		by[l.Species] = append(by[l.Species], l)
+	}
+	for _, name := range order {
+		var list []fit.Fit
+		var plants []string
+		light, temperature, n, warm := 0.0, 0.0, 0.0, 0.0
+		for _, l := range by[name] {
+			list = append(list, l.Fit)
+			plant := l.Plant
+			if plant == "" {
+				plant = l.Leaf
+			}
+			plants = append(plants, plant)
+			if !math.IsNaN(l.GrowthLight) {
+				light, n = light+l.GrowthLight, n+1
+			}
+			if !math.IsNaN(l.Temperature) {
+				temperature, warm = temperature+l.Temperature, warm+1
+			}
+		}
+		s := fit.Summarise(list, plants)
+		shown := name
+		if shown == "" {
+			shown = "all leaves"
+		}
+		p.f("\n%s: %d leaves of %d plants, mean and spread (SD) between plants\n", shown, s.Leaves, s.Plants)
+		p.f("  Amax %s, Rd %s, phi %s, theta %s, compensation point %s\n", spread(s.Amax, 1), spread(s.Rd, 2), spread(s.Phi, 4), spread(s.Theta, 2), spread(s.Compensation, 0))
+		if s.Plants < plantsPerSpecies {
+			p.f("  Fewer than %d plants: too few for a species (common practice).\n", plantsPerSpecies)
+		}
+		growth, at := "50", "25"
+		if n > 0 {
+			growth = text0(light/n, 0)
+		}
+		if warm > 0 {
+			at = text0(temperature/warm, 0)
+		}
+		p.f("  For a plan, under seedlings (give lma too where you know it; growth_light is %s):\n    leaf:\n      sun: {amax: %s, rd: %s, phi: %s, theta: %s, growth_light: %s}\n      t_ref: %s C\n",
+			map[bool]string{true: "the leaves' own", false: "supposed"}[n > 0], text0(s.Amax.Mean, 2), text0(s.Rd.Mean, 2), text0(s.Phi.Mean, 4), text0(s.Theta.Mean, 2), growth, at)
+	}
+}
+
+func spread(s fit.Spread, places int) string {
+	if math.IsNaN(s.SD) {
+		return decimal(s.Mean, places)
+	}
+	return decimal(s.Mean, places) + " (" + decimal(s.SD, places) + ")"
+}
