@@ -10,9 +10,8 @@ import (
 )
 
 // The worked values cover light response, compensation, saturation, respiration over temperature,
-// inhibition in the light, the half-sine day and sunflecks. Left out of the copy, with their reasons:
-// biochemical rates, peaked Arrhenius curves, stomata, coupled assimilation and quantum yield from
-// electron transport (no biochemistry here); induction (leaves respond at once); yearly leaf balance
+// inhibition in the light, the half-sine day and sunflecks; biochemistry has its own file and test.
+// Left out of the copy, with their reasons: induction (leaves respond at once); yearly leaf balance
 // in the field (no light record given); field compensation points in foot-candles (no leaf traits given).
 
 type worked struct {
