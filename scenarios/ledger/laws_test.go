@@ -4,6 +4,7 @@ import (
 	"math"
 	"testing"
 
+	"shadeledger/canopy"
 	"shadeledger/leaf"
 	"shadeledger/radiation"
 	"shadeledger/scenarios/light"
@@ -86,5 +87,23 @@ func TestBreakEvenEnds(t *testing.T) {
 	dear.Organs[0].Mass = 1e4
 	if b := k.BreakEven(Prepare(dear, above)); b.Found {
 		t.Errorf("costs beyond reach: %+v", b)
+	}
+}
+
+// The sun may stand on the horizon: the sunlit share stays a number, with the mean over the crown that the closed form gives.
+func TestSunlitShareOnTheHorizon(t *testing.T) {
+	p := plant(1, 0.5, twoSets)
+	c := newCrown(p, []float64{0, 0.5, 1, math.Pi / 2})
+	out := make([]float64, len(c.depth))
+	for _, β := range []float64{1e-12, 1e-6, 1e-4, 0.01, 0.3} {
+		c.sunlit(β, out)
+		mean := 0.0
+		for j, w := range c.weight {
+			mean += w * out[j]
+		}
+		K := canopy.LeafProjection(1, math.Sin(β), math.Cos(β)) / math.Max(math.Sin(β), 1e-9)
+		if want := meanDecay(K * c.lai); !(math.Abs(mean/want-1) < 1e-9) {
+			t.Errorf("elevation %g: mean sunlit share %g, want %g", β, mean, want)
+		}
 	}
 }

@@ -112,6 +112,10 @@ func (c *crown) sunlit(β float64, out []float64) {
 		out[j] = math.Exp(-K * l)
 		sum += c.weight[j] * out[j]
 	}
+	if sum == 0 { // the sun stands on the horizon: what is lit is the crown's outermost leaf
+		out[0] = meanDecay(K*c.lai) / c.weight[0]
+		return
+	}
 	for j := range out {
 		out[j] *= meanDecay(K*c.lai) / sum
 	}
