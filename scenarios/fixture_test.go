@@ -56,7 +56,7 @@ func seedling(t testing.TB, name string, height float64) scenarios.Seedling {
 			{Line: ledger.Stem, Mass: p.StemMass, Rate: p.StemRate, TRef: p.OrganTRef, Q10: p.StemQ10},
 			{Line: ledger.Root, Mass: p.RootMass, Rate: p.RootRate, TRef: p.OrganTRef, Q10: p.RootQ10},
 		},
-		Leaves: s.SeedlingCalendar(), Traits: s.Acclimation(), Temperature: s.Temperature(), LightRespiration: 1, Factor: 2,
+		Leaves: s.SeedlingCalendar(), Traits: s.SeedlingAcclimation(), Temperature: s.Temperature(), LightRespiration: 1, Factor: 2,
 		Turnover: ledger.Turnover{LeafLifespan: p.LeafLifespan, FineRootShare: p.FineRootShare, FineRootLifespan: p.FineRootLifespan,
 			ConstructionCost: p.ConstructionCost},
 	}}
@@ -89,7 +89,7 @@ func invented(t testing.TB) *scenarios.Plan {
 			{Name: "Circle", Matrix: full, Opening: scenarios.Cleared{Stems: circle(t, 43), Crowns: circle(t, 36)}},
 		},
 		Seedlings: []scenarios.Seedling{seedling(t, "Quercus rubra", 0.4), seedling(t, "Tsuga canadensis", 0.2)},
-		Sampling:  scenarios.Sampling{Step: 30 * time.Minute, Sky: radiation.AllWeather{}},
+		Sampling:  scenarios.Sampling{Step: 30 * time.Minute, Sky: radiation.AllWeather{}, Dormancy: leaf.Pine},
 	}
 }
 

@@ -165,6 +165,8 @@ type Sampling struct {
 	Grid    float64   // m
 	Heights []float64 // m, further heights for `light`
 	Sky     radiation.Sky
+	// Dormancy of evergreens, in seedlings and canopy; the zero value is none.
+	Dormancy leaf.Dormancy
 }
 
 // Record is who prepared the plan for what.

@@ -122,6 +122,9 @@ func prepare(p *Plan, above *light.Above) []*ledger.Prepared {
 			covered := Mask(above.Series, p.Snow.Period)
 			plant.SnowDays = func(day int) bool { return covered[day] }
 		}
+		if _, evergreen := plant.Leaves.(leaf.Evergreen); evergreen {
+			plant.Dormancy = p.Sampling.Dormancy
+		}
 		out[i] = ledger.Prepare(&plant, above)
 	}
 	return out
@@ -137,9 +140,12 @@ func (r *runner) neutral() []NeutralShade {
 	return out
 }
 
-// frozen warns of evergreens whose needles stand in the light on days of frost: without a rule for dormancy they are
-// counted as working, which flatters them.
+// frozen warns, where dormancy is off, of evergreens whose needles stand in the light on days of frost: they are counted as working,
+// which flatters them.
 func frozen(p *Plan, s *weather.Series) []Warning {
+	if p.Sampling.Dormancy.Lag > 0 {
+		return nil
+	}
 	covered := Mask(s, p.Snow.Period)
 	var names []string
 	most := 0.0
@@ -161,7 +167,7 @@ func frozen(p *Plan, s *weather.Series) []Warning {
 	if len(names) == 0 {
 		return nil
 	}
-	return []Warning{{Key: "seedlings", Text: fmt.Sprintf("evergreen and above the snow on %.0f days of frost a year: %s; neither winter dormancy nor a slow spring is modelled, so read their class as too favourable, most of all under leafless trees",
+	return []Warning{{Key: "seedlings", Text: fmt.Sprintf("evergreen and above the snow on %.0f days of frost a year: %s; sampling.dormancy is none, so read their class as too favourable, most of all under leafless trees",
 		most, strings.Join(names, ", "))}}
 }
 

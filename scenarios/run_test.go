@@ -189,8 +189,8 @@ func TestSnowCoversLowPlants(t *testing.T) {
 	}
 }
 
-// Evergreens above the snow on days of frost are named, by the day's lowest temperature; mild winters and snow over the plants
-// bring no note.
+// Where dormancy is off, evergreens above the snow on days of frost are named, by the day's lowest temperature; mild winters, snow over
+// the plants and the dormancy that is the rule bring no note.
 func TestFrostOnEvergreensIsTold(t *testing.T) {
 	note := func(example string, set ...string) string {
 		p, faults := plan.ReadExample(example, plan.Options{Set: set})
@@ -210,17 +210,38 @@ func TestFrostOnEvergreensIsTold(t *testing.T) {
 		}
 		return ""
 	}
-	if got := note("kettle-bench"); !strings.Contains(got, "White pine, Hemlock;") {
+	if got := note("kettle-bench"); got != "" {
+		t.Errorf("with dormancy: %q", got)
+	}
+	const awake = "sampling.dormancy=none"
+	if got := note("kettle-bench", awake); !strings.Contains(got, "White pine, Hemlock;") {
 		t.Errorf("kettle-bench: %q", got)
 	}
-	if got := note("kestrel-fork"); got != "" {
+	if got := note("kestrel-fork", awake); got != "" {
 		t.Errorf("kestrel-fork has no frost, yet: %q", got)
 	}
 	// means above 0 C, nights below
-	if got := note("kestrel-fork", "weather.normals.min=[-5, 1.1, 2.2, 3.7, 6.6, 9.3, 11.5, 11.6, 9.5, 6.4, 3.3, 1.2]"); !strings.Contains(got, "Thuja plicata") {
+	if got := note("kestrel-fork", awake, "weather.normals.min=[-5, 1.1, 2.2, 3.7, 6.6, 9.3, 11.5, 11.6, 9.5, 6.4, 3.3, 1.2]"); !strings.Contains(got, "Thuja plicata") {
 		t.Errorf("frosty nights: %q", got)
 	}
-	if got := note("kettle-bench", "snow.from=10-01", "snow.to=05-31"); got != "" {
+	if got := note("kettle-bench", awake, "snow.from=10-01", "snow.to=05-31"); got != "" {
 		t.Errorf("under snow all winter, yet: %q", got)
+	}
+}
+
+// Dormancy lowers the income of evergreens in the cold half of the year only, and leaves deciduous plants alone.
+func TestDormancyIsOfEvergreensInWinter(t *testing.T) {
+	p := invented(t)
+	by := scenarios.Options{Workers: 2, Depth: scenarios.Ledgers, By: scenarios.ByMonth}
+	asleep := run(t, p, by).Balance
+	p.Sampling.Dormancy = leaf.Dormancy{}
+	for i, awake := range run(t, p, by).Balance {
+		ratio := asleep[i].Lines[ledger.Income] / awake.Lines[ledger.Income]
+		summer := awake.Period >= "06" && awake.Period <= "09"
+		switch evergreen := awake.Species == p.Seedlings[1].Name; {
+		case awake.Lines[ledger.Income] == 0:
+		case !evergreen && ratio != 1, evergreen && summer && ratio < 0.99, evergreen && awake.Period <= "02" && ratio > 0.05, ratio > 1:
+			t.Errorf("%s, %s, month %s: income %.3f of that without dormancy", awake.Species, awake.Treatment, awake.Period, ratio)
+		}
 	}
 }

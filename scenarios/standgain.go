@@ -60,6 +60,7 @@ type guild struct {
 	standing bool // of the overstory
 	traits   leaf.Acclimation
 	warm     []float64 // Ag(T)/Ag(T_ref) by lit sub-step
+	awake    []float64 // share of gross assimilation that winter leaves, by lit sub-step
 	respired []float64 // sum of Rd(T)/Rd(T_ref) by day
 	foliage  canopy.Foliage
 	area     float64 // of the slab at hand, at full leaf
@@ -83,7 +84,7 @@ func (r *runner) standGain(treatment *Treatment) (StandGain, []Warning, error) {
 	}
 	guilds, warnings := guildsOf(t)
 	for i := range guilds {
-		guilds[i].heat(r.above.Series)
+		guilds[i].heat(r.above.Series, r.plan.Sampling.Dormancy)
 	}
 	top := 0.0
 	for _, l := range t.Matrix {
@@ -226,14 +227,21 @@ func (r *runner) slab(t *Treatment, all []guild, f *lightField, k int) SlabGain 
 }
 
 // heat works out what the temperature of the air does to the rates of a kind.
-func (q *guild) heat(s *weather.Series) {
+func (q *guild) heat(s *weather.Series, winter leaf.Dormancy) {
 	if q.species == nil {
 		return
 	}
 	T := q.species.Temperature()
 	q.warm, q.respired = make([]float64, len(s.Lit.Step)), make([]float64, len(s.Days))
+	q.awake = make([]float64, len(s.Lit.Step))
+	if q.species.Deciduous() {
+		winter = leaf.Dormancy{}
+	}
+	states := winter.States(s.DailyMeans())
 	for i, step := range s.Lit.Step {
-		q.warm[i] = T.AgFactor(s.Temperature[step])
+		celsius := s.Temperature[step]
+		q.warm[i] = T.AgFactor(celsius)
+		q.awake[i] = winter.Awake(T, states[int(step)/s.PerDay], celsius)
 	}
 	for i, celsius := range s.Temperature {
 		q.respired[i/s.PerDay] += T.RdFactor(celsius)
@@ -247,7 +255,7 @@ func (q *guild) set(growth float64) leaf.Set {
 		return leaf.Set{}
 	}
 	x := q.traits.At(growth)
-	if q.species.Group != traits.Broadleaf {
+	if q.species.Needled() {
 		x.Ag, x.Rd, x.LMA = x.Ag/inventory.Hemisurface, x.Rd/inventory.Hemisurface, x.LMA/inventory.Hemisurface
 	}
 	return x
@@ -281,7 +289,8 @@ func (b *slabBooks) day(d int) (gross, respired float64) {
 		for j, q := range b.guilds {
 			if q.species != nil {
 				warm := b.sets[j]
-				warm.Ag *= q.warm[i]
+				warm.Ag *= q.warm[i] * q.awake[i]
+				warm.Phi *= q.awake[i]
 				b.slab.Leaves[j].Response = warm.Response()
 			}
 		}

@@ -35,6 +35,18 @@ type Day struct {
 	LitTo   int
 }
 
+// DailyMeans gives the mean temperature of every day, deg C, and the calendar days that each stands for.
+func (s *Series) DailyMeans() (mean, weight []float64) {
+	mean, weight = make([]float64, len(s.Days)), make([]float64, len(s.Days))
+	for i, celsius := range s.Temperature {
+		mean[i/s.PerDay] += celsius / float64(s.PerDay)
+	}
+	for d := range s.Days {
+		weight[d] = s.Days[d].Weight
+	}
+	return mean, weight
+}
+
 // Lit holds one value for each lit sub-step, in order of time.
 type Lit struct {
 	Step      []int32   // index of the sub-step: day*PerDay + place in the day

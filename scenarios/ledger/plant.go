@@ -18,6 +18,7 @@ type Plant struct {
 	Leaves      leaf.Calendar
 	Traits      leaf.Acclimation
 	Temperature leaf.Temperature
+	Dormancy    leaf.Dormancy // of evergreens; the zero value is none
 	// LightRespiration is respiration in the light as a share of that in the dark.
 	LightRespiration float64
 	Ledger           Kind

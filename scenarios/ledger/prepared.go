@@ -32,7 +32,7 @@ type Prepared struct {
 	years                      float64
 }
 
-// step is a lit sub-step on which the plant has leaves and is not under snow.
+// step is a lit sub-step on which the plant has leaves, is awake and is not under snow.
 type step struct {
 	lit    int32
 	day    int32
@@ -142,6 +142,7 @@ func (r *Prepared) lit() {
 	r.steps = make([]step, 0, len(s.Lit.Step))
 	r.sun = make([]float64, 0, len(s.Lit.Step)*n)
 	var sunlit [maxDepths]float64
+	states := p.Dormancy.States(s.DailyMeans())
 	for d := range s.Days {
 		day := &s.Days[d]
 		share := p.Leaves.Share(day.Month, day.Day)
@@ -155,11 +156,15 @@ func (r *Prepared) lit() {
 			β := s.Lit.Elevation[i]
 			sinβ, cosβ := math.Sincos(β)
 			T := s.Temperature[s.Lit.Step[i]]
+			awake := p.Dormancy.Awake(p.Temperature, states[d], T)
+			if awake == 0 {
+				continue
+			}
 			r.steps = append(r.steps, step{
 				lit: int32(i), day: int32(d), rule: int32(canopy.IncidenceRule(β)),
 				normal: s.Lit.Beam[i] / sinβ, mu: canopy.LeafProjection(p.Chi, sinβ, cosβ),
 				factor: p.Temperature.AgFactor(T),
-				weight: s.Seconds * share * gramsPerMol * 1e-6,
+				weight: s.Seconds * share * gramsPerMol * 1e-6 * awake,
 				yearly: day.Weight / r.years,
 			})
 			r.crown.sunlit(β, sunlit[:n])

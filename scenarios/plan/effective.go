@@ -313,6 +313,11 @@ func (w *writer) rest(p *scenarios.Plan) {
 		sky = "uniform"
 	}
 	w.line(1, "sky", sky)
+	dormancy := "none"
+	if p.Sampling.Dormancy.Lag > 0 {
+		dormancy = "lagged"
+	}
+	w.line(1, "dormancy", dormancy)
 	w.cautions(p)
 	r := p.Record
 	w.line(0, "record", fmt.Sprintf("{forest: %s, stand: %s, owner_goal: %s, preparer: %s, licence: %s, date: %s}",

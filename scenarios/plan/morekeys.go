@@ -115,6 +115,7 @@ func restKeys() []Key {
 		{Path: "sampling.heights", Kind: List, Default: "none", Example: "[0.3 m, 1.3 m]", Meaning: "further heights for light"},
 		{Path: "sampling.heights[]", Kind: Quantity, dim: length, Low: 0, Top: 60, Range: "0 to 60 m", Example: "1.3 m", Meaning: "height above the ground"},
 		{Path: "sampling.sky", Kind: Choice, Words: []string{"all-weather", "overcast", "uniform"}, Default: "all-weather", Example: "overcast", Meaning: "how diffuse light is spread over the sky"},
+		{Path: "sampling.dormancy", Kind: Choice, Words: []string{"lagged", "none"}, Default: "lagged; none under an overcast or uniform sky", Example: "none", Meaning: "whether evergreens sleep through cold: capacity follows temperature with a lag"},
 		{Path: "cautions", Kind: Map, Default: "all OPEN", Meaning: "what was done about each caution"},
 		{Path: "record", Kind: Map, Meaning: "who prepared the plan for what"},
 	}

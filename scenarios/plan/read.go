@@ -15,6 +15,7 @@ import (
 	"go.yaml.in/yaml/v4"
 
 	"shadeledger/canopy"
+	"shadeledger/leaf"
 	"shadeledger/radiation"
 	"shadeledger/radiation/weather"
 	"shadeledger/scenarios"
@@ -298,6 +299,10 @@ func (r *reader) sampling(v val, p *scenarios.Plan) {
 		p.Sampling.Sky = radiation.Overcast{}
 	case "uniform":
 		p.Sampling.Sky = radiation.Uniform{}
+	}
+	_, natural := p.Sampling.Sky.(radiation.AllWeather) // the other skies are for checks by hand
+	if rule, _ := r.choice(f["dormancy"]); rule == "lagged" || rule == "" && natural {
+		p.Sampling.Dormancy = leaf.Pine
 	}
 }
 
