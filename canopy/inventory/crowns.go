@@ -52,7 +52,7 @@ func BorderCrown(classes []Class) float64 {
 // Agric. For. Meteorol. 49:173-176), is the 38 degrees found on 54 temperate and boreal species (Pisek et al. 2013,
 // Agric. For. Meteorol. 169:186-194). Needles: spherical.
 func Chi(s *traits.Species) float64 {
-	if s.Group == traits.Broadleaf {
+	if !s.Needled() {
 		return 2.1
 	}
 	return 1
@@ -77,7 +77,7 @@ const (
 // conifer stands thinning keeps an even spacing, and floors stay dark long after it (Johansson 1987; Heithecker & Halpern 2006): D stays.
 func regular(s *traits.Species, stay float64) float64 {
 	d := coniferRegularity
-	if s.Group == traits.Broadleaf {
+	if !s.Needled() {
 		d = broadleafRegularity * stay
 	}
 	if d < 1e-9 {

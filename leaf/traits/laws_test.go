@@ -160,8 +160,8 @@ func TestPairedSpeciesHoldTheFactsOfSunAndShade(t *testing.T) {
 			t.Errorf("%s: sun %+v, shade %+v", s.Botanical, sun, shade)
 		}
 	}
-	if n != 4 {
-		t.Errorf("%d paired species, want 4", n)
+	if n != 13 {
+		t.Errorf("%d paired species, want 13", n)
 	}
 }
 

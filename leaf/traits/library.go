@@ -56,6 +56,7 @@ type Group string
 // The groups.
 const (
 	Broadleaf Group = "broadleaf" // deciduous
+	Evergreen Group = "evergreen" // broadleaf
 	Pine      Group = "pine"      // evergreen, bundles of long needles
 	Needle    Group = "needle"    // evergreen, single short needles or scales
 	Larch     Group = "larch"     // deciduous needles

@@ -46,12 +46,20 @@ func (s *Species) get(name string) float64 {
 	return v.Value
 }
 
-// Tolerance is the shade-tolerance index, 0 (none) to 5 (Niinemets & Valladares 2006).
-func (s *Species) Tolerance() float64 { return s.own["tolerance"].Value }
+// Tolerance is the shade-tolerance index, 0 (none) to 5 (Niinemets & Valladares 2006), which rates temperate species of the northern
+// hemisphere; NaN where it does not.
+func (s *Species) Tolerance() float64 {
+	if v, rated := s.own["tolerance"]; rated {
+		return v.Value
+	}
+	return math.NaN()
+}
 
-// Class is the tolerance class of the group rules.
+// Class is the tolerance class of the group rules; species without an index are of the middle class.
 func (s *Species) Class() Class {
 	switch t := s.Tolerance(); {
+	case math.IsNaN(t):
+		return Mid
 	case t < 2.25:
 		return Low
 	case t <= 3.5:
@@ -62,6 +70,9 @@ func (s *Species) Class() Class {
 
 // Deciduous tells whether the leaves fall each year.
 func (s *Species) Deciduous() bool { return s.Group == Broadleaf || s.Group == Larch }
+
+// Needled tells whether the leaves are needles or scales.
+func (s *Species) Needled() bool { return s.Group == Pine || s.Group == Needle || s.Group == Larch }
 
 // Genus is the first word of the botanical name.
 func (s *Species) Genus() string {
@@ -113,8 +124,10 @@ func (s *Species) ruled(name string) (Value, bool) {
 // omitted names rules that feed other values or do not concern the species.
 func (s *Species) omitted(name string) bool {
 	switch name {
-	case "growth_light.upper", "growth_light.mid", "growth_light.lower", "rd_share":
+	case "growth_light.upper", "growth_light.mid", "growth_light.lower", "growth_light.sapling", "rd_share":
 		return true
+	case "shade_phi", "shade_theta":
+		return !s.Paired()
 	case "leaf_out", "leaf_full", "leaf_colour", "leaf_bare", "seedling_lead":
 		return !s.Deciduous()
 	case "lma_exponent", "amax_exponent", "rd_exponent":
@@ -157,7 +170,7 @@ func (s *Species) addPlant() {
 	s.add(leaves)
 	s.add(part("stem_mass", stem.Value, stem.Source))
 	s.add(part("root_mass", 1-leaf.Value-stem.Value, stem.Source))
-	lma := s.acclimation().At(plantLight).LMA
+	lma := s.juvenile().At(plantLight).LMA
 	s.add(Value{"leaf_area", leaves.Value / lma, leaves.Low / lma, leaves.High / lma, "m2", leaf.Source, Derived,
 		fmt.Sprintf("leaf mass over the leaf mass per area at %d %% light", plantLight)})
 }
@@ -178,6 +191,41 @@ func (s *Species) temperature() leaf.Temperature {
 func (s *Species) Acclimation() leaf.Acclimation {
 	s.once.Do(s.resolve)
 	return s.acclimation()
+}
+
+// SeedlingAcclimation is the same for the leaves of seedlings and saplings: leaf mass, respiration and the light-saturated rate of a set that
+// was measured in trees are multiplied by the juvenile shares. The lower set of a measured pair is of saplings: it stands, and the upper set
+// does not fall below it.
+func (s *Species) SeedlingAcclimation() leaf.Acclimation {
+	s.once.Do(s.resolve)
+	return s.juvenile()
+}
+
+func (s *Species) juvenile() leaf.Acclimation {
+	switch a := s.acclimation().(type) {
+	case leaf.PowerLaw:
+		a.Ref = s.young(a.Ref)
+		return a
+	case leaf.TwoSets:
+		young := s.young(a.Sun)
+		rd := math.Max(young.Rd, math.Min(a.Sun.Rd, a.Shade.Rd))
+		a.Sun = leaf.Set{Ag: young.Amax() + rd, Rd: rd, Phi: young.Phi, Theta: young.Theta, LMA: math.Max(young.LMA, math.Min(a.Sun.LMA, a.Shade.LMA))}
+		return a
+	default:
+		return a
+	}
+}
+
+// young is a tree's set on a seedling.
+func (s *Species) young(t leaf.Set) leaf.Set {
+	share := func(n string) float64 {
+		if i, ok := s.at[n]; ok {
+			return s.values[i].Value
+		}
+		return 1
+	}
+	rd := t.Rd * share("juvenile_rd")
+	return leaf.Set{Ag: t.Amax() + rd, Rd: rd, Phi: t.Phi, Theta: t.Theta, LMA: t.LMA * share("juvenile_lma")}
 }
 
 func (s *Species) acclimation() leaf.Acclimation {

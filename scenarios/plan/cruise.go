@@ -137,7 +137,7 @@ const mostBasalArea = 120
 func conifers(classes []inventory.Class) bool {
 	needles := 0.0
 	for _, c := range classes {
-		if c.Species.Group != traits.Broadleaf {
+		if c.Species.Needled() {
 			needles += c.BasalArea()
 		} else {
 			needles -= c.BasalArea()

@@ -187,7 +187,7 @@ func (r *plantReader) leaf(p *ledger.Plant) {
 // taken as half a cylinder: total over projected 1 + pi/2, so half over projected 1.285 (geometry).
 func (r *plantReader) basis(f map[string]val, own bool) float64 {
 	block := r.block.path + ".leaf"
-	needles := r.species != nil && r.species.Group != traits.Broadleaf
+	needles := r.species != nil && r.species.Needled()
 	s, ok := r.choice(f["area_basis"])
 	switch {
 	case !ok && own && needles && !f["area_basis"].present():
@@ -264,7 +264,7 @@ func (r *plantReader) librarySets(ref float64) (rule leaf.Acclimation, sun, shad
 		}
 		return t.At(s, ref)
 	}
-	switch a := r.species.Acclimation().(type) {
+	switch a := r.species.SeedlingAcclimation().(type) {
 	case leaf.TwoSets:
 		a.Sun, a.Shade = at(a.Sun), at(a.Shade)
 		return a, a.Sun, a.Shade

@@ -145,7 +145,7 @@ func (r *reader) leadingConifer(f map[string]val) bool {
 	for _, v := range names {
 		if v.scalar() {
 			if s, err := traits.Find(v.node.Value); err == nil {
-				return s.Group != traits.Broadleaf
+				return s.Needled()
 			}
 		}
 	}

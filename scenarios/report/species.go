@@ -119,7 +119,7 @@ var ppfds = []float64{0, 10, 20, 50, 100, 200, 400, 800, 1600}
 
 // responses draws net assimilation of leaves grown in shade and in sun.
 func responses(p *printer, s *traits.Species) {
-	shade, sun := s.Acclimation().At(5), s.Acclimation().At(100)
+	shade, sun := s.SeedlingAcclimation().At(5), s.SeedlingAcclimation().At(100)
 	most := math.Max(sun.Net(ppfds[len(ppfds)-1]), shade.Net(ppfds[len(ppfds)-1]))
 	p.f("\nNet assimilation at the reference temperature, umol m-2 s-1, of a leaf grown at\n")
 	p.f("%6s  %-31s %s\n", "PPFD", "5 % of full light (shade)", "100 % (sun)")
@@ -130,7 +130,7 @@ func responses(p *printer, s *traits.Species) {
 	for _, I := range ppfds {
 		p.f("%6.0f  %-31s %s\n", I, bar(shade, I), bar(sun, I))
 	}
-	p.f("compensation point %s and %s umol m-2 s-1. %s.\n", sig(shade.CompensationPoint(), 2), sig(sun.CompensationPoint(), 2), s.Acclimation().Rule())
+	p.f("compensation point %s and %s umol m-2 s-1. %s.\n", sig(shade.CompensationPoint(), 2), sig(sun.CompensationPoint(), 2), s.SeedlingAcclimation().Rule())
 }
 
 // writeNamed writes rows under a name, without a plan.
