@@ -66,7 +66,7 @@ func (t TwoSets) At(light float64) Set {
 	return Set{
 		Ag: between(t.Shade.Ag, t.Sun.Ag), Rd: between(t.Shade.Rd, t.Sun.Rd),
 		Phi: between(t.Shade.Phi, t.Sun.Phi), Theta: between(t.Shade.Theta, t.Sun.Theta),
-		LMA: between(t.Shade.LMA, t.Sun.LMA),
+		LMA: between(t.Shade.LMA, t.Sun.LMA), Cap: between(t.Shade.Cap, t.Sun.Cap),
 	}
 }
 
@@ -78,7 +78,7 @@ func (TwoSets) acclimation() {}
 
 // PowerLaw carries one set measured at RefLight to other growth lights: r = (L/L_ref)^B with L and
 // L_ref held at 50 % above it, LMA = LMA_ref r, Amax (net) ~ r^AmaxExponent, Rd ~ r^RdExponent, Phi
-// and Theta unchanged. At the reference light it gives the reference set.
+// and Theta unchanged. At the reference light it gives the reference set. Of a biochemical set both capacities follow r^AmaxExponent.
 type PowerLaw struct {
 	Ref          Set
 	RefLight     float64 // percent of full light
@@ -111,6 +111,10 @@ func (p PowerLaw) At(light float64) Set {
 	r := math.Pow(math.Min(ClampLight(light), levelOff)/math.Min(ClampLight(p.RefLight), levelOff), p.B)
 	amax := p.Ref.Amax() * math.Pow(r, p.AmaxExponent)
 	rd := p.Ref.Rd * math.Pow(r, p.RdExponent)
+	if p.Ref.Cap > 0 {
+		k := math.Pow(r, p.AmaxExponent)
+		return Set{Ag: p.Ref.Ag * k, Cap: p.Ref.Cap * k, Rd: rd, Phi: p.Ref.Phi, Theta: p.Ref.Theta, LMA: p.Ref.LMA * r}
+	}
 	return Set{Ag: amax + rd, Rd: rd, Phi: p.Ref.Phi, Theta: p.Ref.Theta, LMA: p.Ref.LMA * r}
 }
 

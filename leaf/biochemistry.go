@@ -136,7 +136,7 @@ func (b Biochemistry) at(a Air) capacity {
 		J = 2 * x * jmax / (s + math.Sqrt(s*s-4*curvature*x*jmax)) // the smaller root, without loss
 	}
 	return capacity{vcmax: b.Vcmax * b.Heat.vcmax(T), rd: b.Rd * b.Heat.rd(T), electrons: J, gamma: compensation.at(T),
-		rubisco: carboxylation.at(T) * (1 + oxygen/oxygenation.at(T))}
+		rubisco: michaelis(T)}
 }
 
 // gross is the lesser of the rates that Rubisco and electron transport allow.

@@ -15,6 +15,7 @@ type Set struct {
 	Phi   float64 // initial slope, mol CO2 per mol incident PAR
 	Theta float64 // curvature, 0..1
 	LMA   float64 // leaf mass per hemisurface area, g m-2
+	Cap   float64 // rate that Rubisco allows, gross, of a biochemical leaf; 0 is none
 }
 
 // Acclimation gives the trait set of a leaf grown at a light L, percent of full light (leaf-on).
@@ -34,10 +35,21 @@ type Calendar interface {
 }
 
 // Amax is the net light-saturated rate Ag - Rd, umol CO2 m-2 s-1.
-func (s Set) Amax() float64 { return s.Ag - s.Rd }
+func (s Set) Amax() float64 {
+	if s.Cap > 0 {
+		return math.Min(s.Ag, s.Cap) - s.Rd
+	}
+	return s.Ag - s.Rd
+}
 
 // Gross is gross assimilation at incident PPFD, umol CO2 m-2 s-1.
-func (s Set) Gross(ppfd float64) float64 { return Gross(ppfd, s.Ag, s.Phi, s.Theta) }
+func (s Set) Gross(ppfd float64) float64 {
+	P := Gross(ppfd, s.Ag, s.Phi, s.Theta)
+	if s.Cap > 0 {
+		return math.Min(P, s.Cap)
+	}
+	return P
+}
 
 // Net is net assimilation at incident PPFD, umol CO2 m-2 s-1: -Rd in darkness.
 func (s Set) Net(ppfd float64) float64 { return s.Gross(ppfd) - s.Rd }

@@ -61,7 +61,7 @@ func runFitCanopy(o fitOptions) error {
 	if o.file != "" {
 		r, faults := plan.ReadReadings(o.file, p.Site)
 		if len(faults) > 0 {
-			return faultsError{faults}
+			return faultsError{faults: faults}
 		}
 		p.Stand.Readings = r
 	}

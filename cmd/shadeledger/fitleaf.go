@@ -62,7 +62,7 @@ func runFitLeaf(o fitLeafOptions) error {
 	}
 	curves, faults := plan.ReadCurves(o.file, o.columns)
 	if len(faults) > 0 {
-		return faultsError{faults}
+		return faultsError{faults, "the file"}
 	}
 	var out []report.LeafFit
 	for _, c := range curves {
@@ -74,7 +74,7 @@ func runFitLeaf(o fitLeafOptions) error {
 		out = append(out, l)
 	}
 	if len(faults) > 0 {
-		return faultsError{faults}
+		return faultsError{faults, "the file"}
 	}
 	flagged := false
 	for _, l := range out {

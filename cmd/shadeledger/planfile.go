@@ -12,17 +12,23 @@ import (
 // planFile is what a folder's plan is called.
 const planFile = "plan.yaml"
 
-// faultsError is a plan with faults.
-type faultsError struct{ faults []plan.Fault }
+// faultsError is a plan, or another input, with faults.
+type faultsError struct {
+	faults []plan.Fault
+	of     string // "" is the plan
+}
 
 // Error lists the faults, one a line, each with its place and what would be right.
 func (e faultsError) Error() string {
 	var b strings.Builder
-	if len(e.faults) == 1 {
-		b.WriteString("the plan has a fault; nothing was run")
-	} else {
-		b.WriteString("the plan has faults; nothing was run")
+	of, faults := e.of, "faults"
+	if of == "" {
+		of = "the plan"
 	}
+	if len(e.faults) == 1 {
+		faults = "a fault"
+	}
+	b.WriteString(of + " has " + faults + "; nothing was run")
 	for _, f := range e.faults {
 		b.WriteString("\n" + f.Error())
 	}
@@ -45,7 +51,7 @@ func loadPlan(name string, set []string) (*scenarios.Plan, error) {
 		p, faults = plan.Read(name, opts)
 	}
 	if len(faults) > 0 {
-		return nil, usageError{faultsError{faults}}
+		return nil, usageError{faultsError{faults: faults}}
 	}
 	if p == nil {
 		return nil, errors.New("the plan was not read")

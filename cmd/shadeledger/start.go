@@ -53,7 +53,7 @@ func runStart(o startOptions) error {
 		for _, name := range plan.Examples() {
 			p, faults := plan.ReadExample(name, plan.Options{})
 			if len(faults) > 0 {
-				return faultsError{faults}
+				return faultsError{faults: faults}
 			}
 			if _, err := fmt.Fprintf(o.io.out, "%-22s %s\n", name, p.Title); err != nil {
 				return err

@@ -109,7 +109,7 @@ func (s *Species) resolve() {
 }
 
 var ownOrder = []string{"tolerance", "amax", "rd", "phi", "theta", "lma", "t_ref", "shade_amax", "shade_rd",
-	"shade_phi", "shade_theta", "shade_lma", "shade_t_ref", "leaf_lifespan", "lma_exponent"}
+	"shade_phi", "shade_theta", "shade_lma", "shade_t_ref", "leaf_lifespan", "lma_exponent", "vcmax", "jmax", "biochemical_rd"}
 
 // ruled is the first rule of a variable that fits the group and the tolerance class.
 func (s *Species) ruled(name string) (Value, bool) {

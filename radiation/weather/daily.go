@@ -45,6 +45,12 @@ func (r *Daily) Series(site radiation.Site, step time.Duration, par Par) *Series
 		s.Warnings = append(s.Warnings, fmt.Sprintf("%d missing days were bridged", missing))
 	}
 	f.spread(days, par)
+	s.moisten(func(d int) float64 {
+		if row[d] < 0 {
+			return math.NaN()
+		}
+		return r.Rows[row[d]].Humidity
+	})
 	return s
 }
 

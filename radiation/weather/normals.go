@@ -37,6 +37,7 @@ func (n *Normals) Series(site radiation.Site, step time.Duration, par Par) *Seri
 	}
 	f.spread(days, par)
 	f.level(mean)
+	s.moisten(unknown)
 	return s
 }
 

@@ -102,6 +102,7 @@ func (r *Records) Series(site radiation.Site, step time.Duration, par Par) *Seri
 		}
 		f.interval(lit, top/float64(per), v, par)
 	}
+	s.moisten(r.dailyHumidity(sp, len(s.Days)))
 	s.Warnings = append(s.Warnings, r.bridged(sp)...)
 	if MJ := dropped / 1e6 / float64(s.Years); MJ > 0.05 {
 		s.Warnings = append(s.Warnings, fmt.Sprintf("%.1f MJ m-2 a year of light in intervals without sun was dropped; mind the clock and the stamp", MJ))

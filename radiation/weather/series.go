@@ -22,6 +22,7 @@ type Series struct {
 	ParRatio float64  // umol PAR per J of global radiation in force, f_PAR * 4.57
 	// Temperature of the air, deg C, len(Days)*PerDay.
 	Temperature []float64
+	Vapour      []float64 // vapour pressure of the air by day, kPa
 	Lit         Lit
 }
 

@@ -33,6 +33,7 @@ type bins struct {
 type bin struct {
 	weight                              float64 // sum of w f
 	normal, beam, down, level, rule, mu float64 // weighted sums of I_n/f, P0, S/f, I_b/f, rule index, G_s
+	cap                                 float64 // of Cap over Ag, each over its reference
 }
 
 const (
@@ -86,8 +87,9 @@ func (r *Prepared) gather(g *light.Regime, w *scratch) {
 		pattern := int(g.ShapePattern[shape])
 		unit, open := w.diffuse[shape*n:(shape+1)*n], r.open[pattern*n:(pattern+1)*n]
 		f := 1 / s.factor
-		D := lit.Diffuse[i] * f
-		down := g.Scattered[i] * f
+		light := f * s.slope
+		D := lit.Diffuse[i] * light
+		down := g.Scattered[i] * light
 		u := D*unit[n/2] + down*r.crown.uniform[n/2]
 		reach := 0
 		if q := unit[n/2]; q > 0.25*open[n/2] {
@@ -113,7 +115,8 @@ func (r *Prepared) gather(g *light.Regime, w *scratch) {
 		q.normal += wf * s.normal * f
 		q.beam += wf * g.BeamChance[i]
 		q.down += wf * down
-		q.level += wf * lit.Beam[i] * f
+		q.level += wf * lit.Beam[i] * light
+		q.cap += wf * s.cap * f
 		q.rule += wf * float64(s.rule)
 		q.mu += wf * s.mu
 		at := b.depth[int(k-1)*3*n:]
@@ -128,6 +131,7 @@ func (r *Prepared) gather(g *light.Regime, w *scratch) {
 		q := &b.list[k]
 		inv := 1 / q.weight
 		q.normal, q.beam, q.down, q.level, q.rule, q.mu = q.normal*inv, q.beam*inv, q.down*inv, q.level*inv, q.rule*inv, q.mu*inv
+		q.cap *= inv
 		for j := k * 3 * n; j < (k+1)*3*n; j++ {
 			b.depth[j] *= inv
 		}
@@ -150,14 +154,14 @@ func (r *Prepared) binned(w *scratch, set leaf.Set, k float64) float64 {
 		}
 		m.beam = least(1, k*q.beam)
 		m.down = least(k*q.down, q.level*(1-m.beam))
-		s := step{normal: q.normal, mu: q.mu, factor: 1, rule: int32(q.rule + 0.5)}
+		s := step{normal: q.normal, mu: q.mu, factor: 1, cap: q.cap, rule: int32(q.rule + 0.5)}
 		rate := r.rate(&s, &m, &c)
 		sum += q.weight * (rate.shade + rate.fleck)
 	}
 	return sum
 }
 
-// rough is binned with the middle depth standing for the whole crown: it only points the search to a bracket.
+// rough is binned with the middle depth standing for the whole crown and without caps: it only points the search to a bracket.
 func (r *Prepared) rough(w *scratch, set leaf.Set, k float64) float64 {
 	n := len(r.crown.depth)
 	mid := n / 2
@@ -171,7 +175,7 @@ func (r *Prepared) rough(w *scratch, set leaf.Set, k float64) float64 {
 		Id := least(k*at[0], at[1]) + least(k*q.down, q.level*(1-beam))*r.crown.uniform[mid]
 		P := c.gross(Id, c.ag)
 		if beam > 0 && q.normal > 0 {
-			s := step{normal: q.normal, mu: q.mu, factor: 1, rule: int32(q.rule + 0.5)}
+			s := step{normal: q.normal, mu: q.mu, factor: 1, cap: q.cap, rule: int32(q.rule + 0.5)}
 			weight := r.rule(&s, &node)
 			mean := 0.0
 			for i, v := range node {

@@ -9,14 +9,14 @@ import (
 )
 
 // curve is the light response of one trait set, with 4 (1 - theta) and 1/(2 theta) kept.
-type curve struct{ ag, phi, bend, half float64 }
+type curve struct{ ag, phi, bend, half, cap float64 }
 
 // sharp is the curvature above which the hyperbola may be taken from its difference form: the rounding error then stays
 // below 1e-13 of ag, and it needs no division.
 const sharp = 0.05
 
 func newCurve(s leaf.Set) curve {
-	c := curve{ag: s.Ag, phi: s.Phi, bend: 4 * (1 - s.Theta)}
+	c := curve{ag: s.Ag, phi: s.Phi, bend: 4 * (1 - s.Theta), cap: s.Cap}
 	if s.Theta >= sharp {
 		c.half = 1 / (2 * s.Theta)
 	}
@@ -96,6 +96,9 @@ type moment struct {
 // rate is the crown's mean gross income in one step.
 func (r *Prepared) rate(s *step, m *moment, c *curve) (out rates) {
 	var node [canopy.IncidenceNodes]float64
+	if c.cap > 0 {
+		return r.capped(s, m, c)
+	}
 	ag := c.ag * s.factor
 	if m.beam <= 0 || s.normal <= 0 {
 		for j, wj := range r.crown.weight {
@@ -110,6 +113,31 @@ func (r *Prepared) rate(s *step, m *moment, c *curve) (out rates) {
 		mean := weight[0]*c.gross(Id+node[0], ag) + weight[1]*c.gross(Id+node[1], ag) + weight[2]*c.gross(Id+node[2], ag) +
 			weight[3]*c.gross(Id+node[3], ag) + weight[4]*c.gross(Id+node[4], ag)
 		out.shade += wj * P
+		out.fleck += wj * m.beam * m.sunlit[j] * (mean - P)
+	}
+	return out
+}
+
+// capped is rate of a biochemical leaf: no more than Rubisco allows.
+func (r *Prepared) capped(s *step, m *moment, c *curve) (out rates) {
+	var node [canopy.IncidenceNodes]float64
+	ag, most := c.ag*s.factor, c.cap*s.cap
+	lit := m.beam > 0 && s.normal > 0
+	weight := &uniformMu.weight
+	if lit {
+		weight = r.rule(s, &node)
+	}
+	for j, wj := range r.crown.weight {
+		Id := m.sky[j] + m.down*r.crown.uniform[j]
+		P := least(c.gross(Id, ag), most)
+		out.shade += wj * P
+		if !lit {
+			continue
+		}
+		mean := 0.0
+		for i, v := range node {
+			mean += weight[i] * least(c.gross(Id+v, ag), most)
+		}
 		out.fleck += wj * m.beam * m.sunlit[j] * (mean - P)
 	}
 	return out
@@ -135,15 +163,15 @@ func (r *Prepared) each(g *light.Regime, w *scratch, set leaf.Set, k float64, do
 		i := s.lit
 		shape := int(g.Shape[i])
 		pattern := int(g.ShapePattern[shape])
-		D := lit.Diffuse[i]
+		D := lit.Diffuse[i] * s.slope
 		unit, open := w.diffuse[shape*n:(shape+1)*n], r.open[pattern*n:(pattern+1)*n]
 		for j := range m.sky {
 			m.sky[j] = D * least(k*unit[j], open[j])
 		}
-		m.beam, m.down = k*g.BeamChance[i], k*g.Scattered[i]
+		m.beam, m.down = k*g.BeamChance[i], k*g.Scattered[i]*s.slope
 		if k > 1 {
 			m.beam = least(1, m.beam)
-			m.down = least(m.down, lit.Beam[i]*(1-m.beam))
+			m.down = least(m.down, s.slope*lit.Beam[i]*(1-m.beam))
 		}
 		m.sunlit = r.sun[x*n : (x+1)*n]
 		do(s, r.rate(s, &m, &c))

@@ -90,9 +90,14 @@ func plant(chi, crownLAI float64, traits leaf.Acclimation) *Plant {
 	}
 }
 
+// byTemperature is the light response of a set through the year.
+func byTemperature(p *Plant, set leaf.Set, s *weather.Series) func(step int) func(I float64) float64 {
+	return func(step int) func(I float64) float64 { return p.Temperature.At(set, s.Temperature[step]).Gross }
+}
+
 // bruteIncome is a plant's year in neutral or uneven shade by plain sums: own projection, a fine grid over leaf
 // inclination and azimuth, 80 midpoint depths, direct integral over the sky, no rules, tables or bins.
-func bruteIncome(p *Plant, g *light.Regime, set leaf.Set, share, k float64, radiance func(cos float64) float64) (income, fleck float64) {
+func bruteIncome(p *Plant, g *light.Regime, set leaf.Set, share, k float64, radiance func(cos float64) float64, leafAt func(step int) func(I float64) float64) (income, fleck float64) {
 	s := g.Above.Series
 	norm := 1 / (p.Chi + 1.774*math.Pow(p.Chi+1.182, -0.733))
 	G := func(sin, cos float64) float64 {
@@ -121,7 +126,7 @@ func bruteIncome(p *Plant, g *light.Regime, set leaf.Set, share, k float64, radi
 		for i := day.LitFrom; i < day.LitTo; i++ {
 			cosθ := math.Sin(s.Lit.Elevation[i])
 			sinθ := math.Sqrt(1 - cosθ*cosθ)
-			at := p.Temperature.At(set, s.Temperature[s.Lit.Step[i]])
+			gross := leafAt(int(s.Lit.Step[i]))
 			P0 := math.Min(1, k*g.BeamChance[i])
 			down := math.Min(k*g.Scattered[i], s.Lit.Beam[i]*(1-P0))
 			var mu, w []float64
@@ -138,9 +143,9 @@ func bruteIncome(p *Plant, g *light.Regime, set leaf.Set, share, k float64, radi
 			for j := range depths {
 				l := (float64(j) + 0.5) / depths * p.CrownLAI
 				Id := s.Lit.Diffuse[i]*math.Min(1, k*share)*fromSky[j] + down*fromDown[j]
-				P, mean := at.Gross(Id), 0.0
+				P, mean := gross(Id), 0.0
 				for m := range mu {
-					mean += w[m] / total * at.Gross(Id+s.Lit.Beam[i]/cosθ*mu[m])
+					mean += w[m] / total * gross(Id+s.Lit.Beam[i]/cosθ*mu[m])
 				}
 				f := P0 * math.Exp(-G(sinθ, cosθ)*l/cosθ) * (mean - P)
 				c := A * on * s.Seconds * 12.011e-6 * s.Days[d].Weight / depths
@@ -172,7 +177,7 @@ func TestIncomeAgainstPlainSums(t *testing.T) {
 				k.Take(g)
 				var a Account
 				k.Keep(Prepare(p, above), &a)
-				income, fleck := bruteIncome(p, g, p.Traits.At(k.LeafOnPercent()), share, 1, sky.radiance)
+				income, fleck := bruteIncome(p, g, p.Traits.At(k.LeafOnPercent()), share, 1, sky.radiance, byTemperature(p, p.Traits.At(k.LeafOnPercent()), s))
 				e, f := a.Total[Income]/income-1, (a.Total[Sunfleck]-fleck)/income
 				t.Logf("%T share %g chi %g L %g: income %+.4f %%, sunfleck %+.4f %% of income", sky.sky, share, p.Chi, p.CrownLAI, 100*e, 100*f)
 				if math.Abs(e) > 0.005 || math.Abs(a.Total[Sunfleck]/fleck-1) > 0.005 {
@@ -240,7 +245,7 @@ func TestBreakEvenAgainstPlainSums(t *testing.T) {
 				}
 			}
 			set := p.Traits.At(percent)
-			income, _ := bruteIncome(p, g, set, share, low, func(float64) float64 { return 1 / math.Pi })
+			income, _ := bruteIncome(p, g, set, share, low, func(float64) float64 { return 1 / math.Pi }, byTemperature(p, set, s))
 			costs := r.yearCosts(set)
 			return income - costs.Costs()
 		}

@@ -18,7 +18,9 @@ type Plant struct {
 	Leaves      leaf.Calendar
 	Traits      leaf.Acclimation
 	Temperature leaf.Temperature
-	Dormancy    leaf.Dormancy // of evergreens; the zero value is none
+	// Chemistry is set where the trait sets are biochemical: it carries them to the air of the day.
+	Chemistry *Chemistry
+	Dormancy  leaf.Dormancy // of evergreens; the zero value is none
 	// LightRespiration is respiration in the light as a share of that in the dark.
 	LightRespiration float64
 	Ledger           Kind
@@ -28,6 +30,14 @@ type Plant struct {
 	MadeAt   float64
 	Factor   float64            // working threshold over break-even
 	SnowDays func(day int) bool // series days under snow; nil for none
+}
+
+// Chemistry is what a biochemical leaf takes from the air besides light.
+type Chemistry struct {
+	Leaf leaf.Biochemistry // what the trait sets were made from
+	CO2  float64           // of the air, ppm
+	// Acclimates tells whether capacities follow the mean temperature of the month before (Kattge & Knorr 2007).
+	Acclimates bool
 }
 
 // Kind is Acclimated or FirstSeason.

@@ -40,6 +40,8 @@ type step struct {
 	normal float64 // I_n = I_b / sin beta, umol m-2 s-1
 	mu     float64 // mean cosine of incidence, G_s
 	factor float64 // Ag over its reference
+	slope  float64 // Phi over its reference; light is multiplied by it
+	cap    float64 // Cap over its reference
 	weight float64 // mol CO2 in g C per umol m-2 s-1 of rate on full leaf area: s * share * 12.011e-6
 	yearly float64 // day weight / years
 }
@@ -143,6 +145,7 @@ func (r *Prepared) lit() {
 	r.sun = make([]float64, 0, len(s.Lit.Step)*n)
 	var sunlit [maxDepths]float64
 	states := p.Dormancy.States(s.DailyMeans())
+	air := newAir(p, r.above)
 	for d := range s.Days {
 		day := &s.Days[d]
 		share := p.Leaves.Share(day.Month, day.Day)
@@ -160,10 +163,14 @@ func (r *Prepared) lit() {
 			if awake == 0 {
 				continue
 			}
+			to := air.ratios(d, int(s.Lit.Step[i]))
+			if to.Ag == 0 {
+				continue
+			}
 			r.steps = append(r.steps, step{
 				lit: int32(i), day: int32(d), rule: int32(canopy.IncidenceRule(β)),
-				normal: s.Lit.Beam[i] / sinβ, mu: canopy.LeafProjection(p.Chi, sinβ, cosβ),
-				factor: p.Temperature.AgFactor(T),
+				normal: to.Phi * s.Lit.Beam[i] / sinβ, mu: canopy.LeafProjection(p.Chi, sinβ, cosβ),
+				factor: to.Ag, slope: to.Phi, cap: to.Cap,
 				weight: s.Seconds * share * gramsPerMol * 1e-6 * awake,
 				yearly: day.Weight / r.years,
 			})

@@ -42,6 +42,10 @@ func (w *writer) seedlings(p *scenarios.Plan) {
 
 func (w *writer) leaf(s scenarios.Seedling, path string) {
 	w.line(2, "leaf", "")
+	if s.Chemistry != nil {
+		w.biochemistry(s, path)
+		return
+	}
 	switch a := s.Traits.(type) {
 	case leaf.TwoSets:
 		w.set("sun", a.Sun, a.SunLight)
@@ -63,6 +67,25 @@ func (w *writer) leaf(s scenarios.Seedling, path string) {
 	w.line(3, "q10", w.given(path+".leaf.q10", s.Temperature.Q10, number))
 	w.line(3, "light_respiration", w.given(path+".leaf.light_respiration", s.LightRespiration, number))
 	w.line(3, "area_basis", "half")
+}
+
+// biochemistry writes a leaf by its capacities.
+func (w *writer) biochemistry(s scenarios.Seedling, path string) {
+	b := s.Chemistry.Leaf
+	set, light, rule := leaf.Set{}, float64(sunLight), "library"
+	switch a := s.Traits.(type) {
+	case leaf.PowerLaw:
+		set, light = a.Ref, a.RefLight
+	case leaf.Constant:
+		set, rule = a.Set, "none"
+	}
+	capacities := map[bool]string{true: "acclimated", false: "fixed"}[s.Chemistry.Acclimates]
+	w.line(3, "biochemistry", fmt.Sprintf("{vcmax: %s, jmax: %s, rd: %s, g1: %s, lma: %s, growth_light: %s, capacities: %s}",
+		number(b.Vcmax), number(b.Jmax), number(b.Rd), number(b.G1), number(set.LMA), number(light), capacities))
+	w.line(3, "acclimation", rule)
+	w.line(3, "t_opt", w.given(path+".leaf.t_opt", s.Temperature.Opt, func(x float64) string { return number(x) + " C" }))
+	w.line(3, "t_width", w.given(path+".leaf.t_width", s.Temperature.Width, func(x float64) string { return number(x) + " C" }))
+	w.line(3, "light_respiration", w.given(path+".leaf.light_respiration", s.LightRespiration, number))
 }
 
 // set writes one trait set; amax is the net rate that with rd gives the gross rate to the last bit.

@@ -191,6 +191,8 @@ seedlings:
       shade: {amax: 3.07, rd: 0.31, phi: 0.051, theta: 0.77, lma: 33.9, growth_light: 4}
     respiration: {woody: 3.5}
     replacement: {leaf_lifespan: 0.5, fine_root_share: 0.2, fine_root_lifespan: 1.0, construction_cost: 0.60}
+  - {species: Betula alleghaniensis, leaf: {biochemistry: {g1: 3.9}}}
+  - {species: Acer saccharum, leaf: {biochemistry: {vcmax: 37.7, jmax: 66.1, capacities: fixed, growth_light: 33}, acclimation: none}}
 treatments:
   - name: No action
   - {name: Thin, matrix: {lai: 2.7}, understory: {'fern: tall': remove}}

@@ -90,7 +90,7 @@ func build() []Key {
 		{Path: "weather.stamp", Kind: Choice, Words: []string{"start", "middle", "end"}, Default: "start", Example: "end", Meaning: "what a time stamp of an interval means"},
 		{Path: "weather.max_gap", Kind: Quantity, dim: duration, Low: 0, Top: 24 * 31, Range: "0 to 744 h", Default: "0 h", Example: "3 h", Meaning: "longest gap that is bridged"},
 		{Path: "weather.source", Kind: Text, Example: "station records", Meaning: "where the weather comes from"},
-		{Path: "weather.co2", Kind: Quantity, dim: ppm, Low: 150, Top: 2000, Range: "150 to 2000 ppm", Default: "420 ppm", Example: "420 ppm", Meaning: "carbon dioxide; carried for the record"},
+		{Path: "weather.co2", Kind: Quantity, dim: ppm, Low: 150, Top: 2000, Range: "150 to 2000 ppm", Default: "420 ppm", Example: "420 ppm", Meaning: "carbon dioxide of the air, for leaves given by biochemistry"},
 		{Path: "weather.par_fraction", Kind: Number, Low: 0.3, Top: 0.6, Range: "0.3 to 0.6", Default: "0.45", Example: "0.43", Meaning: "share of global energy that is PAR"},
 		{Path: "weather.normals", Kind: Map, Meaning: "monthly normals, January first"},
 		{Path: "weather.normals.temperature_unit", Kind: Choice, Words: []string{"C", "F"}, Example: "C", Meaning: "unit of mean, min and max; required"},

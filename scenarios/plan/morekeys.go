@@ -38,6 +38,7 @@ func seedlingKeys() []Key {
 		{Path: p + ".replacement.construction_cost", Kind: Number, Low: 0, Top: 1, Range: "0 to 1 g C per g", Example: "0.60", Meaning: "carbon spent per new dry mass, its own included"},
 		{Path: p + ".threshold_factor", Kind: Number, Low: 1, Top: 10, Range: "1 to 10, usual 1.5 to 3.5", Default: "2.0", Example: "2.0", Meaning: "working threshold over break-even"},
 	}
+	k = append(k, biochemistryKeys(p)...)
 	for _, m := range []string{"leaf", "stem", "root", "woody"} {
 		k = append(k, Key{Path: p + ".mass." + m, Kind: Quantity, dim: mass, Low: 0, Top: 1e5, Range: "0 to 100 kg", Example: "2.2 g", Meaning: "dry mass"})
 	}

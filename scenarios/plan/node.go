@@ -35,6 +35,7 @@ type reader struct {
 	doubts      []scenarios.Doubt
 	region      *region
 	declination float64
+	co2         float64 // ppm
 	declared    bool
 }
 

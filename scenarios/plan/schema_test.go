@@ -87,7 +87,7 @@ var beyond = strings.Fields(`acclimation-none-of-two alias angle-count-alone bas
 	circle-both circle-feet circle-over-1-km closure-over co2 crown-base-above-height doubt-negative doubt-out-of-order doubt-twice
 	doubt-without-unit earlier-and-dates earlier-of-evergreen elevation ellipse-mixed ellipse-wide grid growth-lights
 	height-feet-as-metres height-in-h hex horizon-high horizon-order keep-and-layers keep-without-trees lai-beside-layers lai-missing
-	latitude-minutes layer-upside-down leaf-dates-order leaf-dates-three longitude-east magnetic-without-declination matrix-both
+	latitude-minutes layer-upside-down leaf-dates-order leaf-dates-three leaf-lifespan-months longitude-east magnetic-without-declination matrix-both
 	matrix-lai-grows max-gap measured-alone month-13 needles-without-basis normals-both normals-impossible normals-no-radiation-unit
 	normals-order normals-rain-unit overflow own-leaf-area-missing own-leaf-mass own-without-leaves own-without-rd own-without-traits
 	polygon-crossing polygon-hole polygon-missing polygon-point readings-dirty seedling-leafless seedling-nameless seedling-names

@@ -180,6 +180,10 @@ func (r *plantReader) leaf(p *ledger.Plant) {
 	} else if !f["light_respiration"].present() && r.species == nil {
 		r.assume(block.path+".light_respiration", "1", "left out: as in the dark")
 	}
+	if f["biochemistry"].present() {
+		r.biochemistry(p, block, f)
+		return
+	}
 	p.Traits = r.acclimation(block, f, r.basis(f, own), p.Temperature)
 }
 

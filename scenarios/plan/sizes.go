@@ -153,6 +153,9 @@ func (r *plantReader) turnover(p *ledger.Plant) {
 			}
 		}
 		x, ok := r.number(f[name])
+		if _, falls := p.Leaves.(leaf.Deciduous); falls && ok && name == "leaf_lifespan" && x > 1 {
+			r.fault(f[name], "", fmt.Sprintf("deciduous leaves live less than a year; were months meant? %g months are %.2f", x, x/12))
+		}
 		return r.take(x, ok, f, block, name, fallback)
 	}
 	p.Turnover = ledger.Turnover{

@@ -13,6 +13,9 @@ import (
 // normalsRadiation brings a radiation unit to MJ m-2 d-1.
 var normalsRadiation = map[string]float64{"MJ m-2 d-1": 1, "kWh m-2 d-1": 3.6, "W m-2": 0.0864}
 
+// usualCO2 is that of the years around 2020, ppm (common practice).
+const usualCO2 = 420
+
 func (r *reader) weather(v val, p *scenarios.Plan) {
 	f := r.fields(v)
 	if v.node == nil {
@@ -21,7 +24,10 @@ func (r *reader) weather(v val, p *scenarios.Plan) {
 	p.Par.Fraction = 0.45
 	x, ok := r.number(f["par_fraction"])
 	p.Par.Fraction = r.or(x, ok, f["par_fraction"], "weather.par_fraction", 0.45, "0.45 of global energy", "common practice; measured years give 0.43 to 0.47")
-	r.quantity(f["co2"])
+	r.co2 = usualCO2
+	if x, ok := r.quantity(f["co2"]); ok {
+		r.co2 = x
+	}
 	r.text(f["source"])
 	r.carry(f["co2"], f["source"])
 	stamps := map[string]weather.Stamp{"start": weather.StampStart, "middle": weather.StampMiddle, "end": weather.StampEnd}
