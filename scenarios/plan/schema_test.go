@@ -83,7 +83,7 @@ func TestSchemaTakesSoundPlans(t *testing.T) {
 
 // beyond are the bad plans whose fault lies between keys, in the size of a quantity, in a date, a name or a file, or in
 // how YAML writes a number (hex, overflow): only the reader sees it.
-var beyond = strings.Fields(`acclimation-none-of-two alias angle-count-alone basal-area-and-species basal-area-beside-layers basal-area-high basal-area-species
+var beyond = strings.Fields(`acclimation-none-of-two alias angle-count-alone basal-area-and-species basal-area-beside-layers basal-area-high basal-area-species biochemistry-beside-sun
 	circle-both circle-feet circle-over-1-km closure-over co2 crown-base-above-height doubt-negative doubt-out-of-order doubt-twice
 	doubt-without-unit earlier-and-dates earlier-of-evergreen elevation ellipse-mixed ellipse-wide grid growth-lights
 	height-feet-as-metres height-in-h hex horizon-high horizon-order keep-and-layers keep-without-trees lai-beside-layers lai-missing
