@@ -128,15 +128,38 @@ type capacity struct {
 
 func (b Biochemistry) at(a Air) capacity {
 	T := a.Temperature
-	jmax := b.Jmax * b.Heat.jmax(T)
-	x := a.PPFD * absorbed * (1 - lost) / 2
-	s := x + jmax
-	J := 0.0
-	if x > 0 {
-		J = 2 * x * jmax / (s + math.Sqrt(s*s-4*curvature*x*jmax)) // the smaller root, without loss
-	}
-	return capacity{vcmax: b.Vcmax * b.Heat.vcmax(T), rd: b.Rd * b.Heat.rd(T), electrons: J, gamma: compensation.at(T),
+	return capacity{vcmax: b.Vcmax * b.Heat.vcmax(T), rd: b.Rd * b.Heat.rd(T), electrons: Electrons(driven(a.PPFD), b.Jmax*b.Heat.jmax(T)), gamma: compensation.at(T),
 		rubisco: michaelis(T)}
+}
+
+// driven is the electron transport that light alone would drive, umol m-2 s-1.
+func driven(ppfd float64) float64 { return ppfd * absorbed * (1 - lost) / 2 }
+
+// Electrons is electron transport, the smaller root of 0.7 J^2 - (x + Jmax) J + x Jmax = 0, of what light drives and the capacity, umol m-2 s-1.
+func Electrons(x, jmax float64) float64 {
+	if x <= 0 {
+		return 0
+	}
+	s := x + jmax
+	return 2 * x * jmax / (s + math.Sqrt(s*s-4*curvature*x*jmax))
+}
+
+// Limit is what CO2 within a leaf, light and temperature allow: gross assimilation is the lesser of Vcmax times Rubisco and of electron transport,
+// from Light and Jmax times its heat factor, times Electrons; net is that less Rd times its heat factor.
+type Limit struct {
+	Rubisco   float64 // per Vcmax at 25 deg C
+	Electrons float64 // per electron
+	Light     float64 // electrons that the light drives, umol m-2 s-1
+	Jmax, Rd  float64 // over those at 25 deg C
+}
+
+// Limits of a reading: ci in ppm, ppfd in umol m-2 s-1, deg C.
+func Limits(ci, ppfd, celsius float64, heat Heat) Limit {
+	gamma := compensation.at(celsius)
+	return Limit{
+		Rubisco:   heat.vcmax(celsius) * (ci - gamma) / (ci + michaelis(celsius)),
+		Electrons: (ci - gamma) / (4 * (ci + 2*gamma)), Light: driven(ppfd), Jmax: heat.jmax(celsius), Rd: heat.rd(celsius),
+	}
 }
 
 // gross is the lesser of the rates that Rubisco and electron transport allow.

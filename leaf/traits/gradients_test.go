@@ -16,8 +16,8 @@ const fullDay = 40
 
 // gradient is what leaves of one tree species at 3 mol m-2 d-1 have over those at 40; NaN where not measured.
 type gradient struct {
-	group          Group
-	lma, rate, own float64
+	group     Group
+	lma, rate float64
 }
 
 // gradients reads canopies of trees, leaving out values marked implausible or not positive.

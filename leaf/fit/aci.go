@@ -1,0 +1,237 @@
+package fit
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"gonum.org/v1/gonum/mat"
+	"gonum.org/v1/gonum/stat/distuv"
+
+	"shadeledger/leaf"
+)
+
+// Gas is one reading of a curve of assimilation over CO2.
+type Gas struct {
+	Ci          float64 // CO2 within the leaf, ppm
+	Net         float64 // net assimilation, umol CO2 m-2 s-1
+	PPFD        float64 // incident, umol m-2 s-1
+	Temperature float64 // of the leaf, deg C
+	Pressure    float64 // of the air, kPa; 0 is 101.325
+}
+
+// Capacities are what a curve over CO2 tells of a leaf (Farquhar, von Caemmerer & Berry 1980), at 25 deg C, umol m-2 s-1, with 95 %
+// intervals. Export is the use of triose phosphates (Sharkey 1985, Bot. Rev. 51:53-105), NaN where the curve does not ask for it by AICc.
+type Capacities struct {
+	Vcmax, Jmax, Rd, Export Estimate
+	RMSE                    float64 // umol m-2 s-1
+	AICc                    float64
+	Points                  int
+	ByRubisco, ByLight      int // points that each limits
+}
+
+// limits are what one reading allows per unit of each capacity.
+type limits struct {
+	net         float64
+	rubisco     float64 // per Vcmax
+	byElectrons float64 // per electron
+	light       float64 // electrons that the light would drive
+	jmax, rd    float64 // heat factors
+	exports     bool    // export is looked for here
+}
+
+// standardPressure, kPa.
+const standardPressure = 101.325
+
+// least of points and CO2 that a curve must have.
+const (
+	leastGas     = 6
+	lowestCO2    = 250 // ppm: a point below tells Vcmax
+	highestCO2   = 450 // a point above tells Jmax
+	leastExports = 500 // ppm, below which export is not looked for
+)
+
+// CO2Curve fits capacities to the readings of one leaf by least squares; heat says how they follow temperature. At least six readings on both
+// sides of the usual CO2 are needed.
+func CO2Curve(readings []Gas, heat leaf.Heat) (Capacities, error) {
+	if err := checkGas(readings); err != nil {
+		return Capacities{}, err
+	}
+	list := make([]limits, len(readings))
+	for i, g := range readings {
+		list[i] = limit(g, heat)
+	}
+	best, err := capacities(list, 3)
+	if err != nil {
+		return best, err
+	}
+	if full, err := capacities(list, 4); err == nil && full.AICc < best.AICc {
+		return full, nil
+	}
+	return best, nil
+}
+
+func checkGas(readings []Gas) error {
+	if len(readings) < leastGas {
+		return fmt.Errorf("%d readings; a curve over CO2 needs at least %d", len(readings), leastGas)
+	}
+	low, high := math.Inf(1), math.Inf(-1)
+	for _, g := range readings {
+		if math.IsNaN(g.Ci + g.Net + g.PPFD + g.Temperature) {
+			return errors.New("a reading without CO2 within the leaf, net assimilation, light or leaf temperature")
+		}
+		low, high = math.Min(low, g.Ci), math.Max(high, g.Ci)
+	}
+	switch {
+	case high < 50:
+		return fmt.Errorf("CO2 within the leaf is %g at most; give it in ppm, not Pa", high)
+	case low > lowestCO2:
+		return fmt.Errorf("CO2 within the leaf is %g ppm or more; without readings below %d Vcmax is not told", low, lowestCO2)
+	case high < highestCO2:
+		return fmt.Errorf("CO2 within the leaf is %g ppm at most; without readings above %d Jmax is not told", high, highestCO2)
+	}
+	return nil
+}
+
+func limit(g Gas, heat leaf.Heat) limits {
+	p := g.Pressure
+	if p == 0 {
+		p = standardPressure
+	}
+	k := leaf.Limits(g.Ci*p/standardPressure, g.PPFD, g.Temperature, heat)
+	return limits{net: g.Net, rubisco: k.Rubisco, byElectrons: k.Electrons, light: k.Light, jmax: k.Jmax, rd: k.Rd, exports: g.Ci >= leastExports}
+}
+
+// gross is what q, Vcmax, Jmax, Rd and export, gives and which of them limits: 0, 1 or 3.
+func (l *limits) gross(q [4]float64, export bool) (rate float64, by int) {
+	rate, by = q[0]*l.rubisco, 0
+	if v := leaf.Electrons(l.light, q[1]*l.jmax) * l.byElectrons; v < rate {
+		rate, by = v, 1
+	}
+	if export && l.exports && 3*q[3] < rate {
+		rate, by = 3*q[3], 3
+	}
+	return rate, by
+}
+
+// slopes are the derivatives of net assimilation.
+func (l *limits) slopes(q [4]float64, export bool) (d [4]float64) {
+	d[2] = -l.rd
+	switch _, by := l.gross(q, export); by {
+	case 0:
+		d[0] = l.rubisco
+	case 1:
+		h := 1e-4 * q[1]
+		d[1] = (leaf.Electrons(l.light, (q[1]+h)*l.jmax) - leaf.Electrons(l.light, (q[1]-h)*l.jmax)) / (2 * h) * l.byElectrons
+	default:
+		d[3] = 3
+	}
+	return d
+}
+
+// squares with their normal equations.
+func gasNormal(list []limits, q [4]float64, export bool) (A [4][4]float64, g [4]float64, rss float64) {
+	for i := range list {
+		l := &list[i]
+		rate, _ := l.gross(q, export)
+		e := l.net - rate + q[2]*l.rd
+		rss += e * e
+		d := l.slopes(q, export)
+		for a := range d {
+			g[a] += d[a] * e
+			for b := range d {
+				A[a][b] += d[a] * d[b]
+			}
+		}
+	}
+	return A, g, rss
+}
+
+// capacities fits the first n of Vcmax, Jmax, Rd, export from several starts, since the point where one limit takes over is not smooth.
+func capacities(list []limits, n int) (Capacities, error) {
+	best, rss := [4]float64{}, math.Inf(1)
+	most := 0.0
+	for _, l := range list {
+		most = math.Max(most, l.net)
+	}
+	for _, v := range []float64{15, 40, 80, 150} {
+		for _, ratio := range []float64{1.3, 1.9, 2.6} {
+			q := [4]float64{v, ratio * v, 0.015 * v, (most + 0.015*v) / 3}
+			if r := descendGas(list, &q, n); r < rss {
+				best, rss = q, r
+			}
+		}
+	}
+	if math.IsNaN(rss) || math.IsInf(rss, 1) {
+		return Capacities{}, errors.New("no capacities fit; are CO2 in ppm and assimilation in umol m-2 s-1?")
+	}
+	return gasResult(list, best, rss, n), nil
+}
+
+func descendGas(list []limits, q *[4]float64, n int) float64 {
+	damping := 1e-2
+	A, g, rss := gasNormal(list, *q, n == 4)
+	for range 150 {
+		moved := 0.0
+		for range 12 {
+			step, ok := solve(A, g, n, damping)
+			next := *q
+			for i := range n {
+				next[i] += step[i]
+			}
+			next[0], next[1] = math.Max(1, math.Min(400, next[0])), math.Max(1, math.Min(800, next[1]))
+			next[2], next[3] = math.Max(-3, math.Min(15, next[2])), math.Max(0.1, next[3])
+			if ok {
+				if A2, g2, r := gasNormal(list, next, n == 4); r < rss {
+					moved = rss - r
+					*q, A, g, rss = next, A2, g2, r
+					damping = math.Max(1e-12, damping/5)
+					break
+				}
+			}
+			damping *= 4
+		}
+		if moved < 1e-13*(rss+1e-12) {
+			break
+		}
+	}
+	return rss
+}
+
+// gasResult puts intervals to capacities as Curve does; one that limits no point is not told.
+func gasResult(list []limits, q [4]float64, rss float64, n int) Capacities {
+	count := float64(len(list))
+	c := Capacities{RMSE: math.Sqrt(rss / count), Points: len(list)}
+	c.AICc = count*math.Log(math.Max(rss, 1e-12)/count) + 2*float64(n+1) + 2*float64(n+1)*float64(n+2)/math.Max(1, count-float64(n)-2)
+	A, _, _ := gasNormal(list, q, n == 4)
+	M := mat.NewDense(n, n, nil)
+	for i := range n {
+		for j := range n {
+			M.Set(i, j, A[i][j])
+		}
+	}
+	freedom := math.Max(1, count-float64(n))
+	t := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: freedom}.Quantile((1 + confidence) / 2)
+	var inv mat.Dense
+	singular := inv.Inverse(M) != nil
+	estimate := func(i int) Estimate {
+		if i >= n || A[i][i] == 0 {
+			return Estimate{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
+		}
+		se := math.NaN()
+		if !singular {
+			se = math.Sqrt(math.Max(0, rss/freedom*inv.At(i, i)))
+		}
+		return Estimate{q[i], se, q[i] - t*se, q[i] + t*se}
+	}
+	c.Vcmax, c.Jmax, c.Rd, c.Export = estimate(0), estimate(1), estimate(2), estimate(3)
+	for i := range list {
+		switch _, by := list[i].gross(q, n == 4); by {
+		case 0:
+			c.ByRubisco++
+		case 1:
+			c.ByLight++
+		}
+	}
+	return c
+}
