@@ -1,7 +1,9 @@
 package main
 
 import (
+	"fmt"
 	"math"
+	"path/filepath"
 	"slices"
 	"strings"
 
@@ -22,13 +24,14 @@ type fitLeafOptions struct {
 func newFitLeaf(io streams) *cobra.Command {
 	var columns []string
 	cmd := &cobra.Command{
-		Use:   "leaf CSV",
-		Short: "Leaf parameters from light-response readings, leaf by leaf",
+		Use:         "leaf CSV",
+		Annotations: map[string]string{draws: ""},
+		Short:       "Leaf parameters from light-response readings, leaf by leaf",
 		Long: `Fits the light response of every leaf in a CSV file by least squares: net light-saturated rate, respiration, initial
 slope, curvature and compensation point, each with its 95 % interval; says by AICc where an exponential or a
 rectangular hyperbola meets the leaf better, and flags what is wrong with a curve: few or no dim points, no plateau,
 drift, closed stomata, photoinhibition, a wrong sign. Then each species' mean with its spread between plants, and a
-block that a plan takes.
+block that a plan takes. --output FILE.svg or FILE.png draws every curve with its readings and the band of its interval.
 
 Columns: ppfd_umol_m2_s, net_umol_m2_s, leaf; where known species, plant, leaf_temp_c, growth_light_pct, gsw_mol_m2_s,
 ci_ppm. Headings of common instruments are known; --column NAME=HEADING names others.`,
@@ -80,7 +83,7 @@ func runFitLeaf(o fitLeafOptions) error {
 	for _, l := range out {
 		flagged = flagged || len(l.Flags) > 0
 	}
-	if err := o.deliver(o.io, nil, func(w report.Output) error { return report.FitLeaf(w, o.file, out) }); err != nil {
+	if err := o.hand(out); err != nil {
 		return err
 	}
 	if o.strict && flagged {
@@ -89,10 +92,40 @@ func runFitLeaf(o fitLeafOptions) error {
 	return nil
 }
 
+// hand delivers the fits as text, or as figures of up to report.MostLeaves leaves, numbered where there are several.
+func (o *fitLeafOptions) hand(out []report.LeafFit) error {
+	if o.format != report.SVG && o.format != report.PNG {
+		return o.deliver(o.io, nil, func(w report.Output) error { return report.FitLeaf(w, o.file, out) })
+	}
+	pages := slices.Collect(slices.Chunk(out, report.MostLeaves))
+	name := o.output
+	place := func(i int) string {
+		if len(pages) == 1 {
+			return name
+		}
+		end := filepath.Ext(name)
+		return fmt.Sprintf("%s-%d%s", strings.TrimSuffix(name, end), i+1, end)
+	}
+	for i := range pages {
+		o.output = place(i)
+		if err := o.checkOutput(); err != nil {
+			return err
+		}
+	}
+	for i, page := range pages {
+		o.output = place(i)
+		if err := o.deliver(o.io, nil, func(w report.Output) error { return report.FitLeafFigure(w, page) }); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
 // fitOf fits one leaf.
 func fitOf(c *plan.LeafCurve) (report.LeafFit, error) {
 	l := report.LeafFit{Species: c.Species, Plant: c.Plant, Leaf: c.Leaf, GrowthLight: c.GrowthLight, Temperature: math.NaN()}
 	points := make([]fit.Point, len(c.Readings))
+	l.Points = points
 	sum, n := 0.0, 0.0
 	for i, r := range c.Readings {
 		points[i] = r.Point

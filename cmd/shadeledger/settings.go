@@ -95,7 +95,23 @@ func readSettings(cmd *cobra.Command) (*settings, error) {
 	if f.Lookup("set") != nil {
 		s.set, _ = f.GetStringArray("set")
 	}
-	return s, nil
+	return s, s.figure(cmd)
+}
+
+// draws marks commands that draw a figure where --output names an SVG or PNG file.
+const draws = "draws"
+
+// figure turns the format to that of a figure by the ending of --output.
+func (s *settings) figure(cmd *cobra.Command) error {
+	kind, picture := map[string]report.Format{".svg": report.SVG, ".png": report.PNG}[strings.ToLower(filepath.Ext(s.output))]
+	if !picture {
+		return nil
+	}
+	if _, ok := cmd.Annotations[draws]; !ok {
+		return usagef("--output %s: this command draws no figure; name a file for text", s.output)
+	}
+	s.format = kind
+	return nil
 }
 
 func newViper(cmd *cobra.Command) (*viper.Viper, error) {

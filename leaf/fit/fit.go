@@ -46,11 +46,26 @@ type Fit struct {
 	RMSE         float64  // umol m-2 s-1
 	AICc         float64
 	Points       int
+
+	covariance [4][4]float64 // of Ag, phi, Rd, theta
+	quantile   float64       // of Student's t
 }
 
 // Net is the fitted net assimilation at a light.
 func (f *Fit) Net(ppfd float64) float64 {
 	return f.Shape.gross(ppfd, [4]float64{f.Ag.Value, f.Phi.Value, f.Rd.Value, f.Theta.Value}) - f.Rd.Value
+}
+
+// Band is half the width of the pointwise 95 % band of the fitted curve at a light, umol m-2 s-1.
+func (f *Fit) Band(ppfd float64) float64 {
+	d := f.Shape.slopes(ppfd, [4]float64{f.Ag.Value, f.Phi.Value, f.Rd.Value, f.Theta.Value})
+	v := 0.0
+	for i := range d {
+		for j := range d {
+			v += d[i] * f.covariance[i][j] * d[j]
+		}
+	}
+	return f.quantile * math.Sqrt(math.Max(0, v))
 }
 
 // gross is the response without respiration; q is Ag, phi, Rd, theta.
@@ -254,6 +269,7 @@ func (s Shape) result(points []Point, q [4]float64, rss float64) Fit {
 	freedom := math.Max(1, n-float64(told))
 	cov := covariance(s, points, q, told, rss/freedom)
 	t := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: freedom}.Quantile((1 + confidence) / 2)
+	f.covariance, f.quantile = cov, t
 	estimate := func(value float64, gradient [4]float64) Estimate {
 		v := 0.0
 		for i := range told {

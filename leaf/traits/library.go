@@ -208,7 +208,7 @@ func load() (*Catalogue, error) {
 }
 
 func (c *Catalogue) takeSpecies(f []string) error {
-	s := &Species{Botanical: f[0], Common: f[1], Group: Group(f[2]), position: f[3], shadePosition: f[4], own: map[string]Value{}, library: c}
+	s := &Species{Botanical: f[0], Common: f[1], Group: Group(f[2]), position: f[3], shadePosition: f[4], Regions: strings.Fields(f[5]), own: map[string]Value{}, library: c}
 	c.species = append(c.species, s)
 	for _, n := range []string{plain(f[0]), plain(f[1])} {
 		if _, twice := c.byName[n]; twice {

@@ -13,6 +13,7 @@ import (
 type Species struct {
 	Botanical, Common string
 	Group             Group
+	Regions           []string // where foresters raise it (common practice): east, west and south of North America, boreal, europe, tropics
 
 	position, shadePosition string // upper, mid or lower crown of the trait sets
 	own                     map[string]Value

@@ -8,6 +8,7 @@ import (
 	"github.com/jedib0t/go-pretty/v6/table"
 
 	"shadeledger/leaf/fit"
+	"shadeledger/scenarios/report/figures"
 )
 
 // LeafFit is the light response of one leaf: the non-rectangular hyperbola, which plans take, and the shape that AICc prefers.
@@ -16,6 +17,7 @@ type LeafFit struct {
 	GrowthLight          float64 // percent of full light; NaN where not known
 	Temperature          float64 // of the leaf, deg C, mean; NaN where not known
 	Fit                  fit.Fit
+	Points               []fit.Point // the readings
 	Best                 fit.Shape
 	Gain                 float64 // AICc of the hyperbola less that of the best shape, 0 where it is best
 	Flags                []string
@@ -48,6 +50,31 @@ var leafFitColumns = func() []column[LeafFit] {
 		words("flags", func(l *LeafFit) string { return strings.Join(l.Flags, "; ") }),
 	)
 }()
+
+// MostLeaves is as many leaves as one figure holds.
+const MostLeaves = figures.MostPanels
+
+// FitLeafFigure draws the fitted curve of every leaf with its readings and the pointwise 95 % band of the fit.
+func FitLeafFigure(o Output, fits []LeafFit) error {
+	f := figures.Figure{X: ppfdAxis + " (bands: 95 % interval of the curve)", Y: netAxis}
+	for i := range fits {
+		l := &fits[i]
+		most := 0.0
+		c := figures.Curve{}
+		for _, p := range l.Points {
+			most = math.Max(most, p.PPFD)
+			c.Readings = append(c.Readings, figures.Point{X: p.PPFD, Y: p.Net})
+		}
+		for k := range 101 {
+			I := most * float64(k) / 100
+			net, half := l.Fit.Net(I), l.Fit.Band(I)
+			c.Line = append(c.Line, figures.Point{X: I, Y: net})
+			c.Low, c.High = append(c.Low, figures.Point{X: I, Y: net - half}), append(c.High, figures.Point{X: I, Y: net + half})
+		}
+		f.Panels = append(f.Panels, figures.Panel{Title: strings.TrimPrefix(l.Species+", "+l.Leaf, ", "), Curves: []figures.Curve{c}})
+	}
+	return figures.Write(o.Out, f, o.kind())
+}
 
 // clearly is how much lower AICc is where one shape is to be told from another (Burnham & Anderson 2002, Model Selection, sec. 2.6).
 const clearly = 2

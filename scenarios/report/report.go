@@ -8,6 +8,7 @@ import (
 	"strings"
 
 	"shadeledger/scenarios"
+	"shadeledger/scenarios/report/figures"
 )
 
 // Format of output.
@@ -18,6 +19,8 @@ const (
 	Table Format = iota
 	CSV
 	JSON
+	SVG // figures, by the name of the file
+	PNG
 )
 
 // ParseFormat reads table, csv or json.
@@ -31,6 +34,14 @@ func ParseFormat(s string) (Format, error) {
 		return JSON, nil
 	}
 	return 0, fmt.Errorf("format %q is not known; it must be table, csv or json", s)
+}
+
+// kind of figure.
+func (o Output) kind() figures.Kind {
+	if o.Format == PNG {
+		return figures.PNG
+	}
+	return figures.SVG
 }
 
 // Output is where text goes and in which form. Notes takes what accompanies CSV rows.

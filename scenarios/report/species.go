@@ -2,14 +2,12 @@ package report
 
 import (
 	"encoding/json"
-	"fmt"
 	"io"
 	"math"
 	"strings"
 
 	"github.com/jedib0t/go-pretty/v6/table"
 
-	"shadeledger/leaf"
 	"shadeledger/leaf/traits"
 )
 
@@ -37,6 +35,7 @@ var speciesColumns = []column[*traits.Species]{
 	words("botanical", func(s **traits.Species) string { return (*s).Botanical }),
 	words("common", func(s **traits.Species) string { return (*s).Common }),
 	words("group", func(s **traits.Species) string { return string((*s).Group) }),
+	words("regions", func(s **traits.Species) string { return strings.Join((*s).Regions, " ") }),
 	figure("tolerance", func(s **traits.Species) float64 { return (*s).Tolerance() }),
 	figure("amax_umol_m2_s", func(s **traits.Species) float64 { return named(*s, "amax").Value }),
 	words("amax_basis", func(s **traits.Species) string { return string(named(*s, "amax").Basis) }),
@@ -114,22 +113,11 @@ func SpeciesPage(o Output, s *traits.Species) error {
 	return p.err
 }
 
-// ppfds are the lights at which a species page shows net assimilation, umol m-2 s-1.
-var ppfds = []float64{0, 10, 20, 50, 100, 200, 400, 800, 1600}
-
-// responses draws net assimilation of leaves grown in shade and in sun.
+// responses draws net assimilation of seedlings' leaves grown in shade and in sun.
 func responses(p *printer, s *traits.Species) {
-	shade, sun := s.SeedlingAcclimation().At(5), s.SeedlingAcclimation().At(100)
-	most := math.Max(sun.Net(ppfds[len(ppfds)-1]), shade.Net(ppfds[len(ppfds)-1]))
-	p.f("\nNet assimilation at the reference temperature, umol m-2 s-1, of a leaf grown at\n")
-	p.f("%6s  %-31s %s\n", "PPFD", "5 % of full light (shade)", "100 % (sun)")
-	bar := func(set leaf.Set, I float64) string {
-		v := set.Net(I)
-		return fmt.Sprintf("%6.2f %s", v, strings.Repeat("#", max(0, int(math.Round(22*v/most)))))
-	}
-	for _, I := range ppfds {
-		p.f("%6.0f  %-31s %s\n", I, bar(shade, I), bar(sun, I))
-	}
+	shade, sun := s.SeedlingAcclimation().At(shadeGrown), s.SeedlingAcclimation().At(sunGrown)
+	p.f("\n")
+	plotResponses(p, grown(s, ""), "oX")
 	p.f("compensation point %s and %s umol m-2 s-1. %s.\n", sig(shade.CompensationPoint(), 2), sig(sun.CompensationPoint(), 2), s.SeedlingAcclimation().Rule())
 }
 
