@@ -9,6 +9,7 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"shadeledger/leaf"
 	"shadeledger/leaf/fit"
 	"shadeledger/scenarios/plan"
 	"shadeledger/scenarios/report"
@@ -18,11 +19,13 @@ type fitLeafOptions struct {
 	*settings
 	io      streams
 	file    string
+	over    string // light or co2
 	columns map[string]string
 }
 
 func newFitLeaf(io streams) *cobra.Command {
 	var columns []string
+	var over string
 	cmd := &cobra.Command{
 		Use:         "leaf CSV",
 		Annotations: map[string]string{draws: ""},
@@ -33,8 +36,11 @@ rectangular hyperbola meets the leaf better, and flags what is wrong with a curv
 drift, closed stomata, photoinhibition, a wrong sign. Then each species' mean with its spread between plants, and a
 block that a plan takes. --output FILE.svg or FILE.png draws every curve with its readings and the band of its interval.
 
+--over co2 fits curves over the CO2 within the leaf instead: Vcmax, Jmax and respiration at 25 C, use of triose phosphates
+where the curve asks for it. It needs ci_ppm and leaf_temp_c.
+
 Columns: ppfd_umol_m2_s, net_umol_m2_s, leaf; where known species, plant, leaf_temp_c, growth_light_pct, gsw_mol_m2_s,
-ci_ppm. Headings of common instruments are known; --column NAME=HEADING names others.`,
+ci_ppm, pressure_kpa. Headings of common instruments are known; --column NAME=HEADING names others.`,
 		Example: "  shadeledger fit leaf curves.csv\n  shadeledger fit leaf licor.csv --column leaf=sample --column net_umol_m2_s=Photo --format csv",
 		Args:    cobra.ExactArgs(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
@@ -42,7 +48,10 @@ ci_ppm. Headings of common instruments are known; --column NAME=HEADING names ot
 			if err != nil {
 				return err
 			}
-			o := fitLeafOptions{settings: s, io: io, file: args[0], columns: map[string]string{}}
+			o := fitLeafOptions{settings: s, io: io, file: args[0], over: over, columns: map[string]string{}}
+			if over != "light" && over != "co2" {
+				return usagef("--over %s: light or co2", over)
+			}
 			for _, c := range columns {
 				name, heading, ok := strings.Cut(c, "=")
 				if !ok || !slices.Contains(plan.CurveColumns(), name) {
@@ -55,6 +64,8 @@ ci_ppm. Headings of common instruments are known; --column NAME=HEADING names ot
 	}
 	addOutputFlags(cmd)
 	cmd.Flags().Bool("strict", false, "exit with 3 where a curve is flagged")
+	cmd.Flags().StringVar(&over, "over", "light", "light: curves over light; co2: curves over the CO2 within the leaf, for capacities")
+	complete(cmd, "over", "light", "co2")
 	cmd.Flags().StringArrayVar(&columns, "column", nil, "NAME=HEADING, the heading of a column in the file; may be given again")
 	return cmd
 }
@@ -66,6 +77,9 @@ func runFitLeaf(o fitLeafOptions) error {
 	curves, faults := plan.ReadCurves(o.file, o.columns)
 	if len(faults) > 0 {
 		return faultsError{faults, "the file"}
+	}
+	if o.over == "co2" {
+		return runFitCO2(o, curves)
 	}
 	var out []report.LeafFit
 	for _, c := range curves {
@@ -147,4 +161,32 @@ func fitOf(c *plan.LeafCurve) (report.LeafFit, error) {
 	l.Best, l.Gain = all[0].Shape, l.Fit.AICc-all[0].AICc
 	l.Flags = fit.Flags(c.Readings, &l.Fit)
 	return l, nil
+}
+
+// runFitCO2 fits capacities to curves over CO2.
+func runFitCO2(o fitLeafOptions, curves []plan.LeafCurve) error {
+	if o.format == report.SVG || o.format == report.PNG {
+		return usagef("--output %s: curves over CO2 have no figure; name a file for text", o.output)
+	}
+	var out []report.CO2Fit
+	var faults []plan.Fault
+	for _, c := range curves {
+		gas := make([]fit.Gas, len(c.Readings))
+		for i, r := range c.Readings {
+			gas[i] = fit.Gas{Ci: r.Ci, Net: r.Net, PPFD: r.PPFD, Temperature: r.Temperature}
+			if !math.IsNaN(r.Pressure) {
+				gas[i].Pressure = r.Pressure
+			}
+		}
+		f, err := fit.CO2Curve(gas, leaf.Bernacchi{})
+		if err != nil {
+			faults = append(faults, plan.Fault{File: o.file, Line: c.Line, Key: "leaf", Value: c.Leaf, Fix: err.Error()})
+			continue
+		}
+		out = append(out, report.CO2Fit{Species: c.Species, Plant: c.Plant, Leaf: c.Leaf, GrowthLight: c.GrowthLight, Fit: f})
+	}
+	if len(faults) > 0 {
+		return faultsError{faults, "the file"}
+	}
+	return o.deliver(o.io, nil, func(w report.Output) error { return report.FitCO2(w, o.file, out) })
 }

@@ -33,7 +33,7 @@ var allowed = map[string][]string{
 	"scenarios/decide":         {"canopy/inventory", "scenarios", "scenarios/ledger"},
 	"scenarios/report/figures": {},
 	"scenarios/report":         {"scenarios/report/figures", "leaf/fit", "canopy/correct", "canopy/inventory", "scenarios/decide", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
-	"cmd/shadeledger":          {"leaf/fit", "canopy/inventory", "scenarios/decide", "leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
+	"cmd/shadeledger":          {"leaf", "leaf/fit", "canopy/inventory", "scenarios/decide", "leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
 }
 
 // theories hold the physics: the standard library and gonum only.

@@ -43,7 +43,7 @@ func TestSimulatedCurves(t *testing.T) {
 		for name, e := range map[string]struct {
 			Estimate
 			truth float64
-		}{"Amax": {f.Amax, set.Amax()}, "Rd": {f.Rd, set.Rd}, "phi": {f.Phi, set.Phi}, "compensation": {f.Compensation, set.CompensationPoint()}} {
+		}{"Amax": {f.Amax, set.Amax()}, "Rd": {f.Rd, set.Rd}, "phi": {f.Phi, set.Phi}, "theta": {f.Theta, set.Theta}, "compensation": {f.Compensation, set.CompensationPoint()}} {
 			if e.Low <= e.truth && e.truth <= e.High {
 				held[name]++
 			}

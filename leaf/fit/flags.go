@@ -13,6 +13,7 @@ type Reading struct {
 	Conductance float64 // stomatal, mol m-2 s-1
 	Ci          float64 // CO2 within the leaf, ppm
 	Temperature float64 // of the leaf, deg C
+	Pressure    float64 // of the air, kPa
 }
 
 // Limits of a sound curve (common practice but for the first two, practice of published data sets: open stomata keep 180 ppm within and 0.05 mol m-2 s-1).
@@ -106,41 +107,45 @@ type Summary struct {
 	Plants, Leaves                     int
 }
 
+// MeanOfPlants is the mean over plants of a value of n leaves, each plant the mean of its leaves; NaN values are left out.
+func MeanOfPlants(n int, plants []string, value func(leaf int) float64) Spread {
+	var order []string
+	sum, count := map[string]float64{}, map[string]float64{}
+	for i := range n {
+		if v := value(i); !math.IsNaN(v) {
+			if count[plants[i]] == 0 {
+				order = append(order, plants[i])
+			}
+			sum[plants[i]] += v
+			count[plants[i]]++
+		}
+	}
+	var means []float64
+	for _, p := range order {
+		means = append(means, sum[p]/count[p])
+	}
+	s := Spread{N: len(means), Mean: math.NaN(), SD: math.NaN()}
+	if len(means) > 0 {
+		s.Mean = stat.Mean(means, nil)
+	}
+	if len(means) > 1 {
+		s.SD = stat.StdDev(means, nil)
+	}
+	return s
+}
+
 // Summarise averages the fits of a species by plant; curvature leaves out shapes without one.
 func Summarise(fits []Fit, plants []string) Summary {
-	var order []string
-	by := map[string][]int{}
-	for i, p := range plants {
-		if by[p] == nil {
-			order = append(order, p)
-		}
-		by[p] = append(by[p], i)
-	}
 	of := func(get func(*Fit) float64) Spread {
-		var means []float64
-		for _, p := range order {
-			sum, n := 0.0, 0.0
-			for _, i := range by[p] {
-				if v := get(&fits[i]); !math.IsNaN(v) {
-					sum, n = sum+v, n+1
-				}
-			}
-			if n > 0 {
-				means = append(means, sum/n)
-			}
-		}
-		s := Spread{N: len(means), Mean: math.NaN(), SD: math.NaN()}
-		if len(means) > 0 {
-			s.Mean = stat.Mean(means, nil)
-		}
-		if len(means) > 1 {
-			s.SD = stat.StdDev(means, nil)
-		}
-		return s
+		return MeanOfPlants(len(fits), plants, func(i int) float64 { return get(&fits[i]) })
+	}
+	distinct := map[string]bool{}
+	for _, p := range plants {
+		distinct[p] = true
 	}
 	return Summary{
 		Amax: of(func(f *Fit) float64 { return f.Amax.Value }), Rd: of(func(f *Fit) float64 { return f.Rd.Value }),
 		Phi: of(func(f *Fit) float64 { return f.Phi.Value }), Theta: of(func(f *Fit) float64 { return f.Theta.Value }),
-		Compensation: of(func(f *Fit) float64 { return f.Compensation.Value }), Plants: len(order), Leaves: len(fits),
+		Compensation: of(func(f *Fit) float64 { return f.Compensation.Value }), Plants: len(distinct), Leaves: len(fits),
 	}
 }

@@ -12,7 +12,7 @@ func sound() []Reading {
 	set := leaf.Set{Ag: 11, Rd: 1, Phi: 0.05, Theta: 0.8, LMA: 60}
 	var out []Reading
 	for _, I := range lights {
-		out = append(out, Reading{Point{I, set.Net(I)}, math.NaN(), math.NaN(), 25})
+		out = append(out, Reading{Point{I, set.Net(I)}, math.NaN(), math.NaN(), 25, math.NaN()})
 	}
 	return out
 }

@@ -35,6 +35,7 @@ var curveColumns = []struct {
 	{"growth_light_pct", nil, false},
 	{"gsw_mol_m2_s", []string{"gsw", "cond"}, false},
 	{"ci_ppm", []string{"ci"}, false},
+	{"pressure_kpa", []string{"patm", "press", "pa"}, false},
 }
 
 // CurveColumns are the names of the columns of a light-curve file.
@@ -163,7 +164,7 @@ func (c *curveReader) number(row []string, line int, name string) float64 {
 
 func (c *curveReader) reading(row []string, line int) (fit.Reading, bool) {
 	r := fit.Reading{Point: fit.Point{PPFD: c.number(row, line, "ppfd_umol_m2_s"), Net: c.number(row, line, "net_umol_m2_s")},
-		Conductance: c.number(row, line, "gsw_mol_m2_s"), Ci: c.number(row, line, "ci_ppm"), Temperature: c.number(row, line, "leaf_temp_c")}
+		Conductance: c.number(row, line, "gsw_mol_m2_s"), Ci: c.number(row, line, "ci_ppm"), Temperature: c.number(row, line, "leaf_temp_c"), Pressure: c.number(row, line, "pressure_kpa")}
 	if math.IsNaN(r.PPFD) || math.IsNaN(r.Net) {
 		return r, false
 	}
