@@ -52,77 +52,99 @@ type Gain struct {
 	Sunlit  float64 // share of the leaf area that sees the sun
 	Of      []float64
 	sunlitA []float64
+	// beyond the beam itself, of what is scattered down from it, by kind
+	scattered []float64
 }
 
 // Take works one slab out, sunlit and shaded leaves apart (Norman 1982; de Pury & Farquhar 1997, Plant Cell Environ. 20:537-557).
 //
-// The sunlit share of a kind's leaf area is Omega times the mean chance that the sun is seen, P0, so that leaves and wood together catch
-// just the beam lost between top and bottom. Sunlit leaves get the beam by their angles, I_n mu, above the light all leaves get; that is what sky
-// light, beam scattered down and beam scattered by the slab's own leaves lose on the way, shared out by math.Sqrt(alpha) Omega G LAI of
-// leaves and Omega G WAI of wood, per leaf area and over alpha, for the response is per incident photon. G of that share is 0.5: at a
-// zenith angle near one radian, about which such light comes, all leaf angles project alike. Gain by kind goes to g.Of, which is made once.
+// The sunlit share of a kind's leaf area is Omega times the mean chance that the sun is seen, P0. Sunlit leaves get the beam by their angles, I_n mu,
+// above the light all leaves get. Of the stream of the beam, T with what is scattered down, wood and each kind take what it loses in the slab by
+// sqrt(alpha) Omega G LAI, G towards the sun, and Omega G WAI; what kinds take of it beyond the beam itself is scattered light. Sky
+// light is shared out alike, with G at the zenith angle from which a beam would lose the share that sky light loses. Light
+// that all leaves get is per leaf area and over alpha, for the response is per incident photon. Gain by kind goes to g.Of.
 func (s *Slab) Take(a *Arriving, g *Gain) {
 	n := len(s.Leaves)
 	if cap(g.Of) < n {
-		g.Of, g.sunlitA = make([]float64, n), make([]float64, n)
+		g.Of, g.sunlitA, g.scattered = make([]float64, n), make([]float64, n), make([]float64, n)
 	}
-	g.Of, g.sunlitA = g.Of[:n], g.sunlitA[:n]
-	lost := s.beam(a, g)
-	pool := a.Sky[0] - a.Sky[1] + lost
-	s.assimilate(a, g, max(0, pool))
+	g.Of, g.sunlitA, g.scattered = g.Of[:n], g.sunlitA[:n], g.scattered[:n]
+	clear(g.Of)
+	clear(g.sunlitA)
+	clear(g.scattered)
+	g.Gross, g.Leaves, g.Wood, g.Sunlit = 0, 0, 0, 0
+	s.beam(a, g)
+	s.assimilate(a, g, max(0, a.Sky[0]-a.Sky[1]))
 }
 
-// beam finds what leaves catch of the beam and gives what is left for the pool of scattered light.
-func (s *Slab) beam(a *Arriving, g *Gain) (scattered float64) {
+// beam shares out what the slab takes of the beam and of what is scattered down from it.
+func (s *Slab) beam(a *Arriving, g *Gain) {
 	cosZ, sinZ := math.Sincos(a.Elevation)
 	weight := WoodProjection * s.Wood
+	stream := weight
 	for i := range s.Leaves {
-		weight += s.Leaves[i].towards(cosZ, sinZ)
+		w := s.Leaves[i].towards(cosZ, sinZ)
+		weight += w
+		stream += s.Leaves[i].sqrtA * w
 	}
-	g.Leaves, g.Wood, g.Sunlit = 0, 0, 0
-	for i := range g.sunlitA {
-		g.sunlitA[i] = 0
-	}
-	if weight <= 0 || a.Path <= 0 {
-		return 0
+	if stream <= 0 || a.Path <= 0 {
+		return
 	}
 	flux := a.Normal / a.Path
-	caught := flux * (a.Chance[0] - a.Chance[1])
-	scattered = flux * (a.Through[0] - a.Through[1])
+	caught := flux * (a.Chance[0] - a.Chance[1]) / weight
+	taken := flux * (a.Through[0] - a.Through[1]) / stream
 	lit := (a.Chance[0] - a.Chance[1]) / (a.Path * weight) // mean chance through the slab
 	for i := range s.Leaves {
 		f := &s.Leaves[i]
-		direct := f.absorptance * caught * f.towards(cosZ, sinZ) / weight
+		w := f.towards(cosZ, sinZ)
+		direct := f.absorptance * caught * w
+		g.scattered[i] = f.sqrtA*taken*w - direct
 		g.Leaves += direct
-		scattered -= direct
 		g.sunlitA[i] = f.LAI * min(1, f.clumping*lit)
 	}
-	g.Wood = caught * WoodProjection * s.Wood / weight
-	return scattered - g.Wood
+	g.Wood = taken * WoodProjection * s.Wood
 }
 
-// assimilate shares the pool of scattered light out and sums what leaves make of their light.
-func (s *Slab) assimilate(a *Arriving, g *Gain, pool float64) {
-	weight, area, lit := s.Wood, 0.0, 0.0
+// skyward is the direction, as cosine and sine of the zenith angle, from which a beam would lose the share that sky light loses in the slab:
+// exp(-(sum of sqrt(alpha) Omega G LAI + Omega G WAI) / cos) = D1/D0. It starts from 60 degrees, that of an even sky above spherical leaves.
+func (s *Slab) skyward(a *Arriving) (cosZ, sinZ float64) {
+	cosZ, sinZ = 0.5, math.Sqrt(0.75)
+	if !(a.Sky[1] > 0 && a.Sky[0] > a.Sky[1]) {
+		return cosZ, sinZ
+	}
+	loss := math.Log(a.Sky[0] / a.Sky[1])
+	for range 3 {
+		depth := WoodProjection * s.Wood
+		for i := range s.Leaves {
+			depth += s.Leaves[i].sqrtA * s.Leaves[i].towards(cosZ, sinZ)
+		}
+		cosZ = max(0.1, min(1, depth/loss))
+		sinZ = math.Sqrt(1 - cosZ*cosZ)
+	}
+	return cosZ, sinZ
+}
+
+// assimilate shares the lost sky light out and sums what leaves make of their light.
+func (s *Slab) assimilate(a *Arriving, g *Gain, lost float64) {
+	cosZ, sinZ := s.skyward(a)
+	weight, area, lit := WoodProjection*s.Wood, 0.0, 0.0
 	for i := range s.Leaves {
 		f := &s.Leaves[i]
-		weight += f.sqrtA * f.clumping * f.LAI
+		weight += f.sqrtA * f.towards(cosZ, sinZ)
 		area += f.LAI
 	}
-	g.Gross = 0
 	if weight <= 0 {
 		return
 	}
-	g.Wood += pool * s.Wood / weight
+	g.Wood += lost * WoodProjection * s.Wood / weight
 	for i := range s.Leaves {
 		f := &s.Leaves[i]
-		g.Of[i] = 0
-		if f.LAI <= 0 {
+		if f.LAI <= 0 || f.absorptance <= 0 {
 			continue
 		}
-		absorbed := pool * f.sqrtA * f.clumping * f.LAI / weight
+		absorbed := g.scattered[i] + lost*f.sqrtA*f.towards(cosZ, sinZ)/weight
 		g.Leaves += absorbed
-		diffuse := absorbed / (f.LAI * f.absorptance)
+		diffuse := max(0, absorbed) / (f.LAI * f.absorptance)
 		shade := f.Response.Gross(diffuse)
 		g.Of[i] = shade * f.LAI
 		if g.sunlitA[i] > 0 && a.Normal > 0 {

@@ -76,12 +76,17 @@ type SkyScan struct {
 	clear   CellLight // sum over directions that meet nothing
 	sky     float64   // integral of P0 cos(theta), leaves at full
 	breaks  []float64
+	ground  bool // Plane is through planes along the ground
 }
 
 // NewSkyScan makes scratch space for scanning a dome in a stand.
 func (s *Stand) NewSkyScan(d *Dome) *SkyScan {
 	return &SkyScan{tracer: s.NewTracer(), dome: d, clear: *NewCellLight(d)}
 }
+
+// AlongGround makes the integrals over planes those through planes along the ground, per level area: directions weigh by how fast they rise over
+// the ground, m cos beta, and not over the level. A layer along a slope takes what such planes lose. The sky view is no longer one.
+func (v *SkyScan) AlongGround() { v.ground = true }
 
 // Scan looks round the sky from a point.
 func (v *SkyScan) Scan(p Point) {
@@ -116,7 +121,11 @@ func (v *SkyScan) azimuth(p Point, φ, width float64, sector int) {
 			θ := θ0 + g[0]*(θ1-θ0)
 			sinθ, cosθ := math.Sincos(θ)
 			solid := g[1] * (θ1 - θ0) * sinθ * width
-			v.direction(p, tilt+cosθ/sinθ, sinθ, cosθ, node{plane: solid * cosθ, solid: solid, cell: cell})
+			m, rise := tilt+cosθ/sinθ, cosθ
+			if v.ground {
+				rise = m * sinθ
+			}
+			v.direction(p, m, sinθ, cosθ, node{plane: solid * rise, solid: solid, cell: cell})
 		}
 	}
 }

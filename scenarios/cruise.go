@@ -70,6 +70,9 @@ func (f Foliage) Layers(trees inventory.Stand) []Layer {
 	for _, l := range trees.Layers() {
 		l.LAI *= f.LeafFactor
 		l.WAI *= f.WoodFactor
+		if f.Clumping > 0 { // wood stands at random whatever the clumping of leaves is said to be
+			l.WAI *= l.Clumping / f.Clumping
+		}
 		for _, set := range []struct{ to, v *float64 }{{&l.Chi, &f.Chi}, {&l.Clumping, &f.Clumping}, {&l.Absorptance, &f.Absorptance}} {
 			if !math.IsNaN(*set.v) {
 				*set.to = *set.v

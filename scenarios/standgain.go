@@ -121,7 +121,7 @@ func (r *runner) lightField(s *scene, n int) *lightField {
 		points[k].Height = float64(k * slabThickness)
 	}
 	lit := &r.above.Series.Lit
-	s.light.Survey(points, r.opts.Workers, func(_, k int, g *light.Regime) {
+	s.light.SurveyAlongGround(points, r.opts.Workers, func(_, k int, g *light.Regime) {
 		f.chance[k] = append([]float64(nil), g.BeamChance...)
 		f.sky[k] = append([]float64(nil), g.SkyPlane...)
 		f.through[k] = make([]float64, len(lit.Step))

@@ -100,10 +100,14 @@ func Pairs(all []Reading, model func(reading int, factor float64) float64) (Resu
 	}
 	r.Factor = r.invert(mean, r.Measured, "readings")
 	relative := make([]float64, len(used))
+	sum, squares := 0.0, 0.0
 	for k, i := range used {
-		relative[k] = all[i].ratio() / model(i, r.Factor)
+		m := model(i, r.Factor)
+		relative[k] = all[i].ratio() / m
+		sum, squares = sum+m, squares+m*m
 	}
-	se := stat.StdDev(relative, nil) / math.Sqrt(n) / stat.Mean(relative, nil)
+	// the mean weighs each reading's relative error by its modelled light
+	se := stat.StdDev(relative, nil) / stat.Mean(relative, nil) * math.Sqrt(squares) / sum
 	for _, i := range used {
 		if all[i].Quantity == Lux {
 			se = math.Hypot(se, luxError)

@@ -60,9 +60,9 @@ const Hemisurface = (1 + math.Pi/2) / 2
 
 // projectedSLA is the projected leaf area of needles per dry mass, m2 kg-1, mean over a whole tree: the mean of what leaf areas
 // over leaf masses of the same trees imply. Single needles: Picea rubens 4.4 (Maguire, Brissette & Gu 1998),
-// Pseudotsuga menziesii 5.6 (Roeh & Maguire 1997) and 4.0 (Monserud & Marshall 1999). Pines: ponderosa 3.1 and monticola 4.7
+// Pseudotsuga menziesii 5.6 (Roeh & Maguire 1997) and 4.0 (Monserud & Marshall 1999). Pines: ponderosa 3.1 and monticola 6.0
 // (Monserud & Marshall 1999), taeda 4.3 (Roberts, Dean & Evans 2003).
-var projectedSLA = map[traits.Group]float64{traits.Needle: 4.7, traits.Pine: 4.0}
+var projectedSLA = map[traits.Group]float64{traits.Needle: 4.7, traits.Pine: 4.5}
 
 // meanLight is the growth light, percent, whose leaf mass per area stands for a whole broadleaf crown. At it the library gives
 // leaf areas within 20 % of those measured by Martin et al. (1998) on six species and by Morisawa & Taira (1957) on beech.

@@ -68,8 +68,8 @@ const Within = 0.75
 // 1971, Agric. Meteorol. 8:25-38). Broadleaves: chosen on the Michigan subplots (Atkins et al. 2021) and light against basal area. Conifers,
 // mostly planted and even in age: from floors of closed spruce and Douglas-fir stands at 3 to 6 % of full light (common practice).
 const (
-	broadleafRegularity = 0.15
-	coniferRegularity   = 0.9
+	broadleafRegularity = 0.48
+	coniferRegularity   = 0.87
 )
 
 // regular says how much more ground crowns cover than at random: exp(-regular S) of it is open, regular = -ln(1-D)/D. Taking trees at
@@ -89,9 +89,10 @@ func regular(s *traits.Species, stay float64) float64 {
 // slants are the zenith angles over which gaps are summed, with the cosine weights of an even sky.
 const slants = 24
 
-// Clumping is Omega between crowns: what makes an endless layer of the same leaf area pass as much of an even sky as ellipsoidal crowns
-// do, with cover c(theta) = 1 - exp(-regular S(theta)) and P = 1 - c + c exp(-tau/c) (Nilson 1971). Fewer crowns leave more gaps, so it
-// falls as a stand is thinned, and never rises. Leaves have their clumping within crowns besides. Wood stands at random.
+// Clumping is Omega between crowns: what makes an endless layer of the same leaf area pass as much of an even sky as ellipsoidal crowns do.
+// Crowns at random pass exp(-sum over trees of number times shadow times what a crown takes of the light in its shadow), exact for a
+// Poisson forest; regular stands take more by the regularity. Fewer crowns leave more gaps, so it falls as a broadleaf stand is thinned,
+// and never rises. Leaves have their clumping within crowns besides. Wood stands at random.
 func (s Stand) Clumping() float64 {
 	if len(s.Trees) == 0 {
 		return 1
@@ -104,17 +105,17 @@ func (s Stand) clump() float64 {
 	light, stay := 0.0, math.Min(1, s.Sums().CrownSum/s.crowns)
 	for i := range tau {
 		sin, cos := math.Sincos((float64(i) + 0.5) / slants * math.Pi / 2)
-		crowns := 0.0
+		taken := 0.0
 		for _, t := range s.Trees {
 			perM2 := t.PerHa / hectare
 			half := (t.Height - t.CrownBase) / 2
-			crowns += regular(t.Species, stay) * perM2 * math.Pi * t.Crown * math.Hypot(t.Crown, half*sin/cos)
-			leaf := canopy.LeafProjection(Chi(t.Species), cos, sin) * t.LeafArea
-			tau[i] += Within * perM2 * leaf / cos
+			shadow := math.Pi * t.Crown * math.Hypot(t.Crown, half*sin/cos)
+			leaf := Within * canopy.LeafProjection(Chi(t.Species), cos, sin) * t.LeafArea / cos
+			taken += regular(t.Species, stay) * perM2 * shadow * caught(leaf/shadow)
+			tau[i] += perM2 * leaf
 		}
-		c := -math.Expm1(-crowns)
 		open[i] = sin * cos
-		light += open[i] * (1 - c + c*math.Exp(-tau[i]/c))
+		light += open[i] * math.Exp(-taken)
 	}
 	low, high := 0.05, 1.0
 	for range 50 {
@@ -130,6 +131,15 @@ func (s Stand) clump() float64 {
 		}
 	}
 	return (low + high) / 2
+}
+
+// caught is the share of light that an ellipsoid of mean depth x takes, over all its chords: 1 - 2 (1 - exp(-k)(1 + k))/k^2, k = 3 x/2 that of its middle.
+func caught(x float64) float64 {
+	k := 1.5 * x
+	if k < 1e-3 {
+		return x
+	}
+	return 1 - 2*(-math.Expm1(-k)-k*math.Exp(-k))/(k*k)
 }
 
 // Layer is a piece of the canopy of one species.

@@ -200,3 +200,54 @@ func TestKeep(t *testing.T) {
 		}
 	}
 }
+
+// What an ellipsoid takes of the light in its shadow against chords at random places of the shadow.
+func TestCrownTakesLightByItsChords(t *testing.T) {
+	for _, x := range []float64{1e-5, 0.1, 1, 4, 12} {
+		const n = 20000
+		passed := 0.0
+		for i := range n { // chord of a unit sphere at distance r: 2 sqrt(1-r^2), mean 4/3; r^2 even over the disc
+			passed += math.Exp(-x*1.5*math.Sqrt(1-(float64(i)+0.5)/n)) / n
+		}
+		if got := caught(x); math.Abs(got-(1-passed)) > 1e-5*got {
+			t.Errorf("depth %g: takes %g, chords %g", x, got, 1-passed)
+		}
+	}
+}
+
+// Crowns at random pass exp(-n A caught) on the mean: shadows of unit area thrown at random, seeded, against it.
+func TestCrownsAtRandomPassAsTheFormulaSays(t *testing.T) {
+	g := rand.New(rand.NewPCG(3, 5))
+	const side, rays = 60.0, 40000
+	radius := 1 / math.Sqrt(math.Pi)
+	for _, c := range []struct{ density, depth float64 }{{0.7, 0.8}, {1.8, 2.5}} {
+		crowns := make([][2]float64, int(c.density*side*side))
+		for i := range crowns {
+			crowns[i] = [2]float64{side * g.Float64(), side * g.Float64()}
+		}
+		cells := map[[2]int][]int{} // crowns by square of one metre
+		for i, q := range crowns {
+			cells[[2]int{int(q[0]), int(q[1])}] = append(cells[[2]int{int(q[0]), int(q[1])}], i)
+		}
+		passed := 0.0
+		for range rays {
+			x, y := 1+(side-2)*g.Float64(), 1+(side-2)*g.Float64()
+			depth := 0.0
+			for dx := -1; dx <= 1; dx++ {
+				for dy := -1; dy <= 1; dy++ {
+					for _, i := range cells[[2]int{int(x) + dx, int(y) + dy}] {
+						if r := math.Hypot(x-crowns[i][0], y-crowns[i][1]) / radius; r < 1 {
+							depth += 1.5 * c.depth * math.Sqrt(1-r*r)
+						}
+					}
+				}
+			}
+			passed += math.Exp(-depth) / rays
+		}
+		want := math.Exp(-c.density * caught(c.depth))
+		t.Logf("%g crowns over each spot, depth %g: %.3f, formula %.3f", c.density, c.depth, passed, want)
+		if math.Abs(passed-want) > 0.01 {
+			t.Errorf("%g crowns over each spot, depth %g: %g passes, the formula says %g", c.density, c.depth, passed, want)
+		}
+	}
+}

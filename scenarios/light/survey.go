@@ -150,10 +150,24 @@ func (s *Scene) anchor(v []float64) int {
 // Survey finds the regime at every point and hands it to visit, which must not keep it. Points are shared out over
 // workers; visit is called once for each point, from one of them, with the worker's number.
 func (s *Scene) Survey(points []canopy.Point, workers int, visit func(worker, point int, r *Regime)) {
+	s.survey(points, workers, s.newObserver, visit)
+}
+
+// SurveyAlongGround is Survey with the sky's light through planes along the ground, per level area, in place of the level plane: what layers along a
+// slope share out. The beam's flux through such planes is its own by m cos beta.
+func (s *Scene) SurveyAlongGround(points []canopy.Point, workers int, visit func(worker, point int, r *Regime)) {
+	s.survey(points, workers, func() *observer {
+		o := s.newObserver()
+		o.scan.AlongGround()
+		return o
+	}, visit)
+}
+
+func (s *Scene) survey(points []canopy.Point, workers int, hire func() *observer, visit func(worker, point int, r *Regime)) {
 	observers := make([]*observer, max(1, workers))
 	Share(len(points), workers, func(worker, i int) {
 		if observers[worker] == nil {
-			observers[worker] = s.newObserver()
+			observers[worker] = hire()
 		}
 		visit(worker, i, observers[worker].observe(points[i]))
 	})
