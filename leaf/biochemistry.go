@@ -145,7 +145,8 @@ func Electrons(x, jmax float64) float64 {
 }
 
 // Limit is what CO2 within a leaf, light and temperature allow: gross assimilation is the lesser of Vcmax times Rubisco and of electron transport,
-// from Light and Jmax times its heat factor, times Electrons; net is that less Rd times its heat factor.
+// from Light and Jmax times its heat factor, times Electrons; below the compensation point, where both are negative, the slower process gives the
+// greater of the two. Net is that less Rd times its heat factor.
 type Limit struct {
 	Rubisco   float64 // per Vcmax at 25 deg C
 	Electrons float64 // per electron

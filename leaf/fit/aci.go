@@ -2,8 +2,8 @@ package fit
 
 import (
 	"errors"
-	"fmt"
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/mat"
 	"gonum.org/v1/gonum/stat/distuv"
@@ -20,8 +20,10 @@ type Gas struct {
 	Pressure    float64 // of the air, kPa; 0 is 101.325
 }
 
-// Capacities are what a curve over CO2 tells of a leaf (Farquhar, von Caemmerer & Berry 1980), at 25 deg C, umol m-2 s-1, with 95 %
-// intervals. Export is the use of triose phosphates (Sharkey 1985, Bot. Rev. 51:53-105), NaN where the curve does not ask for it by AICc.
+// Capacities are what a curve over CO2 tells of a leaf (Farquhar, von Caemmerer & Berry 1980, Planta 149:78-90), umol m-2 s-1, with 95 %
+// intervals: net A = (1 - Gamma*/Ci) min(Wc, Wj), at most 3 Export, less Rd. Vcmax, Jmax and Rd are at 25 deg C. Export, the use of triose
+// phosphates (Sharkey 1985, Bot. Rev. 51:53-105), is at the leaf's temperature, NaN where the curve does not ask for it by AICc.
+// A capacity that limits no reading is NaN.
 type Capacities struct {
 	Vcmax, Jmax, Rd, Export Estimate
 	RMSE                    float64 // umol m-2 s-1
@@ -40,20 +42,12 @@ type limits struct {
 	exports     bool    // export is looked for here
 }
 
-// standardPressure, kPa.
-const standardPressure = 101.325
-
-// least of points and CO2 that a curve must have.
-const (
-	leastGas     = 6
-	lowestCO2    = 250 // ppm: a point below tells Vcmax
-	highestCO2   = 450 // a point above tells Jmax
-	leastExports = 500 // ppm, below which export is not looked for
-)
-
 // CO2Curve fits capacities to the readings of one leaf by least squares; heat says how they follow temperature. At least six readings on both
 // sides of the usual CO2 are needed.
 func CO2Curve(readings []Gas, heat leaf.Heat) (Capacities, error) {
+	if heat == nil {
+		return Capacities{}, errors.New("no temperature response: give leaf.Bernacchi, or leaf.Acclimated to a growth temperature")
+	}
 	if err := checkGas(readings); err != nil {
 		return Capacities{}, err
 	}
@@ -65,47 +59,23 @@ func CO2Curve(readings []Gas, heat leaf.Heat) (Capacities, error) {
 	if err != nil {
 		return best, err
 	}
-	if full, err := capacities(list, 4); err == nil && full.AICc < best.AICc {
+	// AICc of four capacities and a variance takes seven readings
+	if full, err := capacities(list, 4); len(list) > leastGas && err == nil && full.AICc < best.AICc {
 		return full, nil
 	}
 	return best, nil
 }
 
-func checkGas(readings []Gas) error {
-	if len(readings) < leastGas {
-		return fmt.Errorf("%d readings; a curve over CO2 needs at least %d", len(readings), leastGas)
-	}
-	low, high := math.Inf(1), math.Inf(-1)
-	for _, g := range readings {
-		if math.IsNaN(g.Ci + g.Net + g.PPFD + g.Temperature) {
-			return errors.New("a reading without CO2 within the leaf, net assimilation, light or leaf temperature")
-		}
-		low, high = math.Min(low, g.Ci), math.Max(high, g.Ci)
-	}
-	switch {
-	case high < 50:
-		return fmt.Errorf("CO2 within the leaf is %g at most; give it in ppm, not Pa", high)
-	case low > lowestCO2:
-		return fmt.Errorf("CO2 within the leaf is %g ppm or more; without readings below %d Vcmax is not told", low, lowestCO2)
-	case high < highestCO2:
-		return fmt.Errorf("CO2 within the leaf is %g ppm at most; without readings above %d Jmax is not told", high, highestCO2)
-	}
-	return nil
-}
-
 func limit(g Gas, heat leaf.Heat) limits {
-	p := g.Pressure
-	if p == 0 {
-		p = standardPressure
-	}
-	k := leaf.Limits(g.Ci*p/standardPressure, g.PPFD, g.Temperature, heat)
+	k := leaf.Limits(g.Ci*pressure(g)/standardPressure, g.PPFD, g.Temperature, heat)
 	return limits{net: g.Net, rubisco: k.Rubisco, byElectrons: k.Electrons, light: k.Light, jmax: k.Jmax, rd: k.Rd, exports: g.Ci >= leastExports}
 }
 
-// gross is what q, Vcmax, Jmax, Rd and export, gives and which of them limits: 0, 1 or 3.
+// gross is what q, Vcmax, Jmax, Rd and export, gives and which of them limits: 0, 1 or 3. The slower carboxylation limits; below the
+// compensation point, where rates are negative, that is the greater rate.
 func (l *limits) gross(q [4]float64, export bool) (rate float64, by int) {
 	rate, by = q[0]*l.rubisco, 0
-	if v := leaf.Electrons(l.light, q[1]*l.jmax) * l.byElectrons; v < rate {
+	if v := leaf.Electrons(l.light, q[1]*l.jmax) * l.byElectrons; v < rate != (l.rubisco < 0) {
 		rate, by = v, 1
 	}
 	if export && l.exports && 3*q[3] < rate {
@@ -204,23 +174,30 @@ func gasResult(list []limits, q [4]float64, rss float64, n int) Capacities {
 	c := Capacities{RMSE: math.Sqrt(rss / count), Points: len(list)}
 	c.AICc = count*math.Log(math.Max(rss, 1e-12)/count) + 2*float64(n+1) + 2*float64(n+1)*float64(n+2)/math.Max(1, count-float64(n)-2)
 	A, _, _ := gasNormal(list, q, n == 4)
-	M := mat.NewDense(n, n, nil)
+	var told []int // a capacity that limits nothing would leave no interval to the others
 	for i := range n {
-		for j := range n {
-			M.Set(i, j, A[i][j])
+		if A[i][i] > 0 {
+			told = append(told, i)
 		}
 	}
-	freedom := math.Max(1, count-float64(n))
+	M := mat.NewDense(len(told), len(told), nil) // Rd always is
+	for i, a := range told {
+		for j, b := range told {
+			M.Set(i, j, A[a][b])
+		}
+	}
+	freedom := math.Max(1, count-float64(len(told)))
 	t := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: freedom}.Quantile((1 + confidence) / 2)
 	var inv mat.Dense
 	singular := inv.Inverse(M) != nil
 	estimate := func(i int) Estimate {
-		if i >= n || A[i][i] == 0 {
+		at := slices.Index(told, i)
+		if at < 0 {
 			return Estimate{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
 		}
 		se := math.NaN()
 		if !singular {
-			se = math.Sqrt(math.Max(0, rss/freedom*inv.At(i, i)))
+			se = math.Sqrt(math.Max(0, rss/freedom*inv.At(at, at)))
 		}
 		return Estimate{q[i], se, q[i] - t*se, q[i] + t*se}
 	}
