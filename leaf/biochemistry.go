@@ -163,11 +163,9 @@ func Limits(ci, ppfd, celsius float64, heat Heat) Limit {
 	}
 }
 
-// gross is the lesser of the rates that Rubisco and electron transport allow.
+// gross is carboxylation, the slower of what Rubisco and electron transport drive, less photorespiration; below gamma it is negative.
 func (c capacity) gross(ci float64) float64 {
-	byRubisco := c.vcmax * (ci - c.gamma) / (ci + c.rubisco)
-	byLight := c.electrons / 4 * (ci - c.gamma) / (ci + 2*c.gamma)
-	return math.Min(byRubisco, byLight)
+	return math.Min(c.vcmax/(ci+c.rubisco), c.electrons/4/(ci+2*c.gamma)) * (ci - c.gamma)
 }
 
 // Assimilate solves assimilation and stomata together: A = min(Ac, Aj) - Rd, gs = g0 + 1.6 (1 + g1/sqrt(D)) A / Ca and A = gs/1.6 (Ca - Ci). Without g0

@@ -51,7 +51,7 @@ func FitCO2(o Output, name string, fits []CO2Fit) error {
 		return writeNamed(o.Out, name, rows)
 	}
 	p := &printer{w: o.Out}
-	p.f("Curves over CO2 of %s: %d leaves, capacities at 25 C, umol m-2 s-1, 95 %% intervals.\n", name, len(fits))
+	p.f("Curves over CO2 of %s: %d leaves, capacities at 25 C (export at leaf temperature), umol m-2 s-1, 95 %% intervals.\n", name, len(fits))
 	t := newTable("species", "leaf", "n", "Vcmax", "Jmax", "Rd", "export", "RMSE")
 	for i := range fits {
 		l := &fits[i]
