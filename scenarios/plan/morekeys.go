@@ -1,5 +1,7 @@
 package plan
 
+import "shadeledger/leaf/traits"
+
 func seedlingKeys() []Key {
 	const p = "seedlings[]"
 	k := []Key{
@@ -9,6 +11,7 @@ func seedlingKeys() []Key {
 		{Path: p + ".name", Kind: Text, Default: "the species", Example: "Red oak 2-0", Meaning: "unique name in tables"},
 		{Path: p + ".height", Kind: Quantity, dim: length, Low: 0, Top: 10, Range: "0 to 10 m", Example: "0.5 m", Meaning: "height of the crown above the ground"},
 		{Path: p + ".leaf_area", Kind: Quantity, dim: area, Low: 1e-5, Top: 20, Range: "0.1 cm2 to 20 m2", Example: "550 cm2", Meaning: "leaf area, half of total surface, as measured"},
+		{Path: p + ".stock", Kind: Choice, Words: traits.StockNames(), Default: "the library's common plant", Example: "2-0", Meaning: "kind of planting stock: its usual height and masses where the plan gives none"},
 		{Path: p + ".crown_lai", Kind: Number, Low: 0.05, Top: 10, Range: "0.05 to 10", Example: "0.8", Meaning: "leaf area over crown projection"},
 		{Path: p + ".chi", Kind: Number, Low: 0.1, Top: 10, Range: "0.1 to 10", Example: "2.5", Meaning: "leaf angle parameter of the crown"},
 		{Path: p + ".absorptance", Kind: Number, Low: 0.5, Top: 1, Range: "0.5 to 1", Default: "0.85", Example: "0.85", Meaning: "leaf absorptance"},

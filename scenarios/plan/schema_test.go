@@ -92,7 +92,7 @@ var beyond = strings.Fields(`acclimation-none-of-two alias angle-count-alone bas
 	normals-order normals-rain-unit overflow own-leaf-area-missing own-leaf-mass own-without-leaves own-without-rd own-without-traits
 	polygon-crossing polygon-hole polygon-missing polygon-point readings-dirty seedling-leafless seedling-nameless seedling-names
 	seedling-tall seedling-unknown slope-400 slope-negative slope-without-aspect smaller-than-crowns snow-deep species-unknown
-	stand-table-dirty stand-table-missing station-names station-no-bearing step-long step-odd steps-order t-ref-of-library
+	stand-table-dirty stand-table-missing station-names station-no-bearing step-long step-odd steps-order stock-without-species t-ref-of-library
 	thin-and-matrix thin-grows thin-species thin-without-trees thirty-february treatment-names two-weathers understory-names
 	understory-stems understory-stranger understory-upside-down weather-folder weather-no-file weather-none woody-and-stem-rate
 	woody-and-stem`)

@@ -78,7 +78,7 @@ func (r *reader) seedling(item val) scenarios.Seedling {
 	if q.f["species"].present() {
 		if q.species = r.find(q.f["species"]); q.species != nil {
 			s.Botanical, s.Name = q.species.Botanical, q.species.Botanical
-			q.base = q.species.Plant()
+			q.base = q.stock()
 		} else if sp := q.f["species"]; sp.scalar() {
 			s.Name = sp.node.Value
 			return s // the rest would only repeat the fault
@@ -96,11 +96,29 @@ func (r *reader) seedling(item val) scenarios.Seedling {
 		}
 		return s
 	}
+	if q.species == nil && q.f["stock"].present() {
+		r.fault(q.f["stock"], "", "sizes of stock are of the library's species; give species too, or the sizes themselves")
+	}
 	q.plant(&s.Plant)
 	if len(q.from) > 0 {
 		r.assume(item.path, strings.Join(q.from, ", ")+" of "+s.Botanical, "species library: shadeledger species "+s.Botanical)
 	}
 	return s
+}
+
+// stock is the library's plant, of the kind of stock that the plan names.
+func (r *plantReader) stock() traits.Plant {
+	kind, given := r.choice(r.f["stock"])
+	if !given {
+		return r.species.Plant()
+	}
+	p, err := r.species.PlantOf(kind)
+	if err != nil {
+		r.fault(r.f["stock"], "", err.Error())
+		return r.species.Plant()
+	}
+	r.from = append(r.from, "height and masses of stock "+kind+" where not given")
+	return p
 }
 
 func (r *plantReader) plant(p *ledger.Plant) {

@@ -8,6 +8,7 @@ import (
 	"github.com/jedib0t/go-pretty/v6/table"
 
 	"shadeledger/leaf/fit"
+	"shadeledger/leaf/traits"
 	"shadeledger/scenarios/report/figures"
 )
 
@@ -180,6 +181,9 @@ func summaries(p *printer, fits []LeafFit) {
 		}
 		p.f("  For a plan, under seedlings (give lma too where you know it; growth_light is %s):\n    leaf:\n      sun: {amax: %s, rd: %s, phi: %s, theta: %s, growth_light: %s}\n      t_ref: %s C\n",
 			map[bool]string{true: "the leaves' own", false: "supposed"}[n > 0], text0(s.Amax.Mean, 2), text0(s.Rd.Mean, 2), text0(s.Phi.Mean, 4), text0(s.Theta.Mean, 2), growth, at)
+		if sp, err := traits.Find(name); err == nil && sp.Needled() {
+			p.f("      area_basis: projected   # or half, or all: say which area of the needles the rates are per\n")
+		}
 	}
 }
 

@@ -109,8 +109,21 @@ func SpeciesPage(o Output, s *traits.Species) error {
 	if p.err == nil {
 		p.err = render(o.Out, t, 2, 3, 4)
 	}
+	stock(p, o, s)
 	responses(p, s)
 	return p.err
+}
+
+// stock prints the sizes of planting stock.
+func stock(p *printer, o Output, s *traits.Species) {
+	p.f("\nPlanting stock (nursery practice, from memory; for a plan: stock: 2-0)\n")
+	t := newTable("stock", "height m", "dry mass g", "")
+	for _, k := range s.Stocks() {
+		t.AppendRow(table.Row{k.Name, spanned(k.Height), spanned(k.Mass), k.Meaning})
+	}
+	if p.err == nil {
+		p.err = render(o.Out, t, 2, 3)
+	}
 }
 
 // responses draws net assimilation of seedlings' leaves grown in shade and in sun.
