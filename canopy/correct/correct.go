@@ -108,24 +108,35 @@ func Pairs(all []Reading, model func(reading int, factor float64) float64) (Resu
 	}
 	// the mean weighs each reading's relative error by its modelled light
 	se := stat.StdDev(relative, nil) / stat.Mean(relative, nil) * math.Sqrt(squares) / sum
+	half := student(n-1) * se
 	for _, i := range used {
 		if all[i].Quantity == Lux {
-			se = math.Hypot(se, luxError)
+			half = math.Hypot(half, normal*luxError)
 			r.warn("pairs in lux are of screening grade: leaves change the spectrum; the interval is widened")
 			break
 		}
 	}
-	r.between(mean, se, n-1)
+	r.between(mean, half)
 	r.residuals(all, used, model)
 	r.Before, r.After = mean(1), mean(r.Factor)
 	return r, nil
 }
 
-// between sets the interval of the factor from the relative standard error of the mean light.
-func (r *Result) between(mean func(float64) float64, se, freedom float64) {
-	t := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: freedom}.Quantile((1 + confidence) / 2)
-	r.Low = r.invert(mean, math.Min(1, r.Measured*math.Exp(t*se)), "")
-	r.High = r.invert(mean, r.Measured*math.Exp(-t*se), "")
+// student is the quantile of the interval for a mean of few readings.
+func student(freedom float64) float64 {
+	return distuv.StudentsT{Mu: 0, Sigma: 1, Nu: freedom}.Quantile((1 + confidence) / 2)
+}
+
+// normal is the quantile for an error that all readings share and whose size is known.
+var normal = distuv.UnitNormal.Quantile((1 + confidence) / 2)
+
+// between sets the interval of the factor from half the interval of the logarithm of the mean light. An end that the search is held at is told.
+func (r *Result) between(mean func(float64) float64, half float64) {
+	r.Low = r.invert(mean, math.Min(1, r.Measured*math.Exp(half)), "")
+	r.High = r.invert(mean, r.Measured*math.Exp(-half), "")
+	if r.Low <= lowest || r.High >= highest {
+		r.warn(fmt.Sprintf("the readings leave the leaf area open at an end: the interval is cut at %g and %g times the plan's", lowest, highest))
+	}
 }
 
 // sort lists the pairs that count and warns of those that do not and of doubtful ones.
@@ -228,7 +239,7 @@ func Openness(values []float64, model func(factor float64) float64) (Result, err
 	r.Measured = stat.Mean(values, nil)
 	r.Factor = r.invert(model, r.Measured, "values")
 	n := float64(len(values))
-	r.between(model, math.Hypot(stat.StdDev(values, nil)/math.Sqrt(n)/r.Measured, observerError/r.Measured), n-1)
+	r.between(model, math.Hypot(student(n-1)*stat.StdDev(values, nil)/math.Sqrt(n), normal*observerError)/r.Measured)
 	r.Before, r.After = model(1), model(r.Factor)
 	r.RMSEBefore, r.RMSE = math.Abs(r.Before-r.Measured), math.Abs(r.After-r.Measured)
 	r.warn("closure is read from a point and is not cover; observers differ by 5 to 10 points, which the interval holds")

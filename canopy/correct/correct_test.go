@@ -154,3 +154,27 @@ func TestOpenness(t *testing.T) {
 		t.Error("94 taken as a share")
 	}
 }
+
+// Readings that leave an end of the interval open say so; five readings alike do not.
+func TestOpenEndIsTold(t *testing.T) {
+	beer := func(_ int, factor float64) float64 { return math.Exp(-2 * factor) }
+	told := func(below ...float64) bool {
+		var all []Reading
+		for _, b := range below {
+			all = append(all, Reading{Below: b, Above: 1000, Sky: Overcast, Quantity: PPFD})
+		}
+		r, err := Pairs(all, beer)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, w := range r.Warnings {
+			if strings.Contains(w, "open at an end") {
+				return true
+			}
+		}
+		return false
+	}
+	if !told(50, 500) || told(130, 135, 140, 128, 133) {
+		t.Errorf("two far pairs: %v, five alike: %v", told(50, 500), told(130, 135, 140, 128, 133))
+	}
+}
