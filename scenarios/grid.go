@@ -17,23 +17,24 @@ type Grid struct {
 	Workers       int
 }
 
-// Spot is one spot of a map for one seedling.
+// Spot is one spot of a map for one seedling. BreakEven and Class are there where break-evens were asked for.
 type Spot struct {
 	X, Y               float64 // m
 	Light, LightLeafOn float64 // percent of full light
 	Net                float64 // g C in a mean year
 	Ratio              float64
+	BreakEven          ledger.BreakEven
+	Class              ledger.Class
 }
 
 // mapDays is how many weighted days stand for a month in maps from normals.
 const mapDays = 4
 
-// RunGrid maps a treatment: Spots[seedling][row*Columns+column]. Normals are brought to a few weighted days a month;
-// break-even is not sought.
-func RunGrid(p *Plan, q Grid) ([][]Spot, error) {
-	if q.Treatment < 0 || q.Treatment >= len(p.Treatments) || q.Columns < 1 || q.Rows < 1 || !(q.Step > 0) {
-		return nil, fmt.Errorf("a map needs a treatment of the plan, at least one row and column and a step above 0 m")
-	}
+// Mapper maps treatments of one plan, its weather and plants worked out once. Normals are brought to a few weighted days a month.
+type Mapper struct{ runner }
+
+// NewMapper readies a plan, its leaf area corrected by readings.
+func NewMapper(p *Plan, workers int) (*Mapper, error) {
 	p, _, err := Corrected(p)
 	if err != nil {
 		return nil, err
@@ -46,52 +47,74 @@ func RunGrid(p *Plan, q Grid) ([][]Spot, error) {
 	}
 	series := source.Series(p.Site, p.Sampling.Step, p.Par)
 	above := light.NewAbove(series, p.Sampling.Sky, light.Map)
-	r := &runner{plan: p, above: above, season: Mask(series, p.Season), opts: Options{Workers: max(1, q.Workers), Depth: Ledgers}}
-	r.heights, r.heightOf = heights(p, Ledgers)
-	r.prepared = prepare(p, above)
-	s, err := newScene(p, &p.Treatments[q.Treatment], above)
+	m := &Mapper{runner{plan: p, above: above, season: Mask(series, p.Season), opts: Options{Workers: max(1, workers), Depth: Ledgers}}}
+	m.heights, m.heightOf = heights(p, Ledgers)
+	m.prepared = prepare(p, above)
+	return m, nil
+}
+
+// Plan is the plan with its leaf area corrected.
+func (m *Mapper) Plan() *Plan { return m.plan }
+
+// Map gives Spots[seedling][spot] of a treatment at spots in m east and north of its centre; with depth BreakEvens their break-even and class too.
+func (m *Mapper) Map(t *Treatment, spots [][2]float64, depth Depth) ([][]Spot, error) {
+	s, err := newScene(m.plan, t, m.above)
 	if err != nil {
 		return nil, err
 	}
-	points := q.points(r.heights)
-	out := make([][]Spot, len(p.Seedlings))
-	for i := range out {
-		out[i] = make([]Spot, q.Columns*q.Rows)
+	points := make([]canopy.Point, 0, len(spots)*len(m.heights))
+	for _, q := range spots {
+		for _, h := range m.heights {
+			points = append(points, canopy.Point{X: q[0], Y: q[1], Height: h})
+		}
 	}
-	keepers := make([]*ledger.Keeper, r.opts.Workers)
-	accounts := make([]ledger.Account, r.opts.Workers)
-	s.light.Survey(points, r.opts.Workers, func(worker, point int, g *light.Regime) {
+	out := make([][]Spot, len(m.plan.Seedlings))
+	for i := range out {
+		out[i] = make([]Spot, len(spots))
+	}
+	keepers := make([]*ledger.Keeper, m.opts.Workers)
+	accounts := make([]ledger.Account, m.opts.Workers)
+	s.light.Survey(points, m.opts.Workers, func(worker, point int, g *light.Regime) {
 		if keepers[worker] == nil {
-			keepers[worker] = ledger.NewKeeper(r.season, s.leafOn)
+			keepers[worker] = ledger.NewKeeper(m.season, s.leafOn)
 		}
 		k := keepers[worker]
 		k.Take(g)
-		sums, _ := g.Over(r.season)
-		for i := range p.Seedlings {
-			if r.heightOf[i] != point%len(r.heights) {
+		sums, _ := g.Over(m.season)
+		for i := range m.plan.Seedlings {
+			if m.heightOf[i] != point%len(m.heights) {
 				continue
 			}
 			a := &accounts[worker]
-			k.Keep(r.prepared[i], a)
-			out[i][point/len(r.heights)] = Spot{X: points[point].X, Y: points[point].Y, Light: sums.Percent(),
-				LightLeafOn: k.LeafOnPercent(), Net: a.Total.Net(), Ratio: a.Total.Ratio()}
+			k.Keep(m.prepared[i], a)
+			x := Spot{X: points[point].X, Y: points[point].Y, Light: sums.Percent(), LightLeafOn: k.LeafOnPercent(), Net: a.Total.Net(), Ratio: a.Total.Ratio()}
+			if depth == BreakEvens {
+				x.BreakEven = k.BreakEven(m.prepared[i])
+				x.Class = ledger.ClassOf(x.Net, x.LightLeafOn, x.BreakEven)
+			}
+			out[i][point/len(m.heights)] = x
 		}
 	})
 	return out, nil
 }
 
-// points are the grid's spots, every height of a spot in turn.
-func (q Grid) points(heights []float64) []canopy.Point {
-	out := make([]canopy.Point, 0, q.Columns*q.Rows*len(heights))
+// RunGrid maps a treatment: Spots[seedling][row*Columns+column], without break-evens.
+func RunGrid(p *Plan, q Grid) ([][]Spot, error) {
+	if q.Treatment < 0 || q.Treatment >= len(p.Treatments) || q.Columns < 1 || q.Rows < 1 || !(q.Step > 0) {
+		return nil, fmt.Errorf("a map needs a treatment of the plan, at least one row and column and a step above 0 m")
+	}
+	m, err := NewMapper(p, q.Workers)
+	if err != nil {
+		return nil, err
+	}
+	return m.Map(&m.plan.Treatments[q.Treatment], q.spots(), Ledgers)
+}
+
+// spots of the grid, in m from its middle.
+func (q Grid) spots() (out [][2]float64) {
 	for row := range q.Rows {
 		for column := range q.Columns {
-			for _, h := range heights {
-				out = append(out, canopy.Point{
-					X:      (float64(column) - float64(q.Columns-1)/2) * q.Step,
-					Y:      (float64(row) - float64(q.Rows-1)/2) * q.Step,
-					Height: h,
-				})
-			}
+			out = append(out, [2]float64{(float64(column) - float64(q.Columns-1)/2) * q.Step, (float64(row) - float64(q.Rows-1)/2) * q.Step})
 		}
 	}
 	return out

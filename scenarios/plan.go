@@ -37,6 +37,7 @@ type Plan struct {
 	Treatments []Treatment
 	Stations   []Station // empty: the default stations of each treatment
 	Sampling   Sampling
+	Size       SizeWish
 	Record     Record
 	Cautions   []Caution // all sixteen, in order, with their state
 
@@ -167,6 +168,13 @@ type Sampling struct {
 	Sky     radiation.Sky
 	// Dormancy of evergreens, in seedlings and canopy; the zero value is none.
 	Dormancy leaf.Dormancy
+}
+
+// SizeWish is what an opening is to bring: the share of its area, 0..1, that is to be comfortable, the largest size, m, and the seedling to be outgrown
+// ("" for none).
+type SizeWish struct {
+	Share, UpTo float64
+	Against     string
 }
 
 // Record is who prepared the plan for what.

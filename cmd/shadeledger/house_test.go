@@ -30,7 +30,7 @@ var allowed = map[string][]string{
 	"scenarios/ledger":         {"leaf", "canopy", "scenarios/light"},
 	"scenarios":                {"radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios/light", "scenarios/ledger"},
 	"scenarios/plan":           {"leaf/fit", "radiation", "radiation/weather", "canopy", "canopy/correct", "canopy/inventory", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
-	"scenarios/decide":         {"canopy/inventory", "scenarios", "scenarios/ledger"},
+	"scenarios/decide":         {"canopy", "canopy/inventory", "scenarios", "scenarios/ledger"},
 	"scenarios/report/figures": {},
 	"scenarios/report":         {"scenarios/report/figures", "leaf/fit", "canopy/correct", "canopy/inventory", "scenarios/decide", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
 	"cmd/shadeledger":          {"leaf", "leaf/fit", "canopy/inventory", "scenarios/decide", "leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},

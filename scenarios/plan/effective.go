@@ -318,6 +318,11 @@ func (w *writer) rest(p *scenarios.Plan) {
 		dormancy = "lagged"
 	}
 	w.line(1, "dormancy", dormancy)
+	size := fmt.Sprintf("{share: %s %%, up_to: %s", number(100*p.Size.Share), metres(p.Size.UpTo))
+	if p.Size.Against != "" {
+		size += ", against: " + quote(p.Size.Against)
+	}
+	w.line(0, "size", size+"}")
 	w.cautions(p)
 	r := p.Record
 	w.line(0, "record", fmt.Sprintf("{forest: %s, stand: %s, owner_goal: %s, preparer: %s, licence: %s, date: %s}",

@@ -120,6 +120,10 @@ func restKeys() []Key {
 		{Path: "sampling.heights[]", Kind: Quantity, dim: length, Low: 0, Top: 60, Range: "0 to 60 m", Example: "1.3 m", Meaning: "height above the ground"},
 		{Path: "sampling.sky", Kind: Choice, Words: []string{"all-weather", "overcast", "uniform"}, Default: "all-weather", Example: "overcast", Meaning: "how diffuse light is spread over the sky"},
 		{Path: "sampling.dormancy", Kind: Choice, Words: []string{"lagged", "none"}, Default: "lagged; none under an overcast or uniform sky", Example: "none", Meaning: "whether evergreens sleep through cold: capacity follows temperature with a lag"},
+		{Path: "size", Kind: Map, Meaning: "what openings are sought for"},
+		{Path: "size.share", Kind: Quantity, dim: share, Low: 0.01, Top: 1, Range: "1 to 100 %", Default: "50 %", Example: "50 %", Meaning: "share of an opening's crown outline that is to be comfortable"},
+		{Path: "size.up_to", Kind: Quantity, dim: length, Low: 1, Top: 1000, Range: "1 to 1000 m", Default: "3 H", Example: "3 H", Meaning: "largest opening: diameter, or short side"},
+		{Path: "size.against", Kind: Text, Default: "none", Example: "Birch", Meaning: "seedling of the plan that is to be outgrown"},
 		{Path: "cautions", Kind: Map, Default: "all OPEN", Meaning: "what was done about each caution"},
 		{Path: "record", Kind: Map, Meaning: "who prepared the plan for what"},
 	}
@@ -135,7 +139,7 @@ func restKeys() []Key {
 			Key{Path: p + ".note", Kind: Text, Meaning: "note"},
 		)
 	}
-	for _, later := range []string{"years", "size", "draws", "limits", "planting"} {
+	for _, later := range []string{"years", "draws", "limits", "planting"} {
 		k = append(k, Key{Path: later, Kind: Later, Meaning: "not available in this version: leave it out"})
 	}
 	return k

@@ -194,6 +194,7 @@ func (r *reader) plan(v val) *scenarios.Plan {
 	r.seedlings(r.need(v, f, "seedlings"), p)
 	r.treatments(r.need(v, f, "treatments"), p, stand)
 	r.stations(f["stations"], p)
+	r.size(f["size"], p)
 	p.Cautions = r.cautions(f["cautions"])
 	r.record(f["record"], p)
 	return p
