@@ -119,3 +119,23 @@ func (q Grid) spots() (out [][2]float64) {
 	}
 	return out
 }
+
+// Months is a seedling's net at a spot by month of the mean year, January first, g C.
+func (m *Mapper) Months(t *Treatment, spot [2]float64, seedling int) (net [12]float64, err error) {
+	s, err := newScene(m.plan, t, m.above)
+	if err != nil {
+		return net, err
+	}
+	series := m.above.Series
+	point := canopy.Point{X: spot[0], Y: spot[1], Height: m.heights[m.heightOf[seedling]]}
+	s.light.Survey([]canopy.Point{point}, 1, func(_, _ int, g *light.Regime) {
+		k := ledger.NewKeeper(m.season, s.leafOn)
+		k.Take(g)
+		var a ledger.Account
+		k.Keep(m.prepared[seedling], &a)
+		for d, l := range a.Days {
+			net[series.Days[d].Month-1] += l.Net() * series.Days[d].Weight / float64(series.Years)
+		}
+	})
+	return net, nil
+}
