@@ -38,6 +38,7 @@ type Plan struct {
 	Stations   []Station // empty: the default stations of each treatment
 	Sampling   Sampling
 	Size       SizeWish
+	Years      YearsAhead
 	Record     Record
 	Cautions   []Caution // all sixteen, in order, with their state
 
@@ -175,6 +176,13 @@ type Sampling struct {
 type SizeWish struct {
 	Share, UpTo float64
 	Against     string
+}
+
+// YearsAhead is how the stand closes again. Ranges are low, best, high.
+type YearsAhead struct {
+	Horizon  int        // years
+	Closing  [3]float64 // edge speed of border crowns at the start, m a year and side
+	Regrowth [3]float64 // years until a thinned canopy has its leaf area again; 0 takes what is usual for the cut
 }
 
 // Record is who prepared the plan for what.

@@ -41,7 +41,7 @@ func newScene(p *Plan, t *Treatment, above *light.Above) (*scene, error) {
 	if err != nil {
 		return nil, fmt.Errorf("treatment %q: %w", t.Name, err)
 	}
-	s := &scene{treatment: t, stations: p.stationsOf(t)}
+	s := &scene{treatment: t, stations: p.StationsOf(t)}
 	s.leafOn = c.leafOn(above.Series)
 	if s.leafOn == nil {
 		s.leafOn = Mask(above.Series, p.Season)
@@ -54,8 +54,8 @@ func newScene(p *Plan, t *Treatment, above *light.Above) (*scene, error) {
 	return s, nil
 }
 
-// stationsOf gives the spots of a treatment: the plan's own or the default ones of its crown outline.
-func (p *Plan) stationsOf(t *Treatment) []canopy.Station {
+// StationsOf gives the spots of a treatment: the plan's own or the default ones of its crown outline.
+func (p *Plan) StationsOf(t *Treatment) []canopy.Station {
 	o, cleared := t.Opening.(Cleared)
 	switch {
 	case !cleared:

@@ -318,6 +318,12 @@ func (w *writer) rest(p *scenarios.Plan) {
 		dormancy = "lagged"
 	}
 	w.line(1, "dormancy", dormancy)
+	w.line(0, "years", "")
+	w.line(1, "horizon", fmt.Sprint(p.Years.Horizon))
+	w.line(1, "side_closure", w.given("years.side_closure", p.Years.Closing[1], func(x float64) string { return number(x) + " m/y" }))
+	if p.Years.Regrowth[1] > 0 {
+		w.line(1, "leaf_regrowth", w.given("years.leaf_regrowth", p.Years.Regrowth[1], number))
+	}
 	size := fmt.Sprintf("{share: %s %%, up_to: %s", number(100*p.Size.Share), metres(p.Size.UpTo))
 	if p.Size.Against != "" {
 		size += ", against: " + quote(p.Size.Against)

@@ -71,8 +71,8 @@ func TestEffectivePlanKeepsEverything(t *testing.T) {
 	if d := difference(p, q); d != "" {
 		t.Errorf("(-plan +read back):\n%s", d)
 	}
-	if len(p.Doubts) != 5 || len(q.Doubts) != len(p.Doubts) {
-		t.Errorf("%d doubts and %d when read back; the plan has 5", len(p.Doubts), len(q.Doubts))
+	if len(p.Doubts) != 6 || len(q.Doubts) != len(p.Doubts) {
+		t.Errorf("%d doubts and %d when read back; the plan has 5 and the speed of border crowns one", len(p.Doubts), len(q.Doubts))
 	}
 	if twice := Effective(q); string(twice) != string(Effective(p)) {
 		t.Errorf("the effective plan of the effective plan differs:\n%s", twice)
@@ -193,6 +193,7 @@ seedlings:
     replacement: {leaf_lifespan: 0.5, fine_root_share: 0.2, fine_root_lifespan: 1.0, construction_cost: 0.60}
   - {species: Betula alleghaniensis, leaf: {biochemistry: {g1: 3.9}}}
   - {species: Acer saccharum, leaf: {biochemistry: {vcmax: 37.7, jmax: 66.1, capacities: fixed, growth_light: 33}, acclimation: none}}
+years: {horizon: 25, leaf_regrowth: 11}
 size: {share: 65 %, up_to: 2.2 H, against: constant}
 treatments:
   - name: No action

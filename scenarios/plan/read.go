@@ -195,6 +195,7 @@ func (r *reader) plan(v val) *scenarios.Plan {
 	r.treatments(r.need(v, f, "treatments"), p, stand)
 	r.stations(f["stations"], p)
 	r.size(f["size"], p)
+	r.years(f["years"], p)
 	p.Cautions = r.cautions(f["cautions"])
 	r.record(f["record"], p)
 	return p

@@ -17,6 +17,7 @@ import (
 type region struct {
 	lai, clumping float64
 	leaves        leaf.Calendar
+	closing       [3]float64 // edge speed of border crowns, m a year: low, best, high (common practice)
 }
 
 func dates(out, full, colour, bare leaf.Date) leaf.Calendar {
@@ -25,12 +26,12 @@ func dates(out, full, colour, bare leaf.Date) leaf.Calendar {
 
 // regions by name. Leaf dates are leaf-out to leaf-fall; three weeks to full leaf and for the fall.
 var regions = map[string]*region{
-	"northern-hardwood":     {5.0, 0.95, dates(leaf.Date{Month: 5, Day: 10}, leaf.Date{Month: 5, Day: 31}, leaf.Date{Month: 9, Day: 20}, leaf.Date{Month: 10, Day: 10})},
-	"oak-hickory":           {4.5, 0.95, dates(leaf.Date{Month: 4, Day: 20}, leaf.Date{Month: 5, Day: 11}, leaf.Date{Month: 9, Day: 30}, leaf.Date{Month: 10, Day: 20})},
-	"central-europe-spruce": {6.0, 0.72, leaf.Evergreen{}},
-	"coastal-douglas-fir":   {7.0, 0.65, leaf.Evergreen{}},
-	"boreal-aspen":          {2.6, 0.85, dates(leaf.Date{Month: 5, Day: 20}, leaf.Date{Month: 6, Day: 10}, leaf.Date{Month: 9, Day: 1}, leaf.Date{Month: 9, Day: 20})},
-	"uk-sitka":              {6.5, 0.65, leaf.Evergreen{}},
+	"northern-hardwood":     {5.0, 0.95, dates(leaf.Date{Month: 5, Day: 10}, leaf.Date{Month: 5, Day: 31}, leaf.Date{Month: 9, Day: 20}, leaf.Date{Month: 10, Day: 10}), [3]float64{0.10, 0.18, 0.40}},
+	"oak-hickory":           {4.5, 0.95, dates(leaf.Date{Month: 4, Day: 20}, leaf.Date{Month: 5, Day: 11}, leaf.Date{Month: 9, Day: 30}, leaf.Date{Month: 10, Day: 20}), [3]float64{0.10, 0.18, 0.35}},
+	"central-europe-spruce": {6.0, 0.72, leaf.Evergreen{}, [3]float64{0.05, 0.12, 0.20}},
+	"coastal-douglas-fir":   {7.0, 0.65, leaf.Evergreen{}, [3]float64{0.10, 0.20, 0.35}},
+	"boreal-aspen":          {2.6, 0.85, dates(leaf.Date{Month: 5, Day: 20}, leaf.Date{Month: 6, Day: 10}, leaf.Date{Month: 9, Day: 1}, leaf.Date{Month: 9, Day: 20}), [3]float64{0.10, 0.15, 0.20}},
+	"uk-sitka":              {6.5, 0.65, leaf.Evergreen{}, [3]float64{0.10, 0.20, 0.30}},
 }
 
 func regionNames() []string {

@@ -26,6 +26,7 @@ const (
 	share                        // 0..1
 	ppm                          // ppm
 	density                      // ha-1
+	speed                        // m y-1
 )
 
 // unit is a way to write a quantity: value * scale + offset in the program's unit.
@@ -49,13 +50,14 @@ var unitTable = map[dimension]map[string]unit{
 	duration:    {"h": {1, 0}, "min": {1.0 / 60, 0}, "d": {24, 0}},
 	share:       {"%": {0.01, 0}},
 	ppm:         {"ppm": {1, 0}},
+	speed:       {"m/y": {1, 0}, "cm/y": {0.01, 0}, "ft/y": {foot, 0}, "in/y": {foot / 12, 0}},
 	density:     {"stems/ha": {1, 0}, "trees/ha": {1, 0}, "stems/ac": {1e4 / acre, 0}, "trees/ac": {1e4 / acre, 0}},
 }
 
 // likely is the unit to name to someone who wrote none.
 var likely = map[dimension]string{
 	length: "m or ft", area: "m2 or ha or ac", basalArea: "m2/ha or ft2/ac", slope: "% or deg", bearing: "deg",
-	mass: "g", temperature: "C or F", duration: "h or min", share: "%", ppm: "ppm", density: "stems/ha or stems/ac",
+	mass: "g", temperature: "C or F", duration: "h or min", share: "%", ppm: "ppm", density: "stems/ha or stems/ac", speed: "m/y or ft/y",
 }
 
 var (

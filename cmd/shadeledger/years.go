@@ -1,0 +1,53 @@
+package main
+
+import (
+	"github.com/spf13/cobra"
+
+	"shadeledger/scenarios/decide"
+	"shadeledger/scenarios/report"
+)
+
+type yearsOptions struct {
+	*settings
+	io   streams
+	plan string
+}
+
+func newYears(io streams) *cobra.Command {
+	o := yearsOptions{io: io}
+	cmd := &cobra.Command{
+		Use:   "years [PLAN]",
+		Short: "How long it lasts: yearly light and class per station, early, likely and late",
+		Long: `Follows every treatment for years.horizon: border crowns grow into openings (years.side_closure), thinned canopies get their leaf
+area back (years.leaf_regrowth), each at three paces: early is fast crowns and quick leaves, late slow ones. For every
+seedling the years for which a station stays comfortable; --format csv has every year of every station. Light is that of maps, a
+few weighted days a month. Seedlings keep their size and no other plants grow up.`,
+		Example: "  shadeledger years\n  shadeledger years my-stand --format csv --output years.csv\n  shadeledger years --set 'years.side_closure={low: 0.1 m/y, best: 0.25 m/y, high: 0.4 m/y}'",
+		Args:    atMost(1),
+		RunE: func(cmd *cobra.Command, args []string) error {
+			s, err := readSettings(cmd)
+			if err != nil {
+				return err
+			}
+			o.settings, o.plan = s, first(args)
+			return runYears(o)
+		},
+	}
+	addPlanFlags(cmd)
+	return cmd
+}
+
+func runYears(o yearsOptions) error {
+	if err := o.checkOutput(); err != nil {
+		return err
+	}
+	p, err := loadPlan(o.plan, o.set)
+	if err != nil {
+		return err
+	}
+	f, err := decide.FindYears(p, o.workers)
+	if err != nil {
+		return err
+	}
+	return o.deliver(o.io, p, func(out report.Output) error { return report.Years(out, p, f) })
+}

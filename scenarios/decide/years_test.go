@@ -1,0 +1,102 @@
+package decide
+
+import (
+	"math"
+	"testing"
+
+	"shadeledger/scenarios"
+	"shadeledger/scenarios/ledger"
+)
+
+// Light falls with the years and with the pace, classes follow, and what is lost is lost when the class falls.
+func TestYearsOnlyDarken(t *testing.T) {
+	p := sized(t)
+	f, err := FindYears(p, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	n := p.Years.Horizon + 1
+	if len(f.Rows) != n*len(f.Lost) {
+		t.Fatalf("%d rows, %d spots", len(f.Rows), len(f.Lost))
+	}
+	for i, l := range f.Lost {
+		rows := f.Rows[i*n : (i+1)*n]
+		for y, r := range rows {
+			if r.Treatment != l.Treatment || r.Station != l.Station || r.Species != l.Species || r.Year != y {
+				t.Fatalf("row %+v beside %+v", r, l)
+			}
+			if r.Light[Early] > r.Light[Likely]+1e-9 || r.Light[Likely] > r.Light[Late]+1e-9 {
+				t.Errorf("%s, %s, year %d: %v by pace", r.Treatment, r.Station, y, r.Light)
+			}
+			for pace := Late; pace <= Early; pace++ {
+				if y > 0 && r.Light[pace] > rows[y-1].Light[pace]+0.05 {
+					t.Errorf("%s, %s, year %d, pace %d: %.2f %% after %.2f", r.Treatment, r.Station, y, pace, r.Light[pace], rows[y-1].Light[pace])
+				}
+				if before := float64(y) < l.Year[pace]; before != (r.Class[pace] == ledger.Comfortable) && before {
+					t.Errorf("%s, %s, %s, year %d, pace %d: %s, lost in %g", r.Treatment, r.Station, r.Species, y, pace, r.Class[pace], l.Year[pace])
+				}
+			}
+		}
+		if l.Year[Early] > l.Year[Likely] || l.Year[Likely] > l.Year[Late] {
+			t.Errorf("%+v: lost later at a faster pace", l)
+		}
+	}
+}
+
+// A thinned stand is back near uncut light after 13 to 20 years (Beaudet et al. 2004; Domke 2006), a light thinning after 8 (Chan et al. 2006): of the light gained by the
+// cut at most a fourth is left. Wood does not come back, so that all of it never goes.
+func TestThinnedStandsCloseAgain(t *testing.T) {
+	p := sized(t)
+	p.Treatments = p.Treatments[:4]
+	for i := range p.Treatments {
+		p.Treatments[i].Understory = nil
+	}
+	f, err := FindYears(p, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	light := func(treatment, year int, pace Pace) float64 {
+		for _, r := range f.Rows {
+			if r.Treatment == p.Treatments[treatment].Name && r.Year == year {
+				return r.Light[pace]
+			}
+		}
+		t.Fatal("no such row")
+		return 0
+	}
+	uncut := light(0, 0, Likely)
+	for i, year := range map[int]int{1: 13, 2: 20, 3: 20} {
+		gained, left := light(i, 0, Likely)-uncut, light(i, year, Likely)-uncut
+		t.Logf("%s: %.1f points over the uncut stand's %.1f, %.1f in year %d", p.Treatments[i].Name, gained, uncut, left, year)
+		if left > gained/4 || left < -0.5 {
+			t.Errorf("%s: %.1f of %.1f points are left in year %d", p.Treatments[i].Name, left, gained, year)
+		}
+	}
+}
+
+// Nothing moves where nothing was cut, and an opening that closes over is the stand again.
+func TestYearsOfTheUncutAndTheClosed(t *testing.T) {
+	p := sized(t)
+	p.Years.Closing, p.Years.Horizon = [3]float64{2, 2, 2}, 20
+	var small int
+	for i := range p.Treatments {
+		if p.Treatments[i].Name == "Circle 1.0 H" {
+			small = i
+		}
+	}
+	p.Treatments = []scenarios.Treatment{p.Treatments[0], p.Treatments[small]}
+	p.Treatments[1].Understory = p.Treatments[0].Understory
+	f, err := FindYears(p, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	uncut := f.Rows[0].Light[Likely]
+	for _, r := range f.Rows {
+		switch {
+		case r.Treatment == p.Treatments[0].Name && r.Light[Likely] != uncut:
+			t.Errorf("the uncut stand has %.3f %% in year %d, %.3f in the first", r.Light[Likely], r.Year, uncut)
+		case r.Treatment == p.Treatments[1].Name && r.Year == 20 && r.Station == "centre" && math.Abs(r.Light[Likely]-uncut) > 0.2:
+			t.Errorf("closed over: %.2f %% at the centre, %.2f under the stand", r.Light[Likely], uncut)
+		}
+	}
+}
