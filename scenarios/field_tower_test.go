@@ -55,7 +55,7 @@ type tower struct {
 	lidar               bool
 }
 
-// layers of a tower, with what the program's own rules for stands of trees give: leaf angle; clumping of closed crowns, 0.86 between broadleaf and 0.7
+// layers of a tower, with what the program's own rules for stands of trees give: leaf angle; clumping of closed crowns, about 0.84 between broadleaf and 0.7
 // between conifer crowns, 0.75 within; wood at random, 0.9 in closed broadleaf stands, 0.06 of the leaf area in conifers.
 func (w tower) layers(t *testing.T) string {
 	chi, omega, wood, total := 2.1, 0.86*0.75, 0.9, 0.0
@@ -141,8 +141,8 @@ sampling: {heights: [%s]}
 func TestTowers(t *testing.T) {
 	deciduous := "{out: 05-01, full: 05-25, colour: 09-20, bare: 10-20}"
 	const (
-		gap   = "one sensor beside the tower sees 95 % of the light where the lidar has two of seven units of leaf area above"
-		snow  = "snow on sensors, as the data's readme warns, and conifers among the hardwoods"
+		gap   = "one sensor beside the tower sees 95 % of the light where the lidar has 0.86 of 7.3 units of leaf area above"
+		snow  = "low sun blocked, most likely by conifers among the hardwoods, and snow on sensors, as the data's readme warns"
 		green = "hemlock and pine among the hardwoods hold leaves in January"
 		crown = "one sensor under a crown: it reads less at 15 m than at 9 m, as the data's readme warns"
 		shape = "the height of the wood is not known"
