@@ -3,7 +3,9 @@ package plan
 import (
 	"bytes"
 	"encoding/csv"
+	"errors"
 	"fmt"
+	"io"
 	"math"
 	"slices"
 	"strconv"
@@ -89,7 +91,12 @@ func (c *curveReader) read(data []byte, columns map[string]string) (out []LeafCu
 	by := map[string]int{}
 	for {
 		row, err := rows.Read()
-		if row == nil {
+		if errors.Is(err, io.EOF) {
+			break
+		}
+		var broken *csv.ParseError
+		if row == nil && errors.As(err, &broken) {
+			c.fault(broken.StartLine, "", broken.Err.Error(), "a quote that is opened is closed in its cell")
 			break
 		}
 		line, _ := rows.FieldPos(0)
