@@ -28,6 +28,11 @@ type Bernacchi struct{}
 // deg C, 11 to 35; respiration after Heskel et al. (2016).
 type Acclimated struct{ Growth float64 }
 
+// NewAcclimated holds a growth temperature within the range of the study, 11 to 35 deg C.
+func NewAcclimated(growth float64) Acclimated {
+	return Acclimated{math.Max(11, math.Min(35, growth))}
+}
+
 // gasConstant, kJ mol-1 K-1 and in J.
 const (
 	gasConstant = 8.314e-3
@@ -58,16 +63,24 @@ func (Bernacchi) vcmax(T float64) float64 { return rubiscoHeat.over25(T) }
 func (Bernacchi) jmax(T float64) float64  { return electronHeat.over25(T) }
 func (Bernacchi) rd(T float64) float64    { return breathHeat.over25(T) }
 
+// deactivation energy of both capacities, J mol-1 (Kattge & Knorr 2007).
+const deactivation = 200000
+
 // peaked is the Arrhenius response with deactivation, over that at 25 deg C; energies in J mol-1, entropy in J mol-1 K-1.
 func peaked(activation, entropy, celsius float64) float64 {
 	const (
-		R            = 1000 * gasConstant
-		deactivation = 200000
-		T25          = 25 + kelvin
+		R   = 1000 * gasConstant
+		T25 = 25 + kelvin
 	)
 	T := celsius + kelvin
 	rise := math.Exp(activation * (T - T25) / (T25 * R * T))
 	return rise * (1 + math.Exp((T25*entropy-deactivation)/(T25*R))) / (1 + math.Exp((T*entropy-deactivation)/(T*R)))
+}
+
+// optimum of electron transport, deg C, where the derivative of the peaked response is zero (Medlyn et al. 2002, Plant Cell Environ. 25:1167-1179, eq. 19).
+func (a Acclimated) optimum() float64 {
+	entropy, activation := 659.70-0.75*a.Growth, 49884.0
+	return deactivation/(entropy-1000*gasConstant*math.Log(activation/(deactivation-activation))) - kelvin
 }
 
 func (a Acclimated) vcmax(T float64) float64 { return peaked(71513, 668.39-1.07*a.Growth, T) }
@@ -82,6 +95,23 @@ type Air struct {
 	Temperature float64 // of the leaf, deg C
 	CO2         float64 // of the air, ppm
 	VPD         float64 // kPa; below 0.05 it is taken as that
+	Pressure    float64 // of the air, kPa; 0 is 101.325
+}
+
+// StandardPressure is that of air at sea level, kPa.
+const StandardPressure = 101.325
+
+// PressureAt is the air pressure of the standard atmosphere, kPa, at metres above sea level, to 11 km (ISO 2533:1975).
+func PressureAt(elevation float64) float64 {
+	return StandardPressure * math.Pow(1-2.25577e-5*elevation, 5.25588)
+}
+
+// thinness is the pressure over the standard one.
+func (a Air) thinness() float64 {
+	if a.Pressure == 0 {
+		return 1
+	}
+	return a.Pressure / StandardPressure
 }
 
 // Exchange is what the leaf does in it.
@@ -119,17 +149,37 @@ func (b Biochemistry) Check() error {
 	return nil
 }
 
-// capacity is the apparatus at a temperature.
+// capacity is the apparatus at a temperature and pressure.
 type capacity struct {
-	vcmax, rd      float64
-	electrons      float64 // J, at the light
-	gamma, rubisco float64 // compensation point without respiration; Kc (1 + O/Ko), ppm
+	vcmax, rd float64
+	electrons float64 // J, at the light
+	enzymes
 }
+
+// enzymes are what photorespiration and the affinities of Rubisco make of CO2 at a temperature and pressure. Carbon dioxide and oxygen act by
+// partial pressure, given as ppm of standard air: both shrink with the pressure, and with oxygen the compensation point.
+type enzymes struct {
+	gamma    float64 // compensation point without respiration, ppm of the air as it is
+	rubisco  float64 // Kc (1 + O/Ko), ppm of standard air
+	thinness float64
+}
+
+func enzymesAt(celsius, thinness float64) enzymes {
+	return enzymes{compensation.at(celsius), carboxylation.at(celsius) * (1 + thinness*oxygen/oxygenation.at(celsius)), thinness}
+}
+
+// carboxylated is assimilation by Rubisco per Vcmax at a CO2 within, ppm.
+func (e enzymes) carboxylated(ci float64) float64 {
+	return e.thinness * (ci - e.gamma) / (e.thinness*ci + e.rubisco)
+}
+
+// regenerated is assimilation by electron transport per quarter electron at a CO2 within, ppm; the pressure does not matter.
+func (e enzymes) regenerated(ci float64) float64 { return (ci - e.gamma) / (ci + 2*e.gamma) }
 
 func (b Biochemistry) at(a Air) capacity {
 	T := a.Temperature
-	return capacity{vcmax: b.Vcmax * b.Heat.vcmax(T), rd: b.Rd * b.Heat.rd(T), electrons: Electrons(driven(a.PPFD), b.Jmax*b.Heat.jmax(T)), gamma: compensation.at(T),
-		rubisco: michaelis(T)}
+	return capacity{vcmax: b.Vcmax * b.Heat.vcmax(T), rd: b.Rd * b.Heat.rd(T), electrons: Electrons(driven(a.PPFD), b.Jmax*b.Heat.jmax(T)),
+		enzymes: enzymesAt(T, a.thinness())}
 }
 
 // driven is the electron transport that light alone would drive, umol m-2 s-1.
@@ -154,18 +204,20 @@ type Limit struct {
 	Jmax, Rd  float64 // over those at 25 deg C
 }
 
-// Limits of a reading: ci in ppm, ppfd in umol m-2 s-1, deg C.
-func Limits(ci, ppfd, celsius float64, heat Heat) Limit {
-	gamma := compensation.at(celsius)
-	return Limit{
-		Rubisco:   heat.vcmax(celsius) * (ci - gamma) / (ci + michaelis(celsius)),
-		Electrons: (ci - gamma) / (4 * (ci + 2*gamma)), Light: driven(ppfd), Jmax: heat.jmax(celsius), Rd: heat.rd(celsius),
-	}
+// Limits of a reading at a CO2 within, ppm, in air whose light, leaf temperature and pressure are known.
+func Limits(ci float64, a Air, heat Heat) Limit {
+	T, e := a.Temperature, enzymesAt(a.Temperature, a.thinness())
+	return Limit{Rubisco: heat.vcmax(T) * e.carboxylated(ci), Electrons: e.regenerated(ci) / 4, Light: driven(a.PPFD), Jmax: heat.jmax(T), Rd: heat.rd(T)}
 }
 
-// gross is carboxylation, the slower of what Rubisco and electron transport drive, less photorespiration; below gamma it is negative.
+// gross is carboxylation, the slower of what Rubisco and electron transport drive, less photorespiration; below gamma, where both are negative, the
+// slower is the greater.
 func (c capacity) gross(ci float64) float64 {
-	return math.Min(c.vcmax/(ci+c.rubisco), c.electrons/4/(ci+2*c.gamma)) * (ci - c.gamma)
+	byRubisco, byElectrons := c.vcmax*c.carboxylated(ci), c.electrons/4*c.regenerated(ci)
+	if ci < c.gamma {
+		return math.Max(byRubisco, byElectrons)
+	}
+	return math.Min(byRubisco, byElectrons)
 }
 
 // Assimilate solves assimilation and stomata together: A = min(Ac, Aj) - Rd, gs = g0 + 1.6 (1 + g1/sqrt(D)) A / Ca and A = gs/1.6 (Ca - Ci). Without g0
@@ -184,7 +236,7 @@ func (b Biochemistry) Assimilate(a Air) Exchange {
 	return e
 }
 
-// within finds the CO2 in the leaf with a residual conductance.
+// within finds the CO2 in the leaf with a residual conductance, up to three times that of the air.
 func (b Biochemistry) within(c capacity, ca, open float64) float64 {
 	excess := func(ci float64) float64 {
 		net := c.gross(ci) - c.rd
@@ -207,6 +259,5 @@ func (b Biochemistry) within(c capacity, ca, open float64) float64 {
 
 // QuantumYield is the slope of gross assimilation on incident light in darkness at a CO2 within, mol CO2 per mol.
 func QuantumYield(ci, celsius float64) float64 {
-	gamma := compensation.at(celsius)
-	return absorbed * (1 - lost) / 2 / 4 * (ci - gamma) / (ci + 2*gamma)
+	return driven(1) / 4 * enzymesAt(celsius, 1).regenerated(ci)
 }

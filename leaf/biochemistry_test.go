@@ -70,7 +70,7 @@ func workedOut(t *testing.T, topic, output string, in map[string]float64, mode s
 		}
 	case "stomata":
 		b := Biochemistry{Vcmax: 50, Jmax: 90, Rd: 0.5, G1: in["g1"], Heat: Bernacchi{}}
-		return b.Assimilate(Air{500, 25, 400, in["D_kPa"]}).Ci / 400
+		return b.Assimilate(Air{PPFD: 500, Temperature: 25, CO2: 400, VPD: in["D_kPa"]}).Ci / 400
 	case "coupled FvCB + stomata":
 		b := Biochemistry{Vcmax: in["Vcmax25"], Jmax: in["Jmax25"], Rd: in["Rd25"], G1: in["g1"], G0: in["g0"], Heat: Bernacchi{}}
 		if mode != "Bernacchi" {
@@ -79,7 +79,7 @@ func workedOut(t *testing.T, topic, output string, in map[string]float64, mode s
 		if err := b.Check(); err != nil {
 			t.Fatal(err)
 		}
-		e := b.Assimilate(Air{in["I"], T, in["Ca"], in["D_kPa"]})
+		e := b.Assimilate(Air{PPFD: in["I"], Temperature: T, CO2: in["Ca"], VPD: in["D_kPa"]})
 		switch output {
 		case "A":
 			return e.Net
@@ -96,14 +96,14 @@ func workedOut(t *testing.T, topic, output string, in map[string]float64, mode s
 // In darkness a leaf breathes, more light and more CO2 never harm, and with a residual conductance the three equations hold together.
 func TestBiochemistryLaws(t *testing.T) {
 	b := Biochemistry{Vcmax: 60, Jmax: 105, Rd: 0.8, G1: 4.45, Heat: Acclimated{18}}
-	if e := b.Assimilate(Air{0, 20, 400, 1}); e.Gross != 0 || e.Net >= 0 {
+	if e := b.Assimilate(Air{PPFD: 0, Temperature: 20, CO2: 400, VPD: 1}); e.Gross != 0 || e.Net >= 0 {
 		t.Errorf("darkness: %+v", e)
 	}
 	for _, g0 := range []float64{0, 0.01} {
 		b.G0 = g0
 		last := math.Inf(-1)
 		for _, I := range []float64{0, 20, 100, 400, 1500} {
-			a := Air{I, 22, 400, 1.2}
+			a := Air{PPFD: I, Temperature: 22, CO2: 400, VPD: 1.2}
 			e := b.Assimilate(a)
 			if e.Net < last {
 				t.Errorf("g0 %g: %g at %g umol, %g at less light", g0, e.Net, I, last)
@@ -113,10 +113,10 @@ func TestBiochemistryLaws(t *testing.T) {
 				if off := math.Abs(e.Conductance/waterOverCarbon*(a.CO2-e.Ci) - e.Net); off > 1e-6 {
 					t.Errorf("g0 %g at %g umol: the stomata pass %g more than is fixed", g0, I, off)
 				}
-				if richer := b.Assimilate(Air{I, 22, 600, 1.2}); richer.Net < e.Net {
+				if richer := b.Assimilate(Air{PPFD: I, Temperature: 22, CO2: 600, VPD: 1.2}); richer.Net < e.Net {
 					t.Errorf("at 600 ppm %g, at 400 ppm %g", richer.Net, e.Net)
 				}
-				if drier := b.Assimilate(Air{I, 22, 400, 2.5}); drier.Ci > e.Ci {
+				if drier := b.Assimilate(Air{PPFD: I, Temperature: 22, CO2: 400, VPD: 2.5}); drier.Ci > e.Ci {
 					t.Errorf("CO2 within %g in dry air, %g in moist", drier.Ci, e.Ci)
 				}
 			}

@@ -32,16 +32,15 @@ func (d Dormancy) States(mean, weight []float64) []float64 {
 	return X
 }
 
-// Awake is the share, 0 to 1, of gross assimilation left at a state X and a leaf temperature (deg C) whose own response t is in force: as much as
-// brings the capacity down to the lesser of the two, since warmth on a spring day does not wake a leaf, and cold in summer
-// is not charged twice. It bears on the initial slope as on the capacity: cold evergreens quench light for weeks (Öquist & Huner 2003, Annu. Rev.
-// Plant Biol. 54:329-355).
-func (d Dormancy) Awake(t Temperature, state, celsius float64) float64 {
+// Awake is the share, 0 to 1, of gross assimilation left at a state X (deg C), where temperature alone leaves the capacity at a share of that at its
+// optimum, warmth: as much as brings the capacity down to the lesser of the two, since warmth on a spring day does not wake a leaf,
+// and cold in summer is not charged twice. It bears on the initial slope as on the capacity: cold evergreens quench light for weeks (Öquist & Huner
+// 2003, Annu. Rev. Plant Biol. 54:329-355).
+func (d Dormancy) Awake(state, warmth float64) float64 {
 	if d.Lag <= 0 {
 		return 1
 	}
 	capacity := math.Max(0, math.Min(1, (state-d.From)/d.Span))
-	warmth := t.AgFactor(celsius) / t.AgFactor(t.Opt)
 	if capacity >= warmth {
 		return 1
 	}

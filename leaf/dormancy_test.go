@@ -42,15 +42,15 @@ func TestAwakeIsTheLesserOfStateAndWarmth(t *testing.T) {
 	temp := Temperature{Ref: 25, Opt: 21, Width: 18, Q10: 2}
 	for state := -10.0; state <= 25; state += 2.5 {
 		for celsius := -15.0; celsius <= 35; celsius += 5 {
-			a := Pine.Awake(temp, state, celsius)
-			warmth := temp.AgFactor(celsius) / temp.AgFactor(21)
+			warmth := temp.Warmth(celsius)
+			a := Pine.Awake(state, warmth)
 			capacity := math.Max(0, math.Min(1, (state+4)/17.3))
 			if got, want := a*warmth, math.Min(warmth, capacity); math.Abs(got-want) > 1e-12 {
 				t.Errorf("state %g, %g deg C: capacity %g, want %g", state, celsius, got, want)
 			}
 		}
 	}
-	if Pine.Awake(temp, -4, 10) != 0 || Pine.Awake(temp, 14, 21) != 1 || (Dormancy{}).Awake(temp, -30, 0) != 1 {
+	if Pine.Awake(-4, temp.Warmth(10)) != 0 || Pine.Awake(14, temp.Warmth(21)) != 1 || (Dormancy{}).Awake(-30, temp.Warmth(0)) != 1 || temp.Warmth(21) != 1 {
 		t.Error("dead in deep winter, whole in summer, and none is none")
 	}
 }

@@ -9,17 +9,12 @@ const (
 	standardVPD         = 1.0   // kPa
 )
 
-// Set writes the leaf as a light response in standard air (25 deg C, 400 ppm, 1 kPa), without residual conductance: since the CO2 within then
-// depends on the air alone, electron transport is a non-rectangular hyperbola of light and Rubisco a cap on it. lma in g m-2.
+// Set writes the leaf as a light response in standard air (25 deg C, 400 ppm, 1 kPa, sea level), without residual conductance: since the CO2 within
+// then depends on the air alone, electron transport is a non-rectangular hyperbola of light and Rubisco a cap on it. lma in g m-2.
 func (b Biochemistry) Set(lma float64) Set {
-	k := Kinetics{G1: b.G1, Heat: b.Heat}
-	ci := k.within(standardCO2, standardVPD)
-	gamma, rubisco := compensation.at(standardTemperature), michaelis(standardTemperature)
-	return Set{
-		Ag:  b.Jmax * b.Heat.jmax(standardTemperature) / 4 * (ci - gamma) / (ci + 2*gamma),
-		Cap: b.Vcmax * b.Heat.vcmax(standardTemperature) * (ci - gamma) / (ci + rubisco),
-		Rd:  b.Rd * b.Heat.rd(standardTemperature), Phi: QuantumYield(ci, standardTemperature), Theta: curvature, LMA: lma,
-	}
+	ci := Kinetics{G1: b.G1}.within(standardCO2, standardVPD)
+	e := enzymesAt(standardTemperature, 1)
+	return Set{Ag: b.Jmax / 4 * e.regenerated(ci), Cap: b.Vcmax * e.carboxylated(ci), Rd: b.Rd, Phi: QuantumYield(ci, standardTemperature), Theta: curvature, LMA: lma}
 }
 
 // Kinetics carries a biochemical set to other air.
@@ -37,23 +32,23 @@ func (k Kinetics) within(co2, vpd float64) float64 {
 	return co2 * open / (1 + open)
 }
 
-// michaelis is Kc (1 + O/Ko), ppm.
-func michaelis(celsius float64) float64 {
-	return carboxylation.at(celsius) * (1 + oxygen/oxygenation.at(celsius))
-}
-
 // Ratios compares air with standard air; the light in it does not matter. Where the CO2 within is below the compensation point all are 0.
 func (k Kinetics) Ratios(a Air) Ratios {
-	shares := func(celsius, co2, vpd float64) (electrons, rubisco float64) {
-		ci, gamma := k.within(co2, vpd), compensation.at(celsius)
-		over := math.Max(0, ci-gamma)
-		return over / (ci + 2*gamma), over / (ci + michaelis(celsius))
+	shares := func(a Air) (electrons, rubisco float64) {
+		ci, e := k.within(a.CO2, a.VPD), enzymesAt(a.Temperature, a.thinness())
+		return math.Max(0, e.regenerated(ci)), math.Max(0, e.carboxylated(ci))
 	}
-	m, v := shares(a.Temperature, a.CO2, a.VPD)
-	m0, v0 := shares(standardTemperature, standardCO2, standardVPD)
-	return Ratios{
-		Ag:  m / m0 * k.Heat.jmax(a.Temperature) / k.Heat.jmax(standardTemperature),
-		Phi: m / m0,
-		Cap: v / v0 * k.Heat.vcmax(a.Temperature) / k.Heat.vcmax(standardTemperature),
+	m, v := shares(a)
+	m0, v0 := shares(Air{Temperature: standardTemperature, CO2: standardCO2, VPD: standardVPD})
+	return Ratios{Ag: m / m0 * k.Heat.jmax(a.Temperature), Phi: m / m0, Cap: v / v0 * k.Heat.vcmax(a.Temperature)}
+}
+
+// Warmth is the capacity of electron transport at a temperature over that at its optimum; a response without one
+// (Bernacchi) is taken as full from 25 deg C on.
+func (k Kinetics) Warmth(celsius float64) float64 {
+	best := 25.0
+	if a, peaks := k.Heat.(Acclimated); peaks {
+		best = a.optimum()
 	}
+	return math.Min(1, k.Heat.jmax(celsius)/k.Heat.jmax(best))
 }

@@ -67,6 +67,12 @@ func (t Temperature) AgFactor(celsius float64) float64 {
 	return math.Exp(b*b - a*a)
 }
 
+// Warmth is Ag at a temperature over that at the optimum.
+func (t Temperature) Warmth(celsius float64) float64 {
+	a := (celsius - t.Opt) / t.Width
+	return math.Exp(-a * a)
+}
+
 // RdFactor is Rd(T)/Rd(T_ref) by the curve chosen.
 func (t Temperature) RdFactor(celsius float64) float64 { return t.rdFrom(t.Ref, celsius) }
 

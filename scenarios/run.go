@@ -8,6 +8,7 @@ import (
 
 	"shadeledger/canopy"
 	"shadeledger/leaf"
+	"shadeledger/radiation"
 	"shadeledger/radiation/weather"
 	"shadeledger/scenarios/ledger"
 	"shadeledger/scenarios/light"
@@ -113,7 +114,8 @@ func heights(p *Plan, depth Depth) (list []float64, of []int) {
 	return list, of
 }
 
-// prepare works every seedling out for the series, with the days it lies under snow.
+// prepare works every seedling out for the series: the days it lies under snow, the winter of evergreens, and the pressure of its air, which check skies
+// leave at that of sea level.
 func prepare(p *Plan, above *light.Above) []*ledger.Prepared {
 	out := make([]*ledger.Prepared, len(p.Seedlings))
 	for i, s := range p.Seedlings {
@@ -124,6 +126,11 @@ func prepare(p *Plan, above *light.Above) []*ledger.Prepared {
 		}
 		if _, evergreen := plant.Leaves.(leaf.Evergreen); evergreen {
 			plant.Dormancy = p.Sampling.Dormancy
+		}
+		if _, natural := p.Sampling.Sky.(radiation.AllWeather); natural && plant.Chemistry != nil {
+			thin := *plant.Chemistry
+			thin.Pressure = leaf.PressureAt(p.Site.Elevation)
+			plant.Chemistry = &thin
 		}
 		out[i] = ledger.Prepare(&plant, above)
 	}

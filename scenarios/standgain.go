@@ -241,7 +241,7 @@ func (q *guild) heat(s *weather.Series, winter leaf.Dormancy) {
 	for i, step := range s.Lit.Step {
 		celsius := s.Temperature[step]
 		q.warm[i] = T.AgFactor(celsius)
-		q.awake[i] = winter.Awake(T, states[int(step)/s.PerDay], celsius)
+		q.awake[i] = winter.Awake(states[int(step)/s.PerDay], T.Warmth(celsius))
 	}
 	for i, celsius := range s.Temperature {
 		q.respired[i/s.PerDay] += T.RdFactor(celsius)

@@ -67,7 +67,7 @@ func CO2Curve(readings []Gas, heat leaf.Heat) (Capacities, error) {
 }
 
 func limit(g Gas, heat leaf.Heat) limits {
-	k := leaf.Limits(g.Ci*pressure(g)/standardPressure, g.PPFD, g.Temperature, heat)
+	k := leaf.Limits(g.Ci, leaf.Air{PPFD: g.PPFD, Temperature: g.Temperature, Pressure: g.Pressure}, heat)
 	return limits{net: g.Net, rubisco: k.Rubisco, byElectrons: k.Electrons, light: k.Light, jmax: k.Jmax, rd: k.Rd, exports: g.Ci >= leastExports}
 }
 

@@ -141,7 +141,7 @@ func TestTropicalCapacities(t *testing.T) {
 func simulated(b leaf.Biochemistry, export, celsius float64) (out []Gas) {
 	gamma := math.Exp(19.02 - 37.83/(8.314e-3*(celsius+273.15))) // ppm, Bernacchi et al. (2001)
 	for _, ci := range []float64{40, 70, 100, 150, 200, 260, 330, 450, 600, 800, 1100, 1400} {
-		k := leaf.Limits(ci, 1500, celsius, b.Heat)
+		k := leaf.Limits(ci, leaf.Air{PPFD: 1500, Temperature: celsius}, b.Heat)
 		share := 1 - gamma/ci
 		wc, wj := b.Vcmax*k.Rubisco/share, leaf.Electrons(k.Light, b.Jmax*k.Jmax)*k.Electrons/share
 		rate := math.Min(share*math.Min(wc, wj), 3*export)
@@ -211,7 +211,7 @@ func TestSimulatedExport(t *testing.T) {
 		v := 40 + 60*rng.Float64()
 		b := leaf.Biochemistry{Vcmax: v, Jmax: 1.4 * v, Rd: 0.015 * v, Heat: leaf.Bernacchi{}}
 		celsius := 22 + 8*rng.Float64()
-		k := leaf.Limits(600, 1500, celsius, b.Heat)
+		k := leaf.Limits(600, leaf.Air{PPFD: 1500, Temperature: celsius}, b.Heat)
 		export := leaf.Electrons(k.Light, b.Jmax*k.Jmax) * k.Electrons / 3
 		curve := simulated(b, export, celsius)
 		c, err := CO2Curve(curve, b.Heat)
@@ -304,5 +304,35 @@ func TestCO2CurveSaysWhatIsMissing(t *testing.T) {
 	}
 	if _, err := CO2Curve(whole, nil); err == nil || !strings.Contains(err.Error(), "temperature response") {
 		t.Errorf("without a temperature response: %v", err)
+	}
+}
+
+// A leaf measured on a mountain gives its capacities back where the pressure is told, and too little Rubisco where it is not. Rates are written in
+// partial pressures here, Pa and kPa.
+func TestPressureOfTheAir(t *testing.T) {
+	const celsius, kPa = 25.0, 80.0
+	b := leaf.Biochemistry{Vcmax: 60, Jmax: 105, Rd: 0.9, Heat: leaf.Bernacchi{}}
+	at := func(c, activation float64) float64 { return math.Exp(c - activation/(8.314e-3*(celsius+273.15))) }
+	Kc, Ko, gamma := at(38.05, 79.43)*0.101325, at(20.30, 36.38)*0.101325, at(19.02, 37.83)*0.101325*kPa/101.325
+	var curve []Gas
+	for _, ci := range []float64{60, 100, 150, 200, 260, 330, 450, 600, 800, 1100} {
+		Pa, O := ci*kPa*1e-3, 0.210*kPa
+		wc := b.Vcmax * (Pa - gamma) / (Pa + Kc*(1+O/Ko))
+		wj := leaf.Electrons(1500*0.85*0.85/2, b.Jmax) * (Pa - gamma) / (4 * (Pa + 2*gamma))
+		curve = append(curve, Gas{Ci: ci, Net: math.Min(wc, wj) - b.Rd, PPFD: 1500, Temperature: celsius, Pressure: kPa})
+	}
+	c, err := CO2Curve(curve, b.Heat)
+	if err != nil || !same(c.Vcmax, b.Vcmax) || !same(c.Jmax, b.Jmax) || !same(c.Rd, b.Rd) {
+		t.Errorf("%+v, %v", c, err)
+	}
+	for i := range curve {
+		curve[i].Pressure = 0
+	}
+	if c, err = CO2Curve(curve, b.Heat); err != nil {
+		t.Fatal(err)
+	}
+	t.Logf("taken for sea level: Vcmax %.1f for %g, Jmax %.1f for %g", c.Vcmax.Value, b.Vcmax, c.Jmax.Value, b.Jmax)
+	if c.Vcmax.Value > 0.97*b.Vcmax {
+		t.Error("the pressure makes no difference")
 	}
 }

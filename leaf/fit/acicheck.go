@@ -4,10 +4,9 @@ import (
 	"errors"
 	"fmt"
 	"math"
-)
 
-// standardPressure, kPa.
-const standardPressure = 101.325
+	"shadeledger/leaf"
+)
 
 // least of points and CO2 that a curve must have.
 const (
@@ -58,7 +57,7 @@ func checkGas(readings []Gas) error {
 // pressure of the air, kPa.
 func pressure(g Gas) float64 {
 	if g.Pressure == 0 {
-		return standardPressure
+		return leaf.StandardPressure
 	}
 	return g.Pressure
 }

@@ -16,9 +16,6 @@ type air struct {
 
 const monthBefore = 30 // d, over which leaves acclimate (Kattge & Knorr 2007)
 
-// The range of growth temperatures of Kattge & Knorr (2007), deg C.
-const coolest, warmest = 11, 35
-
 func newAir(p *Plant, above *light.Above) air {
 	a := air{plant: p, above: above}
 	if p.Chemistry != nil && p.Chemistry.Acclimates {
@@ -42,16 +39,30 @@ func before(mean, weight []float64) []float64 {
 	return out
 }
 
-// ratios of a sub-step: by temperature alone, or by temperature, humidity and carbon dioxide.
+// ratios of a sub-step: by temperature alone, or by temperature, humidity, pressure and carbon dioxide.
 func (a *air) ratios(day, step int) leaf.Ratios {
 	celsius := a.above.Series.Temperature[step]
 	c := a.plant.Chemistry
 	if c == nil {
 		return leaf.Ratios{Ag: a.plant.Temperature.AgFactor(celsius), Phi: 1, Cap: 1}
 	}
+	return a.kinetics(day).Ratios(leaf.Air{Temperature: celsius, CO2: c.CO2, VPD: a.above.Series.Deficit(step), Pressure: c.Pressure})
+}
+
+// warmth is the capacity at a temperature over that at its optimum.
+func (a *air) warmth(day int, celsius float64) float64 {
+	if a.plant.Chemistry == nil {
+		return a.plant.Temperature.Warmth(celsius)
+	}
+	return a.kinetics(day).Warmth(celsius)
+}
+
+// kinetics of a biochemical plant on a day.
+func (a *air) kinetics(day int) leaf.Kinetics {
+	c := a.plant.Chemistry
 	k := leaf.Kinetics{G1: c.Leaf.G1, Heat: leaf.Bernacchi{}}
 	if c.Acclimates {
-		k.Heat = leaf.Acclimated{Growth: math.Max(coolest, math.Min(warmest, a.month[day]))}
+		k.Heat = leaf.NewAcclimated(a.month[day])
 	}
-	return k.Ratios(leaf.Air{Temperature: celsius, CO2: c.CO2, VPD: a.above.Series.Deficit(step)})
+	return k
 }

@@ -36,6 +36,8 @@ type Plant struct {
 type Chemistry struct {
 	Leaf leaf.Biochemistry // what the trait sets were made from
 	CO2  float64           // of the air, ppm
+	// Pressure of the air, kPa; 0 is that at sea level.
+	Pressure float64
 	// Acclimates tells whether capacities follow the mean temperature of the month before (Kattge & Knorr 2007).
 	Acclimates bool
 }

@@ -159,7 +159,7 @@ func (r *Prepared) lit() {
 			β := s.Lit.Elevation[i]
 			sinβ, cosβ := math.Sincos(β)
 			T := s.Temperature[s.Lit.Step[i]]
-			awake := p.Dormancy.Awake(p.Temperature, states[d], T)
+			awake := p.Dormancy.Awake(states[d], air.warmth(d, T))
 			if awake == 0 {
 				continue
 			}
