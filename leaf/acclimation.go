@@ -76,18 +76,16 @@ func (t TwoSets) Rule() string {
 }
 func (TwoSets) acclimation() {}
 
-// PowerLaw carries one set measured at RefLight to other growth lights: r = (L/L_ref)^B with L and
-// L_ref held at 50 % above it, LMA = LMA_ref r, Amax (net) ~ r^AmaxExponent, Rd ~ r^RdExponent, Phi
-// and Theta unchanged. At the reference light it gives the reference set. Of a biochemical set both capacities follow r^AmaxExponent.
+// PowerLaw carries one set measured at RefLight to other growth lights: with L and L_ref held at 50 % above it and r = L/L_ref,
+// LMA ~ r^LMA, Amax (net) ~ r^Amax, Rd ~ r^Rd, Phi and Theta unchanged. At the reference light it gives the reference set. Of a biochemical
+// set both capacities follow the exponent of Amax.
 type PowerLaw struct {
-	Ref          Set
-	RefLight     float64 // percent of full light
-	B            float64 // of LMA on light
-	AmaxExponent float64 // of net Amax on LMA
-	RdExponent   float64 // of Rd on LMA
+	Ref           Set
+	RefLight      float64 // percent of full light
+	LMA, Amax, Rd float64 // exponents on light
 }
 
-// NewPowerLaw checks the set, the light 1..100, B 0..1 and the exponents 0..3.
+// NewPowerLaw checks the set, the light 1..100 and the exponents 0..2.
 func NewPowerLaw(p PowerLaw) (PowerLaw, error) {
 	if err := p.Ref.Check(); err != nil {
 		return p, err
@@ -96,8 +94,8 @@ func NewPowerLaw(p PowerLaw) (PowerLaw, error) {
 		name         string
 		v, low, high float64
 	}{
-		{"growth light of the set", p.RefLight, darkest, fullest}, {"exponent of LMA on light", p.B, 0, 1},
-		{"exponent of amax on LMA", p.AmaxExponent, 0, 3}, {"exponent of rd on LMA", p.RdExponent, 0, 3},
+		{"growth light of the set", p.RefLight, darkest, fullest}, {"exponent of LMA on light", p.LMA, 0, 2},
+		{"exponent of amax on light", p.Amax, 0, 2}, {"exponent of rd on light", p.Rd, 0, 2},
 	} {
 		if !(c.v >= c.low && c.v <= c.high) {
 			return p, fmt.Errorf("%s is %g; it must be %g to %g", c.name, c.v, c.low, c.high)
@@ -108,19 +106,20 @@ func NewPowerLaw(p PowerLaw) (PowerLaw, error) {
 
 // At is the set grown at a light.
 func (p PowerLaw) At(light float64) Set {
-	r := math.Pow(math.Min(ClampLight(light), levelOff)/math.Min(ClampLight(p.RefLight), levelOff), p.B)
-	amax := p.Ref.Amax() * math.Pow(r, p.AmaxExponent)
-	rd := p.Ref.Rd * math.Pow(r, p.RdExponent)
+	r := math.Log(math.Min(ClampLight(light), levelOff) / math.Min(ClampLight(p.RefLight), levelOff))
+	rate := math.Exp(p.Amax * r)
+	s := Set{Rd: p.Ref.Rd * math.Exp(p.Rd*r), Phi: p.Ref.Phi, Theta: p.Ref.Theta, LMA: p.Ref.LMA * math.Exp(p.LMA*r)}
 	if p.Ref.Cap > 0 {
-		k := math.Pow(r, p.AmaxExponent)
-		return Set{Ag: p.Ref.Ag * k, Cap: p.Ref.Cap * k, Rd: rd, Phi: p.Ref.Phi, Theta: p.Ref.Theta, LMA: p.Ref.LMA * r}
+		s.Ag, s.Cap = p.Ref.Ag*rate, p.Ref.Cap*rate
+		return s
 	}
-	return Set{Ag: amax + rd, Rd: rd, Phi: p.Ref.Phi, Theta: p.Ref.Theta, LMA: p.Ref.LMA * r}
+	s.Ag = p.Ref.Amax()*rate + s.Rd
+	return s
 }
 
 // Rule names the rule, its exponents and clamps.
 func (p PowerLaw) Rule() string {
-	return fmt.Sprintf("one set at %.3g %% light; LMA ~ light^%.3g, level above 50 %%, Amax ~ LMA^%.3g, Rd ~ LMA^%.3g", p.RefLight, p.B, p.AmaxExponent, p.RdExponent)
+	return fmt.Sprintf("one set at %.3g %% light; LMA ~ light^%.3g, Amax ~ light^%.3g, Rd ~ light^%.3g, level above 50 %%", p.RefLight, p.LMA, p.Amax, p.Rd)
 }
 func (PowerLaw) acclimation() {}
 

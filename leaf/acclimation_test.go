@@ -38,7 +38,7 @@ func TestTwoSetsLieBetweenTheirEnds(t *testing.T) {
 
 func TestPowerLawGivesItsReferenceAndLevelsOff(t *testing.T) {
 	for _, ref := range []float64{1, 5, 20, 50, 80, 100} {
-		p, err := NewPowerLaw(PowerLaw{Ref: oakSun, RefLight: ref, B: 0.25, AmaxExponent: 1, RdExponent: 1.4})
+		p, err := NewPowerLaw(PowerLaw{Ref: oakSun, RefLight: ref, LMA: 0.25, Amax: 0.25, Rd: 0.35})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -49,7 +49,7 @@ func TestPowerLawGivesItsReferenceAndLevelsOff(t *testing.T) {
 			t.Errorf("reference %g: not held above 50 or below 1 %%", ref)
 		}
 	}
-	p := PowerLaw{Ref: oakSun, RefLight: 50, B: 0.25, AmaxExponent: 1, RdExponent: 1.4}
+	p := PowerLaw{Ref: oakSun, RefLight: 50, LMA: 0.25, Amax: 0.25, Rd: 0.35}
 	s := p.At(5)
 	r := math.Pow(0.1, 0.25)
 	near(t, "LMA", s.LMA, 84.3*r, 1e-14)
@@ -67,7 +67,7 @@ func TestRulesPrintTheirNumbers(t *testing.T) {
 	}{
 		{Constant{oakSun}, []string{"13.8", "1.22", "84.3"}},
 		{TwoSets{oakSun, oakShade, 50, 5}, []string{"50", "5 %", "logarithm"}},
-		{PowerLaw{oakSun, 50, 0.25, 1, 1.4}, []string{"0.25", "1.4", "50 %"}},
+		{PowerLaw{oakSun, 50, 0.25, 0.25, 0.35}, []string{"0.25", "0.35", "50 %"}},
 	} {
 		for _, w := range c.want {
 			if !strings.Contains(c.a.Rule(), w) {
@@ -95,7 +95,7 @@ func TestBadTraitsAreRefused(t *testing.T) {
 	if _, err := NewTwoSets(TwoSets{oakSun, oakShade, 5, 50}); err == nil {
 		t.Error("a shade light above the sun light passed")
 	}
-	if _, err := NewPowerLaw(PowerLaw{oakSun, 0.5, 0.25, 1, 1}); err == nil {
+	if _, err := NewPowerLaw(PowerLaw{oakSun, 0.5, 0.25, 0.25, 0.25}); err == nil {
 		t.Error("a growth light below 1 % passed")
 	}
 }
@@ -134,7 +134,7 @@ func TestRespirationMeasuredElsewhereComesToTheReference(t *testing.T) {
 
 func BenchmarkAt(b *testing.B) {
 	two := TwoSets{Sun: oakSun, Shade: oakShade, SunLight: 50, ShadeLight: 5}
-	power := PowerLaw{oakSun, 50, 0.25, 1, 1.4}
+	power := PowerLaw{oakSun, 50, 0.25, 0.25, 0.35}
 	b.Run("two sets", func(b *testing.B) {
 		for b.Loop() {
 			sink += two.At(12).Ag
@@ -149,7 +149,7 @@ func BenchmarkAt(b *testing.B) {
 
 func TestTheClampThatAppliedIsTold(t *testing.T) {
 	two := TwoSets{oakSun, oakShade, 50, 5}
-	power := PowerLaw{oakSun, 50, 0.25, 1, 1.4}
+	power := PowerLaw{oakSun, 50, 0.25, 0.25, 0.35}
 	for _, c := range []struct {
 		a     Acclimation
 		light float64

@@ -6,7 +6,6 @@ import (
 	"os"
 	"sort"
 	"strconv"
-	"strings"
 	"testing"
 
 	"shadeledger/leaf"
@@ -81,77 +80,6 @@ func breakEvens(t *testing.T) map[string]float64 {
 		}
 	}
 	return out
-}
-
-// meant is the break-even of a row of the table: of the species, or the median of the library's species of a genus.
-func meant(all map[string]float64, name string) (float64, bool) {
-	if v, ok := all[name]; ok {
-		return v, true
-	}
-	genus, _, several := strings.Cut(name, " spp.")
-	var of []float64
-	for species, v := range all {
-		if several && strings.HasPrefix(species, genus+" ") {
-			of = append(of, v)
-		}
-	}
-	if len(of) == 0 {
-		return math.NaN(), false
-	}
-	sort.Float64s(of)
-	return of[len(of)/2], true
-}
-
-// settled is every other row of the table: the half that the levels of organ respiration were settled on. The other half was in sight too (DEVELOPERS.md).
-const settled = "Tsuga canadensis, Acer saccharum, Cornus florida, Tsuga heterophylla, Thuja plicata, Picea glauca, Tilia americana, Pinus strobus, " +
-	"Betula alleghaniensis, Quercus spp. (most), Fraxinus americana, Prunus serotina, Platanus occidentalis, Quercus coccinea, Pinus resinosa, " +
-	"Pinus taeda, Pinus palustris, Larix laricina, Populus spp., Populus deltoides"
-
-// Leaf-on break-even against the light classes of foresters (Spurr & Barnes 1980). In the first three classes it is to lie inside the class widened by a
-// factor of 2 on each side; the upper two reflect losing to rivals as much as carbon, there the working threshold is to be above 15 %.
-func TestBreakEvenAgainstLightClasses(t *testing.T) {
-	all := breakEvens(t)
-	type score struct{ fit, of int }
-	first, rest := map[bool]*score{true: {}, false: {}}, map[bool]*score{true: {}, false: {}}
-	var class, found []float64
-	margin := 0.0
-	for _, r := range wholePlant(t, "light_classes.csv") {
-		low, high := numeric(t, r["low"]), numeric(t, r["high"])
-		v, held := meant(all, r["species"])
-		half := strings.Contains(settled, r["species"])
-		tally := first[half]
-		fits := held && v >= low/2 && v <= 2*high
-		if low >= 30 {
-			tally = rest[half]
-			fits = held && math.Min(100, 2*v) > 15
-		} else if held {
-			margin += math.Log(math.Sqrt(low*high) / v)
-		}
-		tally.of++
-		mark := ""
-		if fits {
-			tally.fit++
-		} else {
-			mark = "MISS"
-		}
-		if held {
-			class, found = append(class, low), append(found, v)
-		}
-		t.Logf("%-22s %3.0f to %3.0f %%: break-even %5.1f %% %s", r["species"], low, high, v, mark)
-	}
-	ρ := spearman(class, found)
-	n := first[true].of + first[false].of
-	t.Logf("first three classes: %d of %d on the half the rules were settled on, %d of %d on the other; upper two: %d of %d and %d of %d", first[true].fit, first[true].of,
-		first[false].fit, first[false].of, rest[true].fit, rest[true].of, rest[false].fit, rest[false].of)
-	t.Logf("rank correlation %.3f; middle of the class over break-even, first three: %.2f", ρ, math.Exp(margin/float64(n)))
-	for half, s := range first {
-		if 10*s.fit < 8*s.of || rest[half].fit < rest[half].of {
-			t.Errorf("settled half %v: %d of %d in the first three classes, %d of %d in the upper two", half, s.fit, s.of, rest[half].fit, rest[half].of)
-		}
-	}
-	if ρ < 0.8 {
-		t.Errorf("rank correlation %.3f", ρ)
-	}
 }
 
 // spearman is the rank correlation, ties at their mean rank.

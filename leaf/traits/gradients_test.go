@@ -7,8 +7,6 @@ import (
 	"strconv"
 	"strings"
 	"testing"
-
-	"shadeledger/leaf"
 )
 
 // fullDay is full light of the gradients, mol m-2 d-1, so that 3 is 7.5 % and 40 is 100 %.
@@ -153,47 +151,101 @@ func TestAcclimationSpansCanopyGradients(t *testing.T) {
 	}
 }
 
-// The juvenile share of leaf mass per area: measured saplings over needles of trees of this library at their light, if their area is projected, and
-// 2.5 times that if it is all-sided; the rule is the geometric mean of the two.
-func TestJuvenileShareFollowsMeasuredSaplings(t *testing.T) {
-	var ratios []float64
-	for _, r := range readTable(t, "juveniles.csv") {
-		s, err := Find(r["tree"])
-		if err != nil {
-			t.Fatal(err)
-		}
-		v, _ := s.Value("lma")
-		if v.Basis != Seen {
-			continue
-		}
-		ratio := parse(t, r["lma"]) / s.Acclimation().At(parse(t, r["light"])).LMA
-		t.Logf("%s: %.2f", r["species"], ratio)
-		ratios = append(ratios, ratio)
+// saplings reads light and leaf mass per area of wild conifer saplings by species.
+func saplings(t *testing.T) (light, lma map[string][]float64) {
+	t.Helper()
+	light, lma = map[string][]float64{}, map[string][]float64{}
+	for _, r := range readTable(t, "saplings.csv") {
+		light[r["species"]] = append(light[r["species"]], parse(t, r["light"]))
+		lma[r["species"]] = append(lma[r["species"]], parse(t, r["lma"]))
 	}
-	want := median(ratios) * math.Sqrt(2.5)
-	for _, g := range []string{"pine", "needle"} {
-		for _, name := range []string{"juvenile_lma", "juvenile_rd"} {
-			if got := parse(t, byRule(t, name, g, "mid")["value"]); math.Abs(got-want) > 0.01 {
-				t.Errorf("%s of %s: %g, from %d species %.3f", name, g, got, len(ratios), want)
+	return light, lma
+}
+
+// Needles of saplings weigh what the rules and the library say: medians by species, over species by genus and group.
+func TestSeedlingNeedlesFollowMeasuredSaplings(t *testing.T) {
+	_, lma := saplings(t)
+	white, err := Find("Pinus strobus")
+	if err != nil {
+		t.Fatal(err)
+	}
+	of := map[string][]float64{"Pinus": {white.get("shade_lma")}}
+	for species, all := range lma {
+		m := median(all)
+		genus, _, _ := strings.Cut(species, " ")
+		of[genus] = append(of[genus], m)
+		t.Logf("%s: %.1f g m-2, %d saplings", species, m, len(all))
+		if s, err := Find(species); err == nil && s.Botanical != "Pinus contorta" {
+			if got := s.own["seedling_lma"]; got.Basis != Seen || math.Abs(got.Value-m) > 0.1 {
+				t.Errorf("%s: %+v in the library, %.1f measured", species, got, m)
 			}
+		}
+	}
+	of["needle"] = append(append([]float64{}, of["Abies"]...), of["Picea"]...)
+	of["larch"], of["pine"] = of["needle"], of["Pinus"]
+	for _, group := range []string{"Abies", "Picea", "needle", "larch", "pine"} {
+		got, want := parse(t, byRule(t, "seedling_lma", group, "mid")["value"]), median(of[group])
+		if math.Abs(got-want) > 0.1 {
+			t.Errorf("seedling_lma of %s: %g, from %d species %.2f", group, got, len(of[group]), want)
 		}
 	}
 }
 
-// On seedlings needles are thinner and breathe less, at the same rate per area; measured sapling sets stand, and broadleaves are alike.
+// Their leaf mass per area is the same at every light: the slopes of ln LMA on ln light of firs and spruces, weighted by their
+// variances, are level.
+func TestSeedlingNeedlesAreLevelOverLight(t *testing.T) {
+	light, lma := saplings(t)
+	var sum, weight float64
+	for species, x := range light {
+		b, variance := slope(x, lma[species])
+		t.Logf("%s: %.3f, standard error %.3f", species, b, math.Sqrt(variance))
+		if !strings.HasPrefix(species, "Pinus") {
+			sum, weight = sum+b/variance, weight+1/variance
+		}
+	}
+	b, se := sum/weight, math.Sqrt(1/weight)
+	t.Logf("firs and spruces: %.3f, standard error %.3f; trees within their crowns 0.303", b, se)
+	if math.Abs(b) > 2*se || se > 0.05 {
+		t.Errorf("slope %.3f, standard error %.3f", b, se)
+	}
+}
+
+// slope of ln y on ln x and its variance, by least squares.
+func slope(x, y []float64) (b, variance float64) {
+	n := float64(len(x))
+	var mx, my, xx, xy, yy float64
+	for i := range x {
+		mx, my = mx+math.Log(x[i])/n, my+math.Log(y[i])/n
+	}
+	for i := range x {
+		dx, dy := math.Log(x[i])-mx, math.Log(y[i])-my
+		xx, xy, yy = xx+dx*dx, xy+dx*dy, yy+dy*dy
+	}
+	b = xy / xx
+	return b, (yy - b*xy) / (n - 2) / xx
+}
+
+// Needles of seedlings weigh and breathe the same at every light, at the net rate of trees, and breathe no less per mass than
+// trees do; broad leaves are those of trees.
 func TestSeedlingLeaves(t *testing.T) {
-	at := func(a leaf.Acclimation, light float64) leaf.Set { return a.At(light) }
 	for _, s := range All() {
-		for _, light := range []float64{2, 20, 100} {
-			tree, young := at(s.Acclimation(), light), at(s.SeedlingAcclimation(), light)
+		full := s.SeedlingAcclimation().At(100)
+		for _, light := range []float64{1, 2, 20, 100} {
+			tree, young := s.Acclimation().At(light), s.SeedlingAcclimation().At(light)
 			if err := young.Check(); err != nil {
 				t.Errorf("%s at %g %%: %v", s.Botanical, light, err)
 			}
-			if young.LMA > tree.LMA*(1+1e-12) || young.Rd > tree.Rd*(1+1e-12) || math.Abs(young.Amax()-tree.Amax()) > 1e-9 {
+			if !s.Needled() {
+				if tree != young {
+					t.Errorf("%s at %g %%: leaves of seedlings differ", s.Botanical, light)
+				}
+				continue
+			}
+			if math.Abs(young.LMA-full.LMA) > 1e-9 || math.Abs(young.Rd-full.Rd) > 1e-9 || math.Abs(young.Amax()-tree.Amax()) > 1e-9 {
 				t.Errorf("%s at %g %%: tree %+v, seedling %+v", s.Botanical, light, tree, young)
 			}
-			if thin := s.Group == Pine || s.Group == Needle; !thin && tree != young {
-				t.Errorf("%s at %g %%: leaves of seedlings differ", s.Botanical, light)
+			if young.LMA < 41 || !s.Paired() && math.Abs(young.Rd/young.LMA/(s.Acclimation().At(50).Rd/s.Acclimation().At(50).LMA)-1) > 1e-9 {
+				t.Errorf("%s at %g %%: %+v", s.Botanical, light, young)
 			}
 		}
 	}

@@ -51,9 +51,7 @@ func TestEnoughIsSeen(t *testing.T) {
 	}
 	both := 0
 	for _, s := range All() {
-		amax, _ := s.Value("amax")
-		rd, _ := s.Value("rd")
-		if amax.Basis == Seen && rd.Basis == Seen {
+		if s.Measured() {
 			both++
 		}
 	}

@@ -42,7 +42,7 @@ func parse(t *testing.T, s string) float64 {
 func expected(t *testing.T, s *Species, name string) float64 {
 	t.Helper()
 	rule := func(v string) float64 {
-		return parse(t, byRule(t, v, string(s.Group), classOf(s.Tolerance()))["value"])
+		return parse(t, byRule(t, v, string(s.Group)+" "+s.Genus(), classOf(s.Tolerance()))["value"])
 	}
 	own := func(v string) float64 {
 		x, ok := s.Value(v)
@@ -54,6 +54,8 @@ func expected(t *testing.T, s *Species, name string) float64 {
 	switch name {
 	case "rd":
 		return rule("rd_share") * own("amax")
+	case "seedling_rd":
+		return own("rd") * own("seedling_lma") / own("lma")
 	case "growth_light":
 		return rule("growth_light." + s.position)
 	case "shade_growth_light":
@@ -71,16 +73,16 @@ func expected(t *testing.T, s *Species, name string) float64 {
 }
 
 func lmaAtTen(s *Species, own func(string) float64) float64 {
-	sun, light := own("lma"), own("growth_light")
-	if s.Needled() && s.Group != Larch {
-		sun *= own("juvenile_lma")
-	}
-	if s.Paired() {
+	switch {
+	case s.Needled() && s.Paired():
+		return own("shade_lma")
+	case s.Needled():
+		return own("seedling_lma")
+	case s.Paired():
 		low := own("shade_growth_light")
-		sun = math.Max(sun, own("shade_lma"))
-		return own("shade_lma") + (sun-own("shade_lma"))*math.Log(10/low)/math.Log(light/low)
+		return own("shade_lma") + (own("lma")-own("shade_lma"))*math.Log(10/low)/math.Log(own("growth_light")/low)
 	}
-	return sun * math.Pow(10/light, own("lma_exponent"))
+	return own("lma") * math.Pow(10/own("growth_light"), own("lma_exponent"))
 }
 
 func TestEveryDerivedValueFollowsItsRule(t *testing.T) {

@@ -81,6 +81,11 @@ func (s *Species) Genus() string {
 	return genus
 }
 
+// Measured tells whether the light-saturated rate and the respiration are both its own, seen; else one of them is its group's.
+func (s *Species) Measured() bool {
+	return s.own["amax"].Basis == Seen && s.own["rd"].Basis == Seen
+}
+
 // Paired tells whether the leaf traits are a measured sun set and a measured shade set.
 func (s *Species) Paired() bool { return s.shadePosition != "" }
 
@@ -105,17 +110,18 @@ func (s *Species) resolve() {
 		s.add(v)
 	}
 	s.addRd()
+	s.addSeedling()
 	s.addLights()
 	s.addPlant()
 }
 
 var ownOrder = []string{"tolerance", "amax", "rd", "phi", "theta", "lma", "t_ref", "shade_amax", "shade_rd",
-	"shade_phi", "shade_theta", "shade_lma", "shade_t_ref", "leaf_lifespan", "lma_exponent", "vcmax", "jmax", "biochemical_rd"}
+	"shade_phi", "shade_theta", "shade_lma", "shade_t_ref", "leaf_lifespan", "lma_exponent", "seedling_lma", "vcmax", "jmax", "biochemical_rd"}
 
-// ruled is the first rule of a variable that fits the group and the tolerance class.
+// ruled is the first rule of a variable that fits the genus or the group, and the tolerance class.
 func (s *Species) ruled(name string) (Value, bool) {
 	for _, r := range s.library.rules[name] {
-		if (r.group == "any" || r.group == string(s.Group)) && (r.class == "any" || r.class == string(s.Class())) {
+		if (r.group == "any" || r.group == string(s.Group) || r.group == s.Genus()) && (r.class == "any" || r.class == string(s.Class())) {
 			return r.value, true
 		}
 	}
@@ -131,7 +137,7 @@ func (s *Species) omitted(name string) bool {
 		return !s.Paired()
 	case "leaf_out", "leaf_full", "leaf_colour", "leaf_bare", "seedling_lead":
 		return !s.Deciduous()
-	case "lma_exponent", "amax_exponent", "rd_exponent":
+	case "lma_exponent", "amax_exponent", "rd_exponent", "seedling_lma":
 		return s.Paired()
 	}
 	return false
@@ -171,7 +177,7 @@ func (s *Species) addPlant() {
 	s.add(leaves)
 	s.add(part("stem_mass", stem.Value, stem.Source))
 	s.add(part("root_mass", 1-leaf.Value-stem.Value, stem.Source))
-	lma := s.juvenile().At(plantLight).LMA
+	lma := s.seedling().At(plantLight).LMA
 	s.add(Value{"leaf_area", leaves.Value / lma, leaves.Low / lma, leaves.High / lma, "m2", leaf.Source, Derived,
 		fmt.Sprintf("leaf mass over the leaf mass per area at %d %% light", plantLight)})
 }
@@ -194,39 +200,48 @@ func (s *Species) Acclimation() leaf.Acclimation {
 	return s.acclimation()
 }
 
-// SeedlingAcclimation is the same for the leaves of seedlings and saplings: leaf mass, respiration and the light-saturated rate of a set that
-// was measured in trees are multiplied by the juvenile shares. The lower set of a measured pair is of saplings: it stands, and the upper set
-// does not fall below it.
+// SeedlingAcclimation is the same for the leaves of seedlings and saplings. Needles of wild saplings weigh the same at every light
+// (`seedling_lma`) and breathe per mass as those of trees do (`seedling_rd`); their light-saturated rate is that of a tree's
+// needles at their light. The lower set of a measured pair is of saplings: its mass and respiration hold.
 func (s *Species) SeedlingAcclimation() leaf.Acclimation {
 	s.once.Do(s.resolve)
-	return s.juvenile()
+	return s.seedling()
 }
 
-func (s *Species) juvenile() leaf.Acclimation {
+func (s *Species) seedling() leaf.Acclimation {
+	if !s.Needled() {
+		return s.acclimation()
+	}
 	switch a := s.acclimation().(type) {
 	case leaf.PowerLaw:
-		a.Ref = s.young(a.Ref)
+		rd := s.values[s.at["seedling_rd"]].Value / s.temperature().RdFactor(s.values[s.at["t_ref"]].Value)
+		a.Ref = withRd(a.Ref, rd)
+		a.Ref.LMA, a.LMA, a.Rd = s.values[s.at["seedling_lma"]].Value, 0, 0
 		return a
 	case leaf.TwoSets:
-		young := s.young(a.Sun)
-		rd := math.Max(young.Rd, math.Min(a.Sun.Rd, a.Shade.Rd))
-		a.Sun = leaf.Set{Ag: young.Amax() + rd, Rd: rd, Phi: young.Phi, Theta: young.Theta, LMA: math.Max(young.LMA, math.Min(a.Sun.LMA, a.Shade.LMA))}
+		a.Sun = withRd(a.Sun, a.Shade.Rd)
+		a.Sun.LMA = a.Shade.LMA
 		return a
 	default:
 		return a
 	}
 }
 
-// young is a tree's set on a seedling.
-func (s *Species) young(t leaf.Set) leaf.Set {
-	share := func(n string) float64 {
-		if i, ok := s.at[n]; ok {
-			return s.values[i].Value
-		}
-		return 1
+// withRd is a set of the same net rate that breathes otherwise.
+func withRd(s leaf.Set, rd float64) leaf.Set {
+	s.Ag, s.Rd = s.Amax()+rd, rd
+	return s
+}
+
+// addSeedling gives needles of seedlings their respiration: per mass that of the tree's.
+func (s *Species) addSeedling() {
+	i, needles := s.at["seedling_lma"]
+	if !needles {
+		return
 	}
-	rd := t.Rd * share("juvenile_rd")
-	return leaf.Set{Ag: t.Amax() + rd, Rd: rd, Phi: t.Phi, Theta: t.Theta, LMA: t.LMA * share("juvenile_lma")}
+	lma, tree, rd := s.values[i], s.values[s.at["lma"]].Value, s.values[s.at["rd"]].Value
+	s.add(Value{"seedling_rd", rd * lma.Value / tree, rd * lma.Low / tree, rd * lma.High / tree, "umol m-2 s-1", lma.Source, Derived,
+		"rd times seedling_lma over lma: needles of seedlings breathe per mass as those of trees"})
 }
 
 func (s *Species) acclimation() leaf.Acclimation {
@@ -234,8 +249,8 @@ func (s *Species) acclimation() leaf.Acclimation {
 	if s.Paired() {
 		return leaf.TwoSets{Sun: s.set(""), Shade: s.set("shade_"), SunLight: val("growth_light"), ShadeLight: val("shade_growth_light")}
 	}
-	return leaf.PowerLaw{Ref: s.set(""), RefLight: val("growth_light"), B: val("lma_exponent"),
-		AmaxExponent: val("amax_exponent"), RdExponent: val("rd_exponent")}
+	b := val("lma_exponent")
+	return leaf.PowerLaw{Ref: s.set(""), RefLight: val("growth_light"), LMA: b, Amax: b * val("amax_exponent"), Rd: b * val("rd_exponent")}
 }
 
 // set brings a measured set to the species' reference temperature: Rd by its own curve, Ag by the

@@ -55,7 +55,7 @@ func TestBiochemicalBreakEven(t *testing.T) {
 	s := synthetic(3)
 	season, on := masks(s)
 	above := light.NewAbove(s, radiation.Overcast{}, light.Station)
-	law := leaf.PowerLaw{Ref: bench.Set(60), RefLight: 50, B: 0.25, AmaxExponent: 1.1, RdExponent: 1.4}
+	law := leaf.PowerLaw{Ref: bench.Set(60), RefLight: 50, LMA: 0.25, Amax: 0.275, Rd: 0.35}
 	g := shade(above, 0.1)
 	last := math.Inf(1)
 	for _, c := range []struct {

@@ -104,13 +104,10 @@ func (r *plantReader) powers(leafKeys map[string]val, set leaf.Set, light float6
 	law := leaf.PowerLaw{Ref: set, RefLight: light}
 	switch a := r.species.SeedlingAcclimation().(type) {
 	case leaf.PowerLaw:
-		law.B, law.AmaxExponent, law.RdExponent = a.B, a.AmaxExponent, a.RdExponent
+		law.LMA, law.Amax, law.Rd = a.LMA, a.Amax, a.Rd
 	case leaf.TwoSets:
-		lma := math.Log(a.Sun.LMA / a.Shade.LMA)
-		law.B = lma / math.Log(a.SunLight/a.ShadeLight)
-		if lma > 0 {
-			law.AmaxExponent, law.RdExponent = math.Log(a.Sun.Amax()/a.Shade.Amax())/lma, math.Log(a.Sun.Rd/a.Shade.Rd)/lma
-		}
+		span := math.Log(a.SunLight / a.ShadeLight)
+		law.LMA, law.Amax, law.Rd = math.Log(a.Sun.LMA/a.Shade.LMA)/span, math.Log(a.Sun.Amax()/a.Shade.Amax())/span, math.Log(a.Sun.Rd/a.Shade.Rd)/span
 	}
 	return law
 }

@@ -154,7 +154,7 @@ func (r *plantReader) plant(p *ledger.Plant) {
 	if x, ok := r.number(r.f["threshold_factor"]); ok {
 		p.Factor = x
 	} else if !r.f["threshold_factor"].present() {
-		r.assume(r.block.path+".threshold_factor", "2.0", "growth-based field minima over gas-exchange values, 1.5 to 3.5 (Baltzer & Thomas 2007)")
+		r.assume(r.block.path+".threshold_factor", "2.0", "a margin for comfort, chosen; field minima were 1.5 to 3.5 times those of gas exchange (Baltzer & Thomas 2007)")
 	}
 }
 
@@ -270,6 +270,10 @@ func (r *plantReader) acclimation(block val, f map[string]val, scale float64, t 
 		return leaf.Constant{Set: librarySun}
 	}
 	r.from = append(r.from, "leaf ("+library.Rule()+")")
+	if !r.species.Measured() {
+		r.warnings = append(r.warnings, scenarios.Warning{Key: block.path, Text: "of " + r.species.Botanical +
+			" itself no light-saturated rate with its respiration was seen: leaves of its group stand for it, so its class tells the group's (give leaf.sun where measured)"})
+	}
 	return library
 }
 

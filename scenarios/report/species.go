@@ -97,6 +97,9 @@ func SpeciesPage(o Output, s *traits.Species) error {
 	}
 	p := &printer{w: o.Out}
 	p.f("%s: %s, %s\n", library, s.Botanical, s.Common)
+	if !s.Measured() {
+		p.f("Its leaf rates are partly or wholly those of its group: read its place among others so.\n")
+	}
 	t := newTable("value", "", "low", "high", "unit", "basis", "source or rule")
 	for _, e := range entries {
 		v := e.value
