@@ -1,0 +1,171 @@
+package weather
+
+import (
+	"math"
+
+	"shadeledger/radiation"
+)
+
+// observed is one sound day of a record.
+type observed struct {
+	day     int // place in the table of days
+	state   int
+	follows bool // the day before it is observed too
+	rain    float64
+	value   [variables]float64 // highest, lowest temperature, clearness (NaN where there is no sun), humidity
+	score   vector             // NaN where it has none
+}
+
+// leastTop is the extraterrestrial energy below which a day's clearness says nothing, MJ m-2 d-1 (chosen).
+const leastTop = 0.5
+
+// FitGenerator finds a generator from daily rows: at least five days a year of rows, gaps of whole years allowed. Days
+// that lack global radiation (or sunshine), a temperature or rain are left out; a calendar month with less than
+// 95 % of its days in any five years is a fault. The error is a *FitError listing every fault. Rain missing from every
+// row makes a generator of one kind of day; humidity is drawn only if nearly every row gives it.
+func FitGenerator(rows []DailyRecord, site radiation.Site) (*Generator, error) {
+	g := newGenerator(site)
+	days, problems := g.observe(rows)
+	if len(problems) > 0 {
+		return nil, &FitError{problems}
+	}
+	g.fitRain(days)
+	g.settle()
+	size := humidity
+	if g.humidShare(days) > mostMissing {
+		size = variables
+	}
+	for v := warmest; v <= coldestOfDay; v++ {
+		g.fitTemperature(days, v)
+	}
+	g.clear = scoresOf(days, clearnessOfDay)
+	g.score(days, &g.clear, clearnessOfDay)
+	if size > humidity {
+		g.humid = scoresOf(days, humidity)
+		g.score(days, &g.humid, humidity)
+	}
+	m0, m1 := correlations(days, size)
+	g.process = newMatalas(size, m0, m1)
+	return g, nil
+}
+
+// fitTemperature finds mean and spread by day of the year for dry and for wet days, and the days' scores.
+func (g *Generator) fitTemperature(days []observed, v int) {
+	for s := range states {
+		var all, squares []point
+		for i := range days {
+			if days[i].state == s {
+				all = append(all, point{days[i].day, days[i].value[v]})
+			}
+		}
+		if len(all) < leastOfState { // too few for a season of their own
+			all = all[:0]
+			for i := range days {
+				all = append(all, point{days[i].day, days[i].value[v]})
+			}
+		}
+		mean := normalFamily.fit(all, mostHarmonics)
+		for _, p := range all {
+			r := p.value - mean.at(p.day)
+			squares = append(squares, point{p.day, r * r})
+		}
+		square := gammaFamily.fit(squares, 2)
+		for i := range g.days {
+			g.days[i].temperature[v][s] = spreadOf{mean.at(i), math.Exp(square.at(i) / 2)}
+		}
+	}
+	for i := range days {
+		x := g.days[days[i].day].temperature[v][days[i].state]
+		days[i].score[v] = (days[i].value[v] - x.mean) / x.sd
+	}
+}
+
+// leastOfState is the number of days below which a state has no curves of its own (chosen).
+const leastOfState = 60
+
+// scoresOf tabulates a value by state and month from the days of the month and its neighbours; from more months, in the
+// end from both states, where these are too few.
+func scoresOf(days []observed, v int) (t scoreTable) {
+	for s := range states {
+		for m := range 12 {
+			var sample []float64
+			for reach := 1; reach <= 7 && len(sample) < leastOfState; reach++ {
+				sample = sample[:0]
+				for i := range days {
+					d := &days[i]
+					apart := (monthOf(d.day) - m + 12) % 12
+					near := min(apart, 12-apart) <= reach
+					if (d.state == s || reach == 7) && near && !math.IsNaN(d.value[v]) {
+						sample = append(sample, d.value[v])
+					}
+				}
+			}
+			t[s][m] = quantilesOf(sample)
+		}
+	}
+	return t
+}
+
+// score gives every day the normal score of a value.
+func (g *Generator) score(days []observed, t *scoreTable, v int) {
+	for i := range days {
+		d := &days[i]
+		d.score[v] = math.NaN()
+		if !math.IsNaN(d.value[v]) {
+			d.score[v] = score01(t.share(d.state, g.days[d.day].place, d.value[v]), leastOfState)
+		}
+	}
+}
+
+// correlations are those of the scores of a day, and of a day (rows) with the day before (columns).
+func correlations(days []observed, size int) (m0, m1 matrix) {
+	same := func(v int) func(int) float64 { return func(i int) float64 { return days[i].score[v] } }
+	before := func(v int) func(int) float64 {
+		return func(i int) float64 {
+			if !days[i].follows {
+				return math.NaN()
+			}
+			return days[i-1].score[v]
+		}
+	}
+	for i := range size {
+		for j := range size {
+			m0[i][j] = correlation(len(days), same(i), same(j))
+			m1[i][j] = correlation(len(days), same(i), before(j))
+		}
+	}
+	return m0, m1
+}
+
+// correlation is that of the pairs that are both known.
+func correlation(n int, x, y func(int) float64) float64 {
+	var count, sx, sy, sxx, syy, sxy float64
+	for i := range n {
+		a, b := x(i), y(i)
+		if math.IsNaN(a + b) {
+			continue
+		}
+		count++
+		sx, sy, sxx, syy, sxy = sx+a, sy+b, sxx+a*a, syy+b*b, sxy+a*b
+	}
+	vx, vy := sxx-sx*sx/count, syy-sy*sy/count
+	if !(vx*vy > 0) {
+		return 0
+	}
+	return (sxy - sx*sy/count) / math.Sqrt(vx*vy)
+}
+
+// humidShare is the share of days with humidity.
+func (g *Generator) humidShare(days []observed) float64 {
+	n := 0
+	for i := range days {
+		if !math.IsNaN(days[i].value[humidity]) {
+			n++
+		}
+	}
+	share := float64(n) / float64(len(days))
+	if share <= mostMissing {
+		g.assumed = append(g.assumed, "humidity is not drawn: it is missing on more than 5 % of the days")
+	}
+	return share
+}

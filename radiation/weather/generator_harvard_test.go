@@ -1,0 +1,199 @@
+package weather
+
+import (
+	"encoding/csv"
+	"math"
+	"os"
+	"slices"
+	"strconv"
+	"testing"
+	"time"
+
+	"shadeledger/radiation"
+)
+
+var harvard = radiation.Site{Latitude: 42.53 * deg, Longitude: -72.19 * deg, UTCOffset: -5}
+
+// harvardDays reads the record, 2002 to 2014.
+func harvardDays(t testing.TB) []DailyRecord {
+	t.Helper()
+	f, err := os.Open("../../testdata/weather-harvard-daily/daily.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	table, err := csv.NewReader(f).ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	number := func(text string) float64 {
+		if text == "" {
+			return math.NaN()
+		}
+		v, err := strconv.ParseFloat(text, 64)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return v
+	}
+	rows := make([]DailyRecord, 0, len(table))
+	for i, x := range table[1:] {
+		date, err := time.Parse(time.DateOnly, x[0])
+		if err != nil {
+			t.Fatal(err)
+		}
+		rows = append(rows, DailyRecord{
+			Line: i + 2, Date: date, Global: number(x[1]), Sunshine: math.NaN(),
+			Tmin: number(x[2]), Tmax: number(x[3]), Humidity: number(x[4]), Rain: number(x[5]),
+		})
+	}
+	if len(rows) < 4700 {
+		t.Fatalf("only %d days", len(rows))
+	}
+	return rows
+}
+
+// halves are the odd years 2003, 2005 .. 2013 and the even years 2002, 2004 .. 2014.
+func halves(t testing.TB) (odd, even []DailyRecord) {
+	t.Helper()
+	for _, r := range harvardDays(t) {
+		if r.Date.Year()%2 == 1 {
+			odd = append(odd, r)
+		} else {
+			even = append(even, r)
+		}
+	}
+	return odd, even
+}
+
+// generated draws years one after another, dated from 3001 on.
+func generated(g *Generator, years int) []DailyRecord {
+	var out []DailyRecord
+	for i := range years {
+		out = append(out, g.Dated(3001+i, 7, uint64(i))...)
+	}
+	return out
+}
+
+// monthly is a mean by calendar month of what the days give, NaN left out.
+func monthly(rows []DailyRecord, of func(*DailyRecord) float64) (mean [12]float64) {
+	var n [12]float64
+	for i := range rows {
+		if v := of(&rows[i]); !math.IsNaN(v) {
+			m := rows[i].Date.Month() - 1
+			mean[m] += v
+			n[m]++
+		}
+	}
+	for m := range mean {
+		mean[m] /= n[m]
+	}
+	return mean
+}
+
+func rainOf(r *DailyRecord) float64   { return r.Rain }
+func globalOf(r *DailyRecord) float64 { return r.Global }
+func isWet(r *DailyRecord) float64 {
+	if r.Rain >= wetDay {
+		return 1
+	}
+	return 0
+}
+
+func average(rows []DailyRecord, of func(*DailyRecord) float64) float64 {
+	sum, n := 0.0, 0.0
+	for i := range rows {
+		if v := of(&rows[i]); !math.IsNaN(v) {
+			sum, n = sum+v, n+1
+		}
+	}
+	return sum / n
+}
+
+// radiationQuantiles are those of the daily radiation of months from..to, at 5, 10, 25, 50, 75, 90, 95 %.
+func radiationQuantiles(rows []DailyRecord, from, to time.Month) []float64 {
+	var x []float64
+	for i := range rows {
+		if m := rows[i].Date.Month(); m >= from && m <= to && !math.IsNaN(rows[i].Global) {
+			x = append(x, rows[i].Global)
+		}
+	}
+	slices.Sort(x)
+	var out []float64
+	for _, p := range quantileShares {
+		at := p * float64(len(x)-1)
+		i := int(at)
+		out = append(out, x[i]+(at-float64(i))*(x[i+1]-x[i]))
+	}
+	return out
+}
+
+var quantileShares = []float64{0.05, 0.10, 0.25, 0.50, 0.75, 0.90, 0.95}
+
+// fitted is a generator from rows that must be sound.
+func fitted(t testing.TB, rows []DailyRecord) *Generator {
+	t.Helper()
+	g, err := FitGenerator(rows, harvard)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return g
+}
+
+func TestScratch(t *testing.T) {
+	odd, even := halves(t)
+	for _, c := range []struct {
+		name     string
+		own, out []DailyRecord
+	}{{"fit odd", odd, even}, {"fit even", even, odd}} {
+		g := fitted(t, c.own)
+		gen := generated(g, 300)
+		t.Log(c.name, "A", g.process.a, "B", g.process.b, g.amount, g.assumed)
+		print := func(what string, of func(*DailyRecord) float64, rel bool) {
+			a, b, d := monthly(gen, of), monthly(c.own, of), monthly(c.out, of)
+			for m := range 12 {
+				if rel {
+					t.Logf("%s %2d gen %7.2f own %7.2f out %7.2f  gen/own %+5.1f%% gen/out %+5.1f%% own/out %+5.1f%%", what, m+1, a[m], b[m], d[m], 100*(a[m]/b[m]-1), 100*(a[m]/d[m]-1), 100*(b[m]/d[m]-1))
+				} else {
+					t.Logf("%s %2d gen %7.3f own %7.3f out %7.3f  gen-own %+5.3f gen-out %+5.3f own-out %+5.3f", what, m+1, a[m], b[m], d[m], a[m]-b[m], a[m]-d[m], b[m]-d[m])
+				}
+			}
+		}
+		print("rain", rainOf, true)
+		print("wet", isWet, false)
+		print("rad", globalOf, true)
+		t.Logf("annual rad gen %.3f own %.3f out %.3f", average(gen, globalOf), average(c.own, globalOf), average(c.out, globalOf))
+		for _, s := range [][2]time.Month{{5, 9}, {1, 12}} {
+			a, b, d := radiationQuantiles(gen, s[0], s[1]), radiationQuantiles(c.own, s[0], s[1]), radiationQuantiles(c.out, s[0], s[1])
+			for i, p := range quantileShares {
+				t.Logf("q %v %.2f gen %6.2f own %6.2f out %6.2f gen/own %+5.1f%% gen/out %+5.1f%% own/out %+5.1f%%", s, p, a[i], b[i], d[i], 100*(a[i]/b[i]-1), 100*(a[i]/d[i]-1), 100*(b[i]/d[i]-1))
+			}
+		}
+	}
+	all := harvardDays(t)
+	gen := generated(fitted(t, all), 300)
+	for _, w := range []struct {
+		n        string
+		of       func(*DailyRecord) float64
+		from, to time.Month
+	}{{"summer rad", globalOf, 5, 9}, {"annual rad", globalOf, 1, 12}, {"annual rain", rainOf, 1, 12}, {"summer T", func(r *DailyRecord) float64 { return (r.Tmin + r.Tmax) / 2 }, 5, 9}, {"July T", func(r *DailyRecord) float64 { return (r.Tmin + r.Tmax) / 2 }, 7, 7}, {"Jan T", func(r *DailyRecord) float64 { return (r.Tmin + r.Tmax) / 2 }, 1, 1}, {"July rad", globalOf, 7, 7}} {
+		t.Logf("%s sd measured %.3f gen %.3f", w.n, yearSD(all, w.from, w.to, w.of), yearSD(gen, w.from, w.to, w.of))
+	}
+}
+
+func yearSD(rows []DailyRecord, from, to time.Month, of func(*DailyRecord) float64) float64 {
+	by := map[int][]DailyRecord{}
+	for _, r := range rows {
+		if m := r.Date.Month(); m >= from && m <= to {
+			by[r.Date.Year()] = append(by[r.Date.Year()], r)
+		}
+	}
+	var n, s, ss float64
+	for y := range 4000 {
+		if len(by[y]) > 0 {
+			v := average(by[y], of)
+			n, s, ss = n+1, s+v, ss+v*v
+		}
+	}
+	return math.Sqrt((ss - s*s/n) / (n - 1))
+}
