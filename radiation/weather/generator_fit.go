@@ -83,13 +83,14 @@ func (g *Generator) fitTemperature(days []observed, v int) {
 // leastOfState is the number of days below which a state has no curves of its own (chosen).
 const leastOfState = 60
 
-// scoresOf tabulates a value by state and month from the days of the month and its neighbours; from more months, in the
-// end from both states, where these are too few.
+// scoresOf tabulates a value by state and month from the days of the month; from its neighbours too, in the end from
+// both states, where these are too few.
 func scoresOf(days []observed, v int) (t scoreTable) {
 	for s := range states {
-		for m := range 12 {
+		var months [12]quantiles
+		for m := range months {
 			var sample []float64
-			for reach := 1; reach <= 7 && len(sample) < leastOfState; reach++ {
+			for reach := 0; reach <= 7 && len(sample) < leastOfState; reach++ {
 				sample = sample[:0]
 				for i := range days {
 					d := &days[i]
@@ -100,8 +101,9 @@ func scoresOf(days []observed, v int) (t scoreTable) {
 					}
 				}
 			}
-			t[s][m] = quantilesOf(sample)
+			months[m] = quantilesOf(sample)
 		}
+		t[s] = keepMonths(months)
 	}
 	return t
 }

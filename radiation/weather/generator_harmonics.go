@@ -38,56 +38,27 @@ type point struct {
 }
 
 // family says how values scatter round their mean and what curve the harmonics make of it (generalised linear
-// models, McCullagh & Nelder 1989): working weight and response of iterated least squares, and the deviance
-// of a value, at the linear predictor.
+// models, McCullagh & Nelder 1989): the linear predictor of the overall mean, and the working response of iterated
+// least squares at a linear predictor. Both kinds here have constant working weight.
 type family struct {
-	first    func(mean float64) float64
-	step     func(eta, y float64) (weight, response float64)
-	deviance func(eta, y float64) float64
+	first func(mean float64) float64
+	step  func(eta, y float64) (response float64)
 }
 
 // normalFamily is plain least squares.
 var normalFamily = family{
-	first:    func(mean float64) float64 { return mean },
-	step:     func(_, y float64) (float64, float64) { return 1, y },
-	deviance: func(eta, y float64) float64 { return (y - eta) * (y - eta) },
+	first: func(mean float64) float64 { return mean },
+	step:  func(_, y float64) float64 { return y },
 }
 
 // gammaFamily is a gamma distribution of constant shape with the logarithm of its mean in harmonics.
 var gammaFamily = family{
 	first: func(mean float64) float64 { return math.Log(math.Max(mean, 1e-9)) },
-	step:  func(eta, y float64) (float64, float64) { return 1, eta + y*math.Exp(-eta) - 1 },
-	deviance: func(eta, y float64) float64 {
-		r := y * math.Exp(-eta)
-		return 2 * (r - 1 - math.Log(math.Max(r, 1e-9)))
-	},
+	step:  func(eta, y float64) float64 { return eta + y*math.Exp(-eta) - 1 },
 }
 
-// binaryFamily is chance with its logit in harmonics, for values 0 and 1 (Stern & Coe 1984, J. R. Statist. Soc. A
-// 147:1-34, for rain).
-var binaryFamily = family{
-	first: logit,
-	step: func(eta, y float64) (float64, float64) {
-		p := logistic(eta)
-		w := math.Max(p*(1-p), 1e-6)
-		return w, eta + (y-p)/w
-	},
-	deviance: func(eta, y float64) float64 {
-		if y > 0.5 {
-			return 2 * math.Log1p(math.Exp(-eta))
-		}
-		return 2 * math.Log1p(math.Exp(eta))
-	},
-}
-
-func logistic(x float64) float64 { return 1 / (1 + math.Exp(-x)) }
-func logit(p float64) float64 {
-	p = math.Max(1e-4, math.Min(1-1e-4, p))
-	return math.Log(p / (1 - p))
-}
-
-// ridge pulls harmonics towards 0, in observations: enough to keep a fit finite where a season has no wet day at
-// all, too little to be seen elsewhere.
+// ridge pulls harmonics towards 0, in observations: enough to keep a fit finite where a season has no wet day
+// at all, too little to be seen elsewhere.
 const ridge = 0.5
 
 // fit finds the curve of an order by iterated weighted least squares.
@@ -103,12 +74,12 @@ func (f family) fit(points []point, order int) wave {
 		var m [terms3][terms3 + 1]float64
 		for _, p := range points {
 			b := basisOf(p.day)
-			weight, response := f.step(w.at(p.day), p.value)
+			response := f.step(w.at(p.day), p.value)
 			for i := range n {
 				for j := range n {
-					m[i][j] += weight * b[i] * b[j]
+					m[i][j] += b[i] * b[j]
 				}
-				m[i][terms3] += weight * b[i] * response
+				m[i][terms3] += b[i] * response
 			}
 		}
 		for i := 1; i < n; i++ {
@@ -150,25 +121,4 @@ func eliminate(m *[terms3][terms3 + 1]float64, n int) wave {
 		x[i] /= m[i][i]
 	}
 	return x
-}
-
-// choose fits every order and keeps the one of least information criterion, deviance / dispersion + k ln n (Schwarz
-// 1978, Annals of Statistics 6:461-464), the dispersion that of the highest order; 1 for chances.
-func (f family) choose(points []point, dispersion func(deviance float64) float64) wave {
-	var curves [mostHarmonics + 1]wave
-	var deviance [mostHarmonics + 1]float64
-	for order := range curves {
-		curves[order] = f.fit(points, order)
-		for _, p := range points {
-			deviance[order] += f.deviance(curves[order].at(p.day), p.value)
-		}
-	}
-	φ := dispersion(deviance[mostHarmonics])
-	best, least := 0, math.Inf(1)
-	for order, d := range deviance {
-		if score := d/φ + float64(terms(order))*math.Log(float64(len(points))); score < least {
-			best, least = order, score
-		}
-	}
-	return curves[best]
 }

@@ -147,7 +147,7 @@ func TestScratch(t *testing.T) {
 		own, out []DailyRecord
 	}{{"fit odd", odd, even}, {"fit even", even, odd}} {
 		g := fitted(t, c.own)
-		gen := generated(g, 300)
+		gen := generated(g, 2000)
 		t.Log(c.name, "A", g.process.a, "B", g.process.b, g.amount, g.assumed)
 		print := func(what string, of func(*DailyRecord) float64, rel bool) {
 			a, b, d := monthly(gen, of), monthly(c.own, of), monthly(c.out, of)

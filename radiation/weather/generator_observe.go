@@ -23,7 +23,7 @@ func (e *FitError) Error() string {
 		if p.Line > 0 {
 			at = fmt.Sprintf("line %d: ", p.Line)
 		}
-		all = append(all, fmt.Sprintf("%s%s is %s; want %s", at, p.Field, p.Value, p.Want))
+		all = append(all, fmt.Sprintf("%s%s: %s; want %s", at, p.Field, p.Value, p.Want))
 	}
 	return strings.Join(all, "\n")
 }

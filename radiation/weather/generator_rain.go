@@ -51,43 +51,44 @@ func fitMixed(values []float64) mixedExponential {
 	return m
 }
 
-// fitRain finds the chain and the amounts.
+// fitRain finds the chain and the amounts by month (Richardson 1981): counts of wet days after dry and after wet ones
+// with half a day added to each kind (Jeffreys), and the mean of wet days.
 func (g *Generator) fitRain(days []observed) {
-	var after [states][]point
-	var amounts []point
+	var after [12][states][states]float64 // month, state before, state
+	var sum, n [12]float64
 	for i := range days {
 		d := &days[i]
+		m := monthOf(d.day)
 		if d.follows {
-			was := days[i-1].state
-			after[was] = append(after[was], point{d.day, float64(d.state)})
+			after[m][days[i-1].state][d.state]++
 		}
 		if d.state == wet {
-			amounts = append(amounts, point{d.day, d.rain})
+			sum[m] += d.rain
+			n[m]++
 		}
-	}
-	var chance [states]wave
-	for s := range chance {
-		chance[s] = wave{logit(0)}
-		if len(after[s]) > 0 {
-			chance[s] = binaryFamily.choose(after[s], func(float64) float64 { return 1 })
-		}
-	}
-	mean := wave{math.Log(wetDay)}
-	if n := len(amounts); n > 0 {
-		mean = gammaFamily.choose(amounts, func(d float64) float64 { return d / float64(n) })
 	}
 	for i := range g.days {
-		d := &g.days[i]
-		for s := range chance {
-			d.wetAfter[s] = logistic(chance[s].at(i))
+		d, m := &g.days[i], monthOf(i)
+		for was, count := range after[m] {
+			d.wetAfter[was] = (count[wet] + 0.5) / (count[dry] + count[wet] + 1)
 		}
-		d.rain = math.Max(wetDay, math.Exp(mean.at(i)))
-	}
-	excess := make([]float64, 0, len(amounts))
-	for _, p := range amounts {
-		if scale := g.days[p.day].rain - wetDay; scale > 0 {
-			excess = append(excess, (p.value-wetDay)/scale)
+		d.rain = wetDay
+		if n[m] > 0 {
+			d.rain = sum[m] / n[m]
+		}
+		if g.rainless {
+			d.wetAfter = [states]float64{}
 		}
 	}
-	g.amount = fitMixed(excess)
+	g.amount = fitMixed(g.excesses(days))
+}
+
+// excesses are the amounts over the least of a wet day, in units of the month's mean.
+func (g *Generator) excesses(days []observed) (out []float64) {
+	for i := range days {
+		if scale := g.days[days[i].day].rain - wetDay; days[i].state == wet && scale > 0 {
+			out = append(out, (days[i].rain-wetDay)/scale)
+		}
+	}
+	return out
 }

@@ -90,6 +90,24 @@ func quantilesOf(sample []float64) (q quantiles) {
 	return q
 }
 
+// keepMonths moves the tables at the months' middles such that the days of a month, taken between two middles, have the
+// month's quantiles in the mean: they weigh 3/4 its own and 1/8 each neighbour's. No table leaves its month's range.
+func keepMonths(want [12]quantiles) [12]quantiles {
+	at := want
+	for range 12 {
+		was := at
+		for m := range at {
+			before, after := &was[(m+11)%12], &was[(m+1)%12]
+			for i := range at[m] {
+				v := was[m][i] + want[m][i] - (0.75*was[m][i] + 0.125*(before[i]+after[i]))
+				at[m][i] = math.Max(want[m][0], math.Min(want[m][scoreNodes], v))
+			}
+			slices.Sort(at[m][:])
+		}
+	}
+	return at
+}
+
 // share01 is the share of a standard normal below z.
 func share01(z float64) float64 { return 0.5 * math.Erfc(-z/math.Sqrt2) }
 
