@@ -23,6 +23,7 @@ type Generator struct {
 	clear    scoreTable
 	humid    scoreTable // used where process.size > humidity
 	process  matalas
+	slow     slowPart
 	wet      [leapDays]float64 // chance of a wet day
 	rainless bool              // the record says nothing of rain: one kind of day, rain not given
 	assumed  []string
@@ -94,26 +95,31 @@ func (g *Generator) Dated(year int, seed, index uint64) []DailyRecord {
 
 // draw runs the process through a leap year and hands on every day.
 func (g *Generator) draw(from *rand.Rand, day func(*generatorDay, DailyRecord)) {
+	slow := g.slow.draw(from)
 	state := dry
 	if from.Float64() < g.wet[0] {
 		state = wet
 	}
 	score := g.process.start(from)
 	for i := range g.days {
-		d := &g.days[i]
+		d, part := &g.days[i], partOf(i)
 		if i > 0 {
 			was := state
-			if state = dry; from.Float64() < d.wetAfter[was] {
+			if state = dry; from.Float64() < slow.chance(d.wetAfter[was], part) {
 				state = wet
 			}
 			score = g.process.next(from, score)
 		}
-		day(d, g.record(from, d, state, score))
+		r := g.record(d, state, g.slow.join(score, &slow, part))
+		if state == wet && !g.rainless {
+			r.Rain = wetDay + (d.rain-wetDay)*g.amount.draw(from)*g.slow.amount(&slow, part)
+		}
+		day(d, r)
 	}
 }
 
-// record turns the scores of a day to its weather.
-func (g *Generator) record(from *rand.Rand, d *generatorDay, state int, score vector) DailyRecord {
+// record turns the scores of a day to its weather but for the amount of rain.
+func (g *Generator) record(d *generatorDay, state int, score vector) DailyRecord {
 	r := DailyRecord{Sunshine: math.NaN(), Humidity: math.NaN()}
 	high, low := d.temperature[warmest][state], d.temperature[coldestOfDay][state]
 	r.Tmax = high.mean + high.sd*score[warmest]
@@ -126,11 +132,8 @@ func (g *Generator) record(from *rand.Rand, d *generatorDay, state int, score ve
 	if g.process.size > humidity {
 		r.Humidity = g.humid.at(state, d.place, share01(score[humidity]))
 	}
-	switch {
-	case g.rainless:
+	if g.rainless {
 		r.Rain = math.NaN()
-	case state == wet:
-		r.Rain = wetDay + (d.rain-wetDay)*g.amount.draw(from)
 	}
 	return r
 }

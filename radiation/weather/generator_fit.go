@@ -8,6 +8,7 @@ import (
 
 // observed is one sound day of a record.
 type observed struct {
+	year    int
 	day     int // place in the table of days
 	state   int
 	follows bool // the day before it is observed too
@@ -44,8 +45,7 @@ func FitGenerator(rows []DailyRecord, site radiation.Site) (*Generator, error) {
 		g.humid = scoresOf(days, humidity)
 		g.score(days, &g.humid, humidity)
 	}
-	m0, m1 := correlations(days, size)
-	g.process = newMatalas(size, m0, m1)
+	g.fitSlow(days, size)
 	return g, nil
 }
 

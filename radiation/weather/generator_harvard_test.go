@@ -171,7 +171,9 @@ func TestScratch(t *testing.T) {
 		}
 	}
 	all := harvardDays(t)
-	gen := generated(fitted(t, all), 300)
+	ga := fitted(t, all)
+	t.Log(ga.slow)
+	gen := generated(ga, 800)
 	for _, w := range []struct {
 		n        string
 		of       func(*DailyRecord) float64

@@ -120,3 +120,29 @@ func (p *matalas) times(m *matrix, v vector) (out vector) {
 	}
 	return out
 }
+
+// meanVariance is the variance of the mean of variable v over n days in a row: sum over lags of its autocorrelation.
+func (p *matalas) meanVariance(v, n int) float64 {
+	var lag matrix // correlations of a day with the day k before, A^k M0
+	for i := range p.size {
+		for j := range p.size {
+			for k := range p.size {
+				lag[i][j] += p.initial[i][k] * p.initial[j][k]
+			}
+		}
+	}
+	sum := float64(n) * lag[v][v]
+	for k := 1; k < n; k++ {
+		var next matrix
+		for i := range p.size {
+			for j := range p.size {
+				for l := range p.size {
+					next[i][j] += p.a[i][l] * lag[l][j]
+				}
+			}
+		}
+		lag = next
+		sum += 2 * float64(n-k) * lag[v][v]
+	}
+	return sum / float64(n*n)
+}

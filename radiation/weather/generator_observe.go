@@ -72,7 +72,7 @@ func (g *Generator) observe(rows []DailyRecord) (days []observed, problems []Pro
 
 // observeDay is one row as a sound day, or not.
 func (g *Generator) observeDay(c *collector, x *DailyRecord) (d observed, sound bool) {
-	d.day = dayIndex(x.Date.Month(), x.Date.Day())
+	d.year, d.day = x.Date.Year(), dayIndex(x.Date.Month(), x.Date.Day())
 	top := g.days[d.day].top
 	global := x.Global
 	if math.IsNaN(global) && !math.IsNaN(x.Sunshine) {

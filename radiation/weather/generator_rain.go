@@ -20,6 +20,11 @@ func (m mixedExponential) draw(from *rand.Rand) float64 {
 	return scale * from.ExpFloat64()
 }
 
+// variance is that of the mixture.
+func (m mixedExponential) variance() float64 {
+	return 2*(m.share*m.small*m.small+(1-m.share)*m.large*m.large) - 1
+}
+
 // fitMixed finds the mixture by expectation and maximisation, then scales it to mean 1. Fewer than 50 values give the
 // plain exponential.
 func fitMixed(values []float64) mixedExponential {
