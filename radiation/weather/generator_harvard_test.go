@@ -121,11 +121,31 @@ func radiationQuantiles(rows []DailyRecord, from, to time.Month) []float64 {
 	slices.Sort(x)
 	var out []float64
 	for _, p := range quantileShares {
-		at := p * float64(len(x)-1)
-		i := int(at)
-		out = append(out, x[i]+(at-float64(i))*(x[i+1]-x[i]))
+		out = append(out, midQuantile(x, p))
 	}
 	return out
+}
+
+// midQuantile is the quantile of sorted readings that were rounded: linear between the distinct values, each
+// standing at the middle of its days (Ma, Genton & Parzen 2011, Ann. Inst. Statist. Math. 63:227-243). The record
+// is in steps of 0.1 MJ m-2 d-1, 6 % of its fifth percentile.
+func midQuantile(x []float64, p float64) float64 {
+	before, value := 0.0, x[0]
+	for i := 0; i < len(x); {
+		end := i
+		for end < len(x) && x[end] == x[i] {
+			end++
+		}
+		at := float64(i+end) / 2 / float64(len(x))
+		if at >= p {
+			if i == 0 {
+				return x[0]
+			}
+			return value + (p-before)/(at-before)*(x[i]-value)
+		}
+		before, value, i = at, x[i], end
+	}
+	return value
 }
 
 var quantileShares = []float64{0.05, 0.10, 0.25, 0.50, 0.75, 0.90, 0.95}

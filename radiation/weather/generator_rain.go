@@ -25,6 +25,10 @@ func (m mixedExponential) variance() float64 {
 	return 2*(m.share*m.small*m.small+(1-m.share)*m.large*m.large) - 1
 }
 
+// leastScale keeps the smaller mean, as a share of the whole, off 0: rounded readings at the very threshold would draw it
+// there (chosen).
+const leastScale = 0.05
+
 // fitMixed finds the mixture by expectation and maximisation, then scales it to mean 1. Fewer than 50 values give the
 // plain exponential.
 func fitMixed(values []float64) mixedExponential {
@@ -50,9 +54,10 @@ func fitMixed(values []float64) mixedExponential {
 		if n < 5 || rest < 5 || small <= 0 {
 			return one
 		}
-		m = mixedExponential{n / float64(len(values)), small / n, large / rest}
+		m = mixedExponential{n / float64(len(values)), math.Max(small/n, leastScale*mean), large / rest}
 	}
-	m.small, m.large = m.small/mean, m.large/mean
+	whole := m.share*m.small + (1-m.share)*m.large
+	m.small, m.large = m.small/whole, m.large/whole
 	return m
 }
 
