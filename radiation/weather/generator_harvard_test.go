@@ -160,49 +160,7 @@ func fitted(t testing.TB, rows []DailyRecord) *Generator {
 	return g
 }
 
-func TestScratch(t *testing.T) {
-	odd, even := halves(t)
-	for _, c := range []struct {
-		name     string
-		own, out []DailyRecord
-	}{{"fit odd", odd, even}, {"fit even", even, odd}} {
-		g := fitted(t, c.own)
-		gen := generated(g, 2000)
-		t.Log(c.name, "A", g.process.a, "B", g.process.b, g.amount, g.assumed)
-		print := func(what string, of func(*DailyRecord) float64, rel bool) {
-			a, b, d := monthly(gen, of), monthly(c.own, of), monthly(c.out, of)
-			for m := range 12 {
-				if rel {
-					t.Logf("%s %2d gen %7.2f own %7.2f out %7.2f  gen/own %+5.1f%% gen/out %+5.1f%% own/out %+5.1f%%", what, m+1, a[m], b[m], d[m], 100*(a[m]/b[m]-1), 100*(a[m]/d[m]-1), 100*(b[m]/d[m]-1))
-				} else {
-					t.Logf("%s %2d gen %7.3f own %7.3f out %7.3f  gen-own %+5.3f gen-out %+5.3f own-out %+5.3f", what, m+1, a[m], b[m], d[m], a[m]-b[m], a[m]-d[m], b[m]-d[m])
-				}
-			}
-		}
-		print("rain", rainOf, true)
-		print("wet", isWet, false)
-		print("rad", globalOf, true)
-		t.Logf("annual rad gen %.3f own %.3f out %.3f", average(gen, globalOf), average(c.own, globalOf), average(c.out, globalOf))
-		for _, s := range [][2]time.Month{{5, 9}, {1, 12}} {
-			a, b, d := radiationQuantiles(gen, s[0], s[1]), radiationQuantiles(c.own, s[0], s[1]), radiationQuantiles(c.out, s[0], s[1])
-			for i, p := range quantileShares {
-				t.Logf("q %v %.2f gen %6.2f own %6.2f out %6.2f gen/own %+5.1f%% gen/out %+5.1f%% own/out %+5.1f%%", s, p, a[i], b[i], d[i], 100*(a[i]/b[i]-1), 100*(a[i]/d[i]-1), 100*(b[i]/d[i]-1))
-			}
-		}
-	}
-	all := harvardDays(t)
-	ga := fitted(t, all)
-	t.Log(ga.slow)
-	gen := generated(ga, 800)
-	for _, w := range []struct {
-		n        string
-		of       func(*DailyRecord) float64
-		from, to time.Month
-	}{{"summer rad", globalOf, 5, 9}, {"annual rad", globalOf, 1, 12}, {"annual rain", rainOf, 1, 12}, {"summer T", func(r *DailyRecord) float64 { return (r.Tmin + r.Tmax) / 2 }, 5, 9}, {"July T", func(r *DailyRecord) float64 { return (r.Tmin + r.Tmax) / 2 }, 7, 7}, {"Jan T", func(r *DailyRecord) float64 { return (r.Tmin + r.Tmax) / 2 }, 1, 1}, {"July rad", globalOf, 7, 7}} {
-		t.Logf("%s sd measured %.3f gen %.3f", w.n, yearSD(all, w.from, w.to, w.of), yearSD(gen, w.from, w.to, w.of))
-	}
-}
-
+// yearSD is the standard deviation between years of the mean over months from..to.
 func yearSD(rows []DailyRecord, from, to time.Month, of func(*DailyRecord) float64) float64 {
 	by := map[int][]DailyRecord{}
 	for _, r := range rows {
