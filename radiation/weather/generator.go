@@ -12,8 +12,9 @@ import (
 // them (Richardson 1981, Water Resources Research 17:182-190). Wet and dry days are a first-order Markov chain
 // whose chances follow the season; rain of a wet day is a mixed exponential; highest and lowest temperature,
 // clearness and, where known, humidity are the residuals of one stationary process of first order (Matalas
-// 1967) with means and spreads by day of the year, apart for wet and dry days. Clearness and humidity pass
-// through the normal score of their own distribution, so they keep its bounds and its skew.
+// 1967) with means and spreads by season, apart for wet and dry days and by the weather of the day
+// before. Clearness and humidity pass through the normal score of their own distribution, so they keep its bounds
+// and its skew.
 //
 // A generator never changes after it is made: any number of goroutines may draw from it.
 type Generator struct {
@@ -39,6 +40,12 @@ const (
 	states
 )
 
+// kinds of days, by the state of the day before and the day's own: dry weather after rain is moister and duller than in a
+// long dry spell.
+const kinds = states * states
+
+func kindOf(before, state int) int { return states*state + before }
+
 // Places in the vector of residuals.
 const (
 	warmest = iota
@@ -62,7 +69,7 @@ type generatorDay struct {
 	top         float64         // extraterrestrial energy on the level, MJ m-2 d-1
 	wetAfter    [states]float64 // chance of rain after a dry and after a wet day
 	rain        float64         // mm, mean of a wet day
-	temperature [2][states]spreadOf
+	temperature [2][kinds]spreadOf
 	place       season
 }
 
@@ -96,22 +103,21 @@ func (g *Generator) Dated(year int, seed, index uint64) []DailyRecord {
 // draw runs the process through a leap year and hands on every day.
 func (g *Generator) draw(from *rand.Rand, day func(*generatorDay, DailyRecord)) {
 	slow := g.slow.draw(from)
-	state := dry
-	if from.Float64() < g.wet[0] {
+	state := dry // of the day before the first
+	if from.Float64() < g.wet[leapDays-1] {
 		state = wet
 	}
 	score := g.process.start(from)
 	for i := range g.days {
-		d, part := &g.days[i], partOf(i)
+		d, part, before := &g.days[i], partOf(i), state
+		if state = dry; from.Float64() < slow.chance(d.wetAfter[before], part) {
+			state = wet
+		}
 		if i > 0 {
-			was := state
-			if state = dry; from.Float64() < slow.chance(d.wetAfter[was], part) {
-				state = wet
-			}
 			score = g.process.next(from, score)
 		}
-		r := g.record(d, state, g.slow.join(score, &slow, part))
-		if state == wet && !g.rainless {
+		r := g.record(d, kindOf(before, state), g.slow.join(score, &slow, part))
+		if state == wet {
 			r.Rain = wetDay + (d.rain-wetDay)*g.amount.draw(from)*g.slow.amount(&slow, part)
 		}
 		day(d, r)
@@ -119,18 +125,18 @@ func (g *Generator) draw(from *rand.Rand, day func(*generatorDay, DailyRecord)) 
 }
 
 // record turns the scores of a day to its weather but for the amount of rain.
-func (g *Generator) record(d *generatorDay, state int, score vector) DailyRecord {
+func (g *Generator) record(d *generatorDay, kind int, score vector) DailyRecord {
 	r := DailyRecord{Sunshine: math.NaN(), Humidity: math.NaN()}
-	high, low := d.temperature[warmest][state], d.temperature[coldestOfDay][state]
+	high, low := d.temperature[warmest][kind], d.temperature[coldestOfDay][kind]
 	r.Tmax = high.mean + high.sd*score[warmest]
 	r.Tmin = low.mean + low.sd*score[coldestOfDay]
 	if r.Tmax-r.Tmin < leastRange { // the mean stays
 		middle := (r.Tmax + r.Tmin) / 2
 		r.Tmin, r.Tmax = middle-leastRange/2, middle+leastRange/2
 	}
-	r.Global = d.top * g.clear.at(state, d.place, share01(score[clearnessOfDay]))
+	r.Global = d.top * g.clear.at(kind, d.place, share01(score[clearnessOfDay]))
 	if g.process.size > humidity {
-		r.Humidity = g.humid.at(state, d.place, share01(score[humidity]))
+		r.Humidity = g.humid.at(kind, d.place, share01(score[humidity]))
 	}
 	if g.rainless {
 		r.Rain = math.NaN()

@@ -49,10 +49,14 @@ func (g *Generator) LongMean() [12]MonthMean {
 		}
 		m := &out[d.date.month-1]
 		days[d.date.month-1]++
-		for state, chance := range [states]float64{1 - g.wet[i], g.wet[i]} {
-			high, low := d.temperature[warmest][state].mean, d.temperature[coldestOfDay][state].mean
-			m.Temperature += chance * (high + low) / 2
-			m.Global += chance * d.top * g.clear.mean(state, d.place)
+		rained := g.wet[(i+leapDays-1)%leapDays] // the day before
+		for before, chance := range [states]float64{1 - rained, rained} {
+			rains := d.wetAfter[before]
+			for state, chance := range [states]float64{chance * (1 - rains), chance * rains} {
+				k := kindOf(before, state)
+				m.Temperature += chance * (d.temperature[warmest][k].mean + d.temperature[coldestOfDay][k].mean) / 2
+				m.Global += chance * d.top * g.clear.mean(k, d.place)
+			}
 		}
 		m.WetDays += g.wet[i]
 		m.Rain += g.wet[i] * d.rain

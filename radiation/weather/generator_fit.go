@@ -11,6 +11,7 @@ type observed struct {
 	year    int
 	day     int // place in the table of days
 	state   int
+	before  int  // state of the day before; its own where that is not known
 	follows bool // the day before it is observed too
 	rain    float64
 	value   [variables]float64 // highest, lowest temperature, clearness (NaN where there is no sun), humidity
@@ -19,6 +20,9 @@ type observed struct {
 
 // leastTop is the extraterrestrial energy below which a day's clearness says nothing, MJ m-2 d-1 (chosen).
 const leastTop = 0.5
+
+// kind is the day's kind.
+func (d *observed) kind() int { return kindOf(d.before, d.state) }
 
 // FitGenerator finds a generator from daily rows: at least five days a year of rows, gaps of whole years allowed. Days
 // that lack global radiation (or sunshine), a temperature or rain are left out; a calendar month with less than
@@ -49,61 +53,48 @@ func FitGenerator(rows []DailyRecord, site radiation.Site) (*Generator, error) {
 	return g, nil
 }
 
-// fitTemperature finds mean and spread by day of the year for dry and for wet days, and the days' scores.
+// fitTemperature finds mean and spread by season for every kind of day, and the days' scores: a line through the months'
+// means, and what the kind departs from it.
 func (g *Generator) fitTemperature(days []observed, v int) {
-	for s := range states {
-		var all, squares []point
-		for i := range days {
-			if days[i].state == s {
-				all = append(all, point{days[i].day, days[i].value[v]})
-			}
+	var sum, n monthLine
+	for i := range days {
+		m := monthOf(days[i].day)
+		sum[m] += days[i].value[v]
+		n[m]++
+	}
+	for m := range sum {
+		sum[m] /= n[m]
+	}
+	line := lineThrough(sum)
+	for k := range kinds {
+		var mean, sd monthLine
+		for m := range mean {
+			x := meanSpread(sampleOf(days, k, m, func(d *observed) float64 { return d.value[v] - line.at(g.days[d.day].place) }))
+			mean[m], sd[m] = x.mean, x.sd
 		}
-		if len(all) < leastOfState { // too few for a season of their own
-			all = all[:0]
-			for i := range days {
-				all = append(all, point{days[i].day, days[i].value[v]})
-			}
-		}
-		mean := normalFamily.fit(all, mostHarmonics)
-		for _, p := range all {
-			r := p.value - mean.at(p.day)
-			squares = append(squares, point{p.day, r * r})
-		}
-		square := gammaFamily.fit(squares, 2)
+		mean, sd = lineThrough(mean), lineThrough(sd)
 		for i := range g.days {
-			g.days[i].temperature[v][s] = spreadOf{mean.at(i), math.Exp(square.at(i) / 2)}
+			place := g.days[i].place
+			g.days[i].temperature[v][k] = spreadOf{line.at(place) + mean.at(place), math.Max(leastSpread, sd.at(place))}
 		}
 	}
 	for i := range days {
-		x := g.days[days[i].day].temperature[v][days[i].state]
+		x := g.days[days[i].day].temperature[v][days[i].kind()]
 		days[i].score[v] = (days[i].value[v] - x.mean) / x.sd
 	}
 }
 
-// leastOfState is the number of days below which a state has no curves of its own (chosen).
-const leastOfState = 60
+// leastSpread keeps scores finite where a month never changes, K (chosen).
+const leastSpread = 0.05
 
-// scoresOf tabulates a value by state and month from the days of the month; from its neighbours too, in the end from
-// both states, where these are too few.
+// scoresOf tabulates a value by kind of day and month.
 func scoresOf(days []observed, v int) (t scoreTable) {
-	for s := range states {
+	for k := range kinds {
 		var months [12]quantiles
 		for m := range months {
-			var sample []float64
-			for reach := 0; reach <= 7 && len(sample) < leastOfState; reach++ {
-				sample = sample[:0]
-				for i := range days {
-					d := &days[i]
-					apart := (monthOf(d.day) - m + 12) % 12
-					near := min(apart, 12-apart) <= reach
-					if (d.state == s || reach == 7) && near && !math.IsNaN(d.value[v]) {
-						sample = append(sample, d.value[v])
-					}
-				}
-			}
-			months[m] = quantilesOf(sample)
+			months[m] = quantilesOf(sampleOf(days, k, m, func(d *observed) float64 { return d.value[v] }))
 		}
-		t[s] = keepMonths(months)
+		t[k] = keepMonths(months)
 	}
 	return t
 }
@@ -114,7 +105,7 @@ func (g *Generator) score(days []observed, t *scoreTable, v int) {
 		d := &days[i]
 		d.score[v] = math.NaN()
 		if !math.IsNaN(d.value[v]) {
-			d.score[v] = score01(t.share(d.state, g.days[d.day].place, d.value[v]), leastOfState)
+			d.score[v] = score01(t.share(d.kind(), g.days[d.day].place, d.value[v]), leastSample)
 		}
 	}
 }

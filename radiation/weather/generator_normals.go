@@ -160,8 +160,10 @@ func (g *Generator) climateTemperature(c *Climate, share [12]float64) {
 			sd, assumed = spreadRule(colder, warm-cold), true
 		}
 		for s, part := range [states]float64{-share[m], 1 - share[m]} {
-			d.temperature[warmest][s] = spreadOf{high[i] + part*wetTmax.at(colder), sd}
-			d.temperature[coldestOfDay][s] = spreadOf{low[i] + part*wetTmin.at(colder), sd}
+			for before := range states {
+				d.temperature[warmest][kindOf(before, s)] = spreadOf{high[i] + part*wetTmax.at(colder), sd}
+				d.temperature[coldestOfDay][kindOf(before, s)] = spreadOf{low[i] + part*wetTmin.at(colder), sd}
+			}
 		}
 	}
 	if assumed {
@@ -201,7 +203,9 @@ func (g *Generator) climateClearness(c *Climate, share [12]float64) {
 		}
 	}
 	for s := range months {
-		g.clear[s] = keepMonths(months[s])
+		for before := range states {
+			g.clear[kindOf(before, s)] = keepMonths(months[s])
+		}
 	}
 }
 

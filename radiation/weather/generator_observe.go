@@ -52,7 +52,10 @@ func (g *Generator) observe(rows []DailyRecord) (days []observed, problems []Pro
 		if !sound {
 			continue
 		}
-		d.follows = len(days) > 0 && x.Date.Equal(last.AddDate(0, 0, 1))
+		d.before = d.state
+		if d.follows = len(days) > 0 && x.Date.Equal(last.AddDate(0, 0, 1)); d.follows {
+			d.before = days[len(days)-1].state
+		}
 		last = x.Date
 		count[x.Date.Month()-1]++
 		days = append(days, d)

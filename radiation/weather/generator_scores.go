@@ -25,16 +25,16 @@ const scoreNodes = 64
 // quantiles are the values at shares 0, 1/scoreNodes .. 1 of the days.
 type quantiles [scoreNodes + 1]float64
 
-// scoreTable holds the distribution of a value by state and month. Days between two months' middles take
+// scoreTable holds the distribution of a value by kind of day and month. Days between two months' middles take
 // quantiles between those of the two.
-type scoreTable [states][12]quantiles
+type scoreTable [kinds][12]quantiles
 
-// at is the value that a share of the days of that state and season stays below.
-func (t *scoreTable) at(state int, s season, share float64) float64 {
+// at is the value that a share of the days of that kind and season stays below.
+func (t *scoreTable) at(kind int, s season, share float64) float64 {
 	x := share * scoreNodes
 	i := min(int(x), scoreNodes-1)
 	f := x - float64(i)
-	a, b := &t[state][s.first], &t[state][s.second]
+	a, b := &t[kind][s.first], &t[kind][s.second]
 	low := a[i] + f*(a[i+1]-a[i])
 	high := b[i] + f*(b[i+1]-b[i])
 	return low + s.share*(high-low)
@@ -42,8 +42,8 @@ func (t *scoreTable) at(state int, s season, share float64) float64 {
 
 // share is the inverse of at: the share of the days that stay below a value; the middle of the shares where
 // many days have that value.
-func (t *scoreTable) share(state int, s season, value float64) float64 {
-	node := func(i int) float64 { return t.at(state, s, float64(i)/scoreNodes) }
+func (t *scoreTable) share(kind int, s season, value float64) float64 {
+	node := func(i int) float64 { return t.at(kind, s, float64(i)/scoreNodes) }
 	below := 0 // nodes below the value
 	for below <= scoreNodes && node(below) < value {
 		below++
@@ -62,9 +62,9 @@ func (t *scoreTable) share(state int, s season, value float64) float64 {
 	return (float64(below-1) + (value-a)/(b-a)) / scoreNodes
 }
 
-// mean is the expected value of a state and season.
-func (t *scoreTable) mean(state int, s season) float64 {
-	return t[state][s.first].mean()*(1-s.share) + t[state][s.second].mean()*s.share
+// mean is the expected value of a kind and season.
+func (t *scoreTable) mean(kind int, s season) float64 {
+	return t[kind][s.first].mean()*(1-s.share) + t[kind][s.second].mean()*s.share
 }
 
 func (q *quantiles) mean() float64 {
