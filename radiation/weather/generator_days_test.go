@@ -177,6 +177,21 @@ func TestPolarNight(t *testing.T) {
 	}
 }
 
+// A record without any rain fits, and rains next to never.
+func TestDesert(t *testing.T) {
+	rows := harvardDays(t)
+	for i := range rows {
+		rows[i].Rain = 0
+	}
+	drawn := generated(fitted(t, rows), 100)
+	if share := average(drawn, isWet); share > 0.005 || average(drawn, rainOf) > 0.002 {
+		t.Errorf("%.4f of the days are wet", share)
+	}
+	if got, want := average(drawn, globalOf), average(rows, globalOf); math.Abs(got/want-1) > radiationWithin {
+		t.Errorf("radiation %.2f MJ m-2 d-1, measured %.2f", got, want)
+	}
+}
+
 func BenchmarkGeneratedYear(b *testing.B) {
 	g := fitted(b, harvardDays(b))
 	b.ReportAllocs()

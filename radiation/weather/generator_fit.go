@@ -24,10 +24,10 @@ const leastTop = 0.5
 // kind is the day's kind.
 func (d *observed) kind() int { return kindOf(d.before, d.state) }
 
-// FitGenerator finds a generator from daily rows: at least five days a year of rows, gaps of whole years allowed. Days
-// that lack global radiation (or sunshine), a temperature or rain are left out; a calendar month with less than
-// 95 % of its days in any five years is a fault. The error is a *FitError listing every fault. Rain missing from every
-// row makes a generator of one kind of day; humidity is drawn only if nearly every row gives it.
+// FitGenerator finds a generator from daily rows in order of date; whole years may be missing between them. Days that lack
+// radiation (or sunshine), a temperature or rain are left out. Every calendar month needs 95 % of the days of five years;
+// more years tell rain and the difference between years better. The error is a *FitError listing every fault. Rain missing
+// from every row makes a generator of one kind of day; humidity is drawn only if 95 % of the days give it.
 func FitGenerator(rows []DailyRecord, site radiation.Site) (*Generator, error) {
 	g := newGenerator(site)
 	days, problems := g.observe(rows)
@@ -37,7 +37,7 @@ func FitGenerator(rows []DailyRecord, site radiation.Site) (*Generator, error) {
 	g.fitRain(days)
 	g.settle()
 	size := humidity
-	if g.humidShare(days) > mostMissing {
+	if g.humidShare(days) > leastSound {
 		size = variables
 	}
 	for v := warmest; v <= coldestOfDay; v++ {
@@ -157,7 +157,7 @@ func (g *Generator) humidShare(days []observed) float64 {
 		}
 	}
 	share := float64(n) / float64(len(days))
-	if share <= mostMissing {
+	if share <= leastSound {
 		g.assumed = append(g.assumed, "humidity is not drawn: it is missing on more than 5 % of the days")
 	}
 	return share

@@ -146,3 +146,43 @@ func (p *matalas) meanVariance(v, n int) float64 {
 	}
 	return sum / float64(n*n)
 }
+
+// correlationsOf are the stationary correlations of x(t) = A x(t-1) + B e(t): M0 = A M0 A' + B B', M1 = A M0, scaled to a
+// unit diagonal of M0.
+func correlationsOf(size int, a, b matrix) (m0, m1 matrix) {
+	p := matalas{size: size}
+	for range 200 { // the spectral radius of A is below 0.8
+		var next matrix
+		for i := range size {
+			for j := range size {
+				for k := range size {
+					next[i][j] += b[i][k] * b[j][k]
+					for l := range size {
+						next[i][j] += a[i][k] * m0[k][l] * a[j][l]
+					}
+				}
+			}
+		}
+		m0 = next
+	}
+	for j := range size {
+		var column vector
+		for i := range size {
+			column[i] = m0[i][j]
+		}
+		for i, v := range p.times(&a, column) {
+			m1[i][j] = v
+		}
+	}
+	var sd vector
+	for i := range size {
+		sd[i] = math.Sqrt(m0[i][i])
+	}
+	for i := range size {
+		for j := range size {
+			m0[i][j] /= sd[i] * sd[j]
+			m1[i][j] /= sd[i] * sd[j]
+		}
+	}
+	return m0, m1
+}

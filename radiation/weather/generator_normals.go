@@ -64,7 +64,7 @@ func spreadRule(colder, span float64) float64 {
 	return 1 + span*(0.08+0.09*colder/span)
 }
 
-// GeneratorFromNormals makes a generator from monthly means (Richardson & Wright 1984). Clearness of dry and of wet days
+// GeneratorFromNormals makes a generator from monthly means (Richardson & Wright 1984). Clearness of all days together
 // follows the distribution that normals have everywhere here (Bendt et al. 1981), with the month's mean kept. What is not
 // given comes from defaults, each in Assumed. The error is a *FitError listing every fault.
 func GeneratorFromNormals(c Climate, site radiation.Site) (*Generator, error) {
@@ -119,7 +119,7 @@ func (g *Generator) climateRain(c *Climate) (share [12]float64) {
 	}
 	guessed := false
 	for m := range share {
-		rain := c.Rain[m] / float64(g.monthLength(m)) // mm d-1
+		rain := c.Rain[m] / float64(monthLength(m)) // mm d-1
 		share[m] = c.WetDays[m]
 		if math.IsNaN(share[m]) {
 			share[m], guessed = rain/rainOfWetDay, true
@@ -136,7 +136,7 @@ func (g *Generator) climateRain(c *Climate) (share [12]float64) {
 		d.wetAfter = [states]float64{after, math.Min(1, gengMore+after)}
 		d.rain = wetDay
 		if share[m] > 0 {
-			d.rain = math.Max(wetDay, c.Rain[m]/float64(g.monthLength(m))/share[m])
+			d.rain = math.Max(wetDay, c.Rain[m]/float64(monthLength(m))/share[m])
 		}
 	}
 	return share
@@ -194,57 +194,11 @@ func (g *Generator) climateClearness(c *Climate, share [12]float64) {
 			mean = 0
 		}
 		ratio := wetClearness.at(warm - n.Mean[m])
-		dryMean := mean / (1 - share[m] + share[m]*ratio)
-		for s, k := range [states]float64{dryMean, dryMean * ratio} {
-			at := clearnessDistribution(k)
-			for i := range months[s][m] {
-				months[s][m][i] = at(float64(i) / scoreNodes)
-			}
-		}
+		months[dry][m], months[wet][m] = splitClearness(mean, share[m], ratio)
 	}
 	for s := range months {
 		for before := range states {
 			g.clear[kindOf(before, s)] = keepMonths(months[s])
 		}
 	}
-}
-
-// correlationsOf are the stationary correlations of x(t) = A x(t-1) + B e(t): M0 = A M0 A' + B B', M1 = A M0, scaled to a
-// unit diagonal of M0.
-func correlationsOf(size int, a, b matrix) (m0, m1 matrix) {
-	p := matalas{size: size}
-	for range 200 { // the spectral radius of A is below 0.8
-		var next matrix
-		for i := range size {
-			for j := range size {
-				for k := range size {
-					next[i][j] += b[i][k] * b[j][k]
-					for l := range size {
-						next[i][j] += a[i][k] * m0[k][l] * a[j][l]
-					}
-				}
-			}
-		}
-		m0 = next
-	}
-	for j := range size {
-		var column vector
-		for i := range size {
-			column[i] = m0[i][j]
-		}
-		for i, v := range p.times(&a, column) {
-			m1[i][j] = v
-		}
-	}
-	var sd vector
-	for i := range size {
-		sd[i] = math.Sqrt(m0[i][i])
-	}
-	for i := range size {
-		for j := range size {
-			m0[i][j] /= sd[i] * sd[j]
-			m1[i][j] /= sd[i] * sd[j]
-		}
-	}
-	return m0, m1
 }

@@ -9,8 +9,8 @@ import (
 
 // What a record must have for a fit.
 const (
-	leastYears  = 5    // years of every calendar month (common practice: fewer say little of the spread between days)
-	mostMissing = 0.95 // share of a month's days in those years that must be sound
+	leastYears = 5    // years of every calendar month (common practice: fewer say little of the spread between days)
+	leastSound = 0.95 // share of a month's days in those years that must be sound
 )
 
 // FitError lists the faults that keep a generator from being made.
@@ -61,11 +61,7 @@ func (g *Generator) observe(rows []DailyRecord) (days []observed, problems []Pro
 		days = append(days, d)
 	}
 	for m, n := range count {
-		length := float64(g.monthLength(m)) - 0.001
-		if m == 1 {
-			length = 28
-		}
-		if want := int(math.Ceil(leastYears * length * mostMissing)); n < want {
+		if want := int(math.Ceil(leastYears * leastSound * float64(monthLength(m)))); n < want {
 			c.add(0, "date", fmt.Sprintf("%d sound days of %s", n, time.Month(m+1)),
 				fmt.Sprintf("at least %d, 95 %% of %d years, each with radiation (or sunshine), tmin, tmax and rain", want, leastYears))
 		}
@@ -108,9 +104,9 @@ func (g *Generator) lightHours(day int) float64 {
 
 func monthOf(day int) int { return monthByDay[day] }
 
-// monthLength is the number of days of a month, January 0, in the table of days.
-func (g *Generator) monthLength(month int) int {
-	return time.Date(sunYear-1, time.Month(month+2), 0, 0, 0, 0, 0, time.UTC).Day()
+// monthLength is the number of days of a month, January 0, in a common year.
+func monthLength(month int) int {
+	return time.Date(sunYear, time.Month(month+2), 0, 0, 0, 0, 0, time.UTC).Day()
 }
 
 // monthByDay is the month of every day of a leap year, January 0.

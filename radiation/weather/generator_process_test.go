@@ -170,3 +170,32 @@ func TestScoreTables(t *testing.T) {
 		}
 	}
 }
+
+// The parts of a split distribution make the whole again, with the share and the ratio asked for.
+func TestSplitClearness(t *testing.T) {
+	for _, c := range []struct{ mean, share, ratio float64 }{{0.45, 0.4, 0.6}, {0.3, 0.7, 0.5}, {0.6, 0.05, 0.66}, {0.5, 0.95, 0.8}} {
+		dryDays, wetDays := splitClearness(c.mean, c.share, c.ratio)
+		whole := (1-c.share)*dryDays.mean() + c.share*wetDays.mean()
+		if math.Abs(whole/c.mean-1) > 0.005 || math.Abs(wetDays.mean()/dryDays.mean()-c.ratio) > 0.01 {
+			t.Errorf("%+v: mean %.4f, ratio %.3f", c, whole, wetDays.mean()/dryDays.mean())
+		}
+		at := clearnessDistribution(c.mean)
+		for _, share := range []float64{0.1, 0.5, 0.9} { // the share of all days below a value
+			below := (1-c.share)*shareBelow(&dryDays, at(share)) + c.share*shareBelow(&wetDays, at(share))
+			if math.Abs(below-share) > 0.01 {
+				t.Errorf("%+v: %.3f of the days below the quantile of %.1f", c, below, share)
+			}
+		}
+	}
+	for _, share := range []float64{0, 1} {
+		if dryDays, wetDays := splitClearness(0.45, share, 0.6); dryDays != wetDays || math.Abs(dryDays.mean()-0.45) > 0.002 {
+			t.Errorf("share %g: means %.4f and %.4f, want 0.45", share, dryDays.mean(), wetDays.mean())
+		}
+	}
+}
+
+func shareBelow(q *quantiles, value float64) float64 {
+	t := scoreTable{}
+	t[0][0] = *q
+	return t.share(0, season{}, value)
+}

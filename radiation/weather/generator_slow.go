@@ -10,7 +10,7 @@ import (
 // 1998, J. Climate 11:591-601; Hansen & Mavromatis 2001, Agric. For. Meteorol. 109:297-310). slowPart gives each part of a
 // year a shift of its own: scores, the logit of the chance of rain and the logarithm of the amounts. Its spread is what the
 // means of the record's seasons vary by beyond what the fast process explains.
-type slowPart [halves2][slowKinds]float64 // standard deviations, in the shifted quantity's own units
+type slowPart [halvesOfYear][slowKinds]float64 // standard deviations, in the shifted quantity's own units
 
 // Kinds of shifts: those of the scores come first, in their order.
 const (
@@ -20,10 +20,10 @@ const (
 )
 
 const (
-	halves2   = 2   // of the year: light from 21 March to 22 September in the north, and dark
-	parts     = 3   // of a calendar year: dark, light, dark
-	mostSlow  = 0.4 // share of a score's variance that may be slow (chosen)
-	leastPart = 60  // sound days that make a part of a year count (chosen)
+	halvesOfYear = 2   // of the year: light from 21 March to 22 September in the north, and dark
+	parts        = 3   // of a calendar year: dark, light, dark
+	mostSlow     = 0.4 // share of a score's variance that may be slow (chosen)
+	leastPart    = 60  // sound days that make a part of a year count (chosen)
 )
 
 // partOf is the part of the calendar year of a day of the table.
@@ -178,9 +178,9 @@ func (s *slowPart) fast(size int, m0, m1 matrix) matalas {
 			for h := range s {
 				a, b := s[h][i], s[h][j]
 				if i == j || i <= coldestOfDay && j <= coldestOfDay {
-					shared += a * b / halves2
+					shared += a * b / halvesOfYear
 				}
-				rest += math.Sqrt((1-a*a)*(1-b*b)) / halves2
+				rest += math.Sqrt((1-a*a)*(1-b*b)) / halvesOfYear
 			}
 			m0[i][j] = (m0[i][j] - shared) / rest
 			m1[i][j] = (m1[i][j] - shared) / rest

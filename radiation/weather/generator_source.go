@@ -8,7 +8,7 @@ import (
 )
 
 // Generated is a run of generated years in the place of measured daily weather: years First, First+1 .. of a
-// seed, with the dates of consecutive calendar years.
+// seed, with the dates of consecutive calendar years. Every year starts afresh: no weather carries over New Year.
 type Generated struct {
 	Generator   *Generator
 	Seed, First uint64

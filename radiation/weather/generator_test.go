@@ -209,3 +209,35 @@ func TestFaultsOfRecordsForTheGenerator(t *testing.T) {
 		}
 	}
 }
+
+// Sunshine hours do for radiation; without rain or humidity there is one kind of day, or no humidity, and it is said.
+func TestRecordsWithLess(t *testing.T) {
+	rows := harvardDays(t)
+	g := fitted(t, rows)
+	long := g.LongMean()
+	for i := range rows {
+		r := &rows[i]
+		day := dayIndex(r.Date.Month(), r.Date.Day())
+		r.Sunshine = math.Max(0, math.Min(1, (r.Global/g.days[day].top-angstromA)/angstromB)) * g.lightHours(day)
+		r.Global, r.Rain = math.NaN(), math.NaN()
+		if i%10 == 0 {
+			r.Humidity = math.NaN()
+		}
+	}
+	g = fitted(t, rows)
+	said := strings.Join(g.Assumed(), "; ")
+	if !strings.Contains(said, "no row has rain") || !strings.Contains(said, "humidity is not drawn") {
+		t.Errorf("not said: %s", said)
+	}
+	for _, r := range g.Year(1, 1) {
+		if !math.IsNaN(r.Rain) || !math.IsNaN(r.Humidity) || math.IsNaN(r.Global+r.Tmin+r.Tmax) {
+			t.Fatalf("%+v", r)
+		}
+	}
+	// sunshine has no clearness below a quarter, so the dark days come out brighter
+	for m, x := range g.LongMean() {
+		if off := x.Global/long[m].Global - 1; off < -0.01 || off > 0.15 {
+			t.Errorf("month %d: radiation from sunshine %.2f MJ m-2 d-1, measured %.2f", m+1, x.Global, long[m].Global)
+		}
+	}
+}
