@@ -27,6 +27,9 @@ const (
 	// Tjoelker is a Q10 of 3.22 - 0.046 (T + T_ref)/2 (Tjoelker, Oleksyn & Reich 2001, Global
 	// Change Biol 7:223-230).
 	Tjoelker
+	// Arrhenius is exp(18.72 - 46.39/(R T)), kJ mol-1 (Bernacchi et al. 2001, Plant Cell Environ. 24:253-259): that of a biochemical leaf
+	// whose capacities do not acclimate.
+	Arrhenius
 )
 
 // Coefficients of Heskel et al. (2016): per deg C and per deg C squared.
@@ -54,8 +57,8 @@ func (t Temperature) Check() error {
 			return fmt.Errorf("%s is %g; it must be %g to %g", c.name, c.v, c.low, c.high)
 		}
 	}
-	if t.Respiration < ConstantQ10 || t.Respiration > Tjoelker {
-		return fmt.Errorf("respiration curve %d is not known; it must be ConstantQ10, Heskel or Tjoelker", t.Respiration)
+	if t.Respiration < ConstantQ10 || t.Respiration > Arrhenius {
+		return fmt.Errorf("respiration curve %d is not known; it must be ConstantQ10, Heskel, Tjoelker or Arrhenius", t.Respiration)
 	}
 	return nil
 }
@@ -82,6 +85,8 @@ func (t Temperature) rdFrom(from, to float64) float64 {
 		return math.Exp((to - from) * (heskelLinear + heskelSquare*(to+from)))
 	case Tjoelker:
 		return math.Pow(3.22-0.046*(to+from)/2, (to-from)/10)
+	case Arrhenius:
+		return breathHeat.at(to) / breathHeat.at(from)
 	}
 	return math.Exp(math.Log(t.Q10) * (to - from) / 10)
 }

@@ -18,7 +18,7 @@ func biochemistryKeys(p string) []Key {
 		{Path: q + ".g1", Kind: Number, Low: 0.5, Top: 15, Range: "0.5 to 15 kPa^0.5", Example: "4.45", Meaning: "slope of the stomata"},
 		{Path: q + ".lma", Kind: Number, Low: 5, Top: 1000, Range: "5 to 1000", Example: "55", Meaning: "leaf mass per area"},
 		{Path: q + ".growth_light", Kind: Number, Low: 0.1, Top: 100, Range: "0.1 to 100", Example: "50", Meaning: "light the leaf grew in"},
-		{Path: q + ".capacities", Kind: Choice, Words: []string{"acclimated", "fixed"}, Default: "acclimated", Example: "fixed", Meaning: "acclimated: their heat follows the month before (Kattge & Knorr 2007); fixed: Bernacchi et al. 2001"},
+		{Path: q + ".capacities", Kind: Choice, Words: []string{"acclimated", "fixed"}, Default: "acclimated", Example: "fixed", Meaning: "acclimated: their heat follows the month before (Kattge & Knorr 2007), respiration Heskel et al. 2016; fixed: all Bernacchi et al. 2001, 2003"},
 	}
 }
 
@@ -68,6 +68,9 @@ func (r *plantReader) biochemistry(p *ledger.Plant, block val, leafKeys map[stri
 	}
 	p.Chemistry = &ledger.Chemistry{Leaf: q, CO2: r.co2, Acclimates: choice != "fixed"}
 	p.Temperature.Ref, p.Temperature.Respiration = 25, leaf.Heskel
+	if choice == "fixed" {
+		p.Temperature.Respiration = leaf.Arrhenius
+	}
 	p.Traits = r.powers(leafKeys, set, light)
 }
 
