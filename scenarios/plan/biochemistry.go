@@ -3,6 +3,8 @@ package plan
 import (
 	"fmt"
 	"math"
+	"slices"
+	"strings"
 
 	"shadeledger/leaf"
 	"shadeledger/scenarios/ledger"
@@ -33,6 +35,13 @@ func (r *plantReader) biochemistry(p *ledger.Plant, block val, leafKeys map[stri
 	f, before := r.fields(b), len(r.faults)
 	x, given := r.number(f["growth_light"])
 	light := r.or(x, given, f["growth_light"], b.path+".growth_light", sunLight, fmt.Sprintf("%d %%", sunLight), practice+", by leaf position")
+	var perArea []string
+	for _, name := range []string{"vcmax", "jmax", "rd", "lma"} {
+		if f[name].present() {
+			perArea = append(perArea, name)
+		}
+	}
+	scale := r.basis(leafKeys, strings.Join(perArea, ", "))
 	number := func(name string) float64 {
 		x, given := r.number(f[name])
 		fallback, held := r.held(name, light)
@@ -42,7 +51,10 @@ func (r *plantReader) biochemistry(p *ledger.Plant, block val, leafKeys map[stri
 			}
 			return math.NaN()
 		}
-		if given {
+		switch {
+		case given && slices.Contains(perArea, name):
+			return x * scale
+		case given:
 			return x
 		}
 		r.from = append(r.from, "leaf.biochemistry."+name)

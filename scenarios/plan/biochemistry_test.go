@@ -121,3 +121,50 @@ func TestAcclimatedCapacitiesBreatheAsHeskel(t *testing.T) {
 		t.Errorf("%g at 10 C, %g by Heskel et al.", got, want)
 	}
 }
+
+// area_basis scales what the plan gives per leaf area, and nothing else: not the slope of the stomata, not the library's values.
+func TestAreaBasisOfCapacities(t *testing.T) {
+	type leafOf struct{ vcmax, jmax, rd, g1, lma float64 }
+	read := func(seedling string) leafOf {
+		p, faults := seedlingOf(t, seedling)
+		if p == nil {
+			t.Fatal(seedling, faults)
+		}
+		b := p.Seedlings[0].Chemistry.Leaf
+		return leafOf{b.Vcmax, b.Jmax, b.Rd, b.G1, p.Seedlings[0].Traits.At(50).LMA}
+	}
+	const spruce = "{species: Picea rubens, height: 0.5 m, leaf: {biochemistry: {vcmax: 40, jmax: 70, rd: 0.7, g1: 2.4%s, growth_light: 50}%s}}"
+	library := read(fmt.Sprintf(spruce, "", ", area_basis: half")).lma
+	for word, scale := range map[string]float64{"half": 1, "projected": 2 / (1 + math.Pi/2), "all": 2} {
+		got := read(fmt.Sprintf(spruce, ", lma: 150", ", area_basis: "+word))
+		want := leafOf{40 * scale, 70 * scale, 0.7 * scale, 2.4, 150 * scale}
+		for _, v := range [][2]float64{{got.vcmax, want.vcmax}, {got.jmax, want.jmax}, {got.rd, want.rd}, {got.g1, want.g1}, {got.lma, want.lma}} {
+			if math.Abs(v[0]/v[1]-1) > 1e-12 {
+				t.Errorf("%s: %+v, want %+v", word, got, want)
+			}
+		}
+		if got := read(fmt.Sprintf(spruce, "", ", area_basis: "+word)).lma; got != library {
+			t.Errorf("%s: the library's lma becomes %g from %g", word, got, library)
+		}
+	}
+	const birch = "{species: Betula alleghaniensis, height: 0.5 m, leaf: {biochemistry: {rd: 0.6}, area_basis: %s}}"
+	half, flat, all := read(fmt.Sprintf(birch, "half")), read(fmt.Sprintf(birch, "projected")), read(fmt.Sprintf(birch, "all"))
+	if flat != half || all.rd != 1.2 || all.vcmax != half.vcmax || all.lma != half.lma {
+		t.Errorf("flat leaves: half %+v, projected %+v, all %+v", half, flat, all)
+	}
+}
+
+// Needles need the area their own values are per; where none is given per area there is nothing to say it of.
+func TestAreaBasisFaults(t *testing.T) {
+	for seedling, want := range map[string]string{
+		"{species: Picea rubens, height: 0.5 m, leaf: {biochemistry: {vcmax: 40, jmax: 70}}}":                                "area_basis: missing; give area that rates, capacities and lma are per",
+		"{species: Betula alleghaniensis, height: 0.5 m, leaf: {biochemistry: {g1: 4}, area_basis: all}}":                    "area_basis: all; nothing here is given per leaf area",
+		"{species: Picea rubens, height: 0.5 m, leaf: {area_basis: projected}}":                                              "area_basis: projected; nothing here is given per leaf area",
+		"{species: Picea rubens, height: 0.5 m, leaf: {biochemistry: {vcmax: 40, jmax: 70, lma: 150}, area_basis: needles}}": "area_basis: needles;",
+	} {
+		p, faults := seedlingOf(t, seedling)
+		if p != nil || len(faults) != 1 || !strings.Contains(faults[0].Error(), want) {
+			t.Errorf("%s: %v, want %q", seedling, faults, want)
+		}
+	}
+}

@@ -82,6 +82,7 @@ func (w *writer) biochemistry(s scenarios.Seedling, path string) {
 	capacities := map[bool]string{true: "acclimated", false: "fixed"}[s.Chemistry.Acclimates]
 	w.line(3, "biochemistry", fmt.Sprintf("{vcmax: %s, jmax: %s, rd: %s, g1: %s, lma: %s, growth_light: %s, capacities: %s}",
 		number(b.Vcmax), number(b.Jmax), number(b.Rd), number(b.G1), number(set.LMA), number(light), capacities))
+	w.line(3, "area_basis", "half")
 	w.line(3, "acclimation", rule)
 	w.line(3, "t_opt", w.given(path+".leaf.t_opt", s.Temperature.Opt, func(x float64) string { return number(x) + " C" }))
 	w.line(3, "t_width", w.given(path+".leaf.t_width", s.Temperature.Width, func(x float64) string { return number(x) + " C" }))

@@ -193,6 +193,7 @@ seedlings:
     replacement: {leaf_lifespan: 0.5, fine_root_share: 0.2, fine_root_lifespan: 1.0, construction_cost: 0.60}
   - {species: Betula alleghaniensis, leaf: {biochemistry: {g1: 3.9}}}
   - {species: Acer saccharum, leaf: {biochemistry: {vcmax: 37.7, jmax: 66.1, capacities: fixed, growth_light: 33}, acclimation: none}}
+  - {species: Picea rubens, name: capacities, leaf: {biochemistry: {vcmax: 41, jmax: 71, rd: 0.7, lma: 160}, area_basis: projected}}
 years: {horizon: 25, leaf_regrowth: 11}
 size: {share: 65 %, up_to: 2.2 H, against: constant}
 treatments:

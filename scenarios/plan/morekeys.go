@@ -24,7 +24,7 @@ func seedlingKeys() []Key {
 		{Path: p + ".leaf.t_width", Kind: Quantity, dim: temperature, Low: 4, Top: 60, Range: "4 to 60 C", Example: "18 C", Meaning: "distance from the optimum at which the rate is 1/e"},
 		{Path: p + ".leaf.q10", Kind: Number, Low: 1, Top: 4, Range: "1 to 4", Default: "2.0", Example: "2.0", Meaning: "Q10 of leaf respiration"},
 		{Path: p + ".leaf.light_respiration", Kind: Number, Low: 0, Top: 1, Range: "0 to 1", Default: "1", Example: "0.7", Meaning: "respiration in the light, share of that in the dark"},
-		{Path: p + ".leaf.area_basis", Kind: Choice, Words: []string{"half", "projected", "all"}, Example: "half", Meaning: "area that amax, rd and lma are per; required for needles given in the plan"},
+		{Path: p + ".leaf.area_basis", Kind: Choice, Words: []string{"half", "projected", "all"}, Example: "half", Meaning: "area that rates, capacities and lma are per; required for needles given in the plan"},
 		{Path: p + ".respiration", Kind: Map, Meaning: "maintenance respiration of organs, nmol CO2 g-1 s-1"},
 		{Path: p + ".respiration.stem", Kind: Number, Low: 0, Top: 50, Range: "0 to 50", Example: "1.0", Meaning: "of stem"},
 		{Path: p + ".respiration.root", Kind: Number, Low: 0, Top: 50, Range: "0 to 50", Example: "1.0", Meaning: "of root"},

@@ -202,23 +202,29 @@ func (r *plantReader) leaf(p *ledger.Plant) {
 		r.biochemistry(p, block, f)
 		return
 	}
-	p.Traits = r.acclimation(block, f, r.basis(f, own), p.Temperature)
+	what := ""
+	if own {
+		what = "rates and lma"
+	}
+	p.Traits = r.acclimation(block, f, r.basis(f, what), p.Temperature)
 }
 
-// basis is what rates and LMA per given leaf area are multiplied by to stand per half of the total surface. A needle is
-// taken as half a cylinder: total over projected 1 + pi/2, so half over projected 1.285 (geometry).
-func (r *plantReader) basis(f map[string]val, own bool) float64 {
+// basis is what values per given leaf area are multiplied by to stand per half of the total surface; what names those the plan gives, "" for
+// none. A needle is taken as half a cylinder: total over projected 1 + pi/2, so half over projected 1.285 (geometry).
+func (r *plantReader) basis(f map[string]val, what string) float64 {
 	block := r.block.path + ".leaf"
 	needles := r.species != nil && r.species.Needled()
 	s, ok := r.choice(f["area_basis"])
 	switch {
-	case !ok && own && needles && !f["area_basis"].present():
+	case !ok && what != "" && needles && !f["area_basis"].present():
 		r.need(val{node: r.f["leaf"].node, at: r.f["leaf"].at, path: block, key: "seedlings[].leaf"}, f, "area_basis")
+	case what == "" && (s == "all" || s == "projected" && needles):
+		r.fault(f["area_basis"], "", "nothing here is given per leaf area; the library's values are per half, so leave it out")
 	case s == "all":
-		r.assume(block+".area_basis", "rates and lma times 2", "half of the total surface, from all of it")
+		r.assume(block+".area_basis", what+" times 2", "half of the total surface, from all of it")
 		return 2
 	case s == "projected" && needles:
-		r.assume(block+".area_basis", "rates and lma divided by 1.285", "needle as half a cylinder: total over projected area 1 + pi/2 (geometry)")
+		r.assume(block+".area_basis", what+" divided by 1.285", "needle as half a cylinder: total over projected area 1 + pi/2 (geometry)")
 		return 1 / inventory.Hemisurface
 	}
 	return 1
