@@ -3,10 +3,6 @@ package fit
 import (
 	"errors"
 	"math"
-	"slices"
-
-	"gonum.org/v1/gonum/mat"
-	"gonum.org/v1/gonum/stat/distuv"
 
 	"shadeledger/leaf"
 )
@@ -99,6 +95,9 @@ func (l *limits) slopes(q [4]float64, export bool) (d [4]float64) {
 	return d
 }
 
+// Range that Vcmax, Jmax, Rd and export are held to, umol m-2 s-1: wider than any leaf's (common practice).
+var leastCapacity, mostCapacity = [4]float64{1, 1, -3, 0.1}, [4]float64{400, 800, 15, 100}
+
 // squares with their normal equations.
 func gasNormal(list []limits, q [4]float64, export bool) (A [4][4]float64, g [4]float64, rss float64) {
 	for i := range list {
@@ -149,8 +148,9 @@ func descendGas(list []limits, q *[4]float64, n int) float64 {
 			for i := range n {
 				next[i] += step[i]
 			}
-			next[0], next[1] = math.Max(1, math.Min(400, next[0])), math.Max(1, math.Min(800, next[1]))
-			next[2], next[3] = math.Max(-3, math.Min(15, next[2])), math.Max(0.1, next[3])
+			for i := range next {
+				next[i] = math.Max(leastCapacity[i], math.Min(mostCapacity[i], next[i]))
+			}
 			if ok {
 				if A2, g2, r := gasNormal(list, next, n == 4); r < rss {
 					moved = rss - r
@@ -174,32 +174,14 @@ func gasResult(list []limits, q [4]float64, rss float64, n int) Capacities {
 	c := Capacities{RMSE: math.Sqrt(rss / count), Points: len(list)}
 	c.AICc = count*math.Log(math.Max(rss, 1e-12)/count) + 2*float64(n+1) + 2*float64(n+1)*float64(n+2)/math.Max(1, count-float64(n)-2)
 	A, _, _ := gasNormal(list, q, n == 4)
-	var told []int // a capacity that limits nothing would leave no interval to the others
-	for i := range n {
-		if A[i][i] > 0 {
-			told = append(told, i)
-		}
-	}
-	M := mat.NewDense(len(told), len(told), nil) // Rd always is
-	for i, a := range told {
-		for j, b := range told {
-			M.Set(i, j, A[a][b])
-		}
-	}
-	freedom := math.Max(1, count-float64(len(told)))
-	t := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: freedom}.Quantile((1 + confidence) / 2)
-	var inv mat.Dense
-	singular := inv.Inverse(M) != nil
+	v := intervals(A, n, rss, count)
 	estimate := func(i int) Estimate {
-		at := slices.Index(told, i)
-		if at < 0 {
+		if A[i][i] == 0 {
 			return Estimate{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
 		}
-		se := math.NaN()
-		if !singular {
-			se = math.Sqrt(math.Max(0, rss/freedom*inv.At(at, at)))
-		}
-		return Estimate{q[i], se, q[i] - t*se, q[i] + t*se}
+		one := [4]float64{}
+		one[i] = 1
+		return v.of(q[i], mostCapacity[i], one)
 	}
 	c.Vcmax, c.Jmax, c.Rd, c.Export = estimate(0), estimate(1), estimate(2), estimate(3)
 	for i := range list {

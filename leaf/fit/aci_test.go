@@ -268,6 +268,20 @@ func TestCapacityThatLimitsNothing(t *testing.T) {
 	}
 }
 
+// Six readings at two CO2 that one capacity limits tell neither it nor respiration from each other where the two are the same: no interval.
+func TestCapacitiesNotToldApart(t *testing.T) {
+	at := func(ci, net float64) Gas { return Gas{Ci: ci, Net: net, PPFD: 1500, Temperature: 25} }
+	c, err := CO2Curve([]Gas{at(100, 3), at(100, 3.1), at(100, 2.9), at(900, 18), at(900, 18.2), at(900, 17.9)}, leaf.Bernacchi{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for name, e := range map[string]Estimate{"Vcmax": c.Vcmax, "Jmax": c.Jmax, "Rd": c.Rd} {
+		if math.IsNaN(e.Value) || !math.IsNaN(e.SE+e.Low+e.High) {
+			t.Errorf("%s: %+v", name, e)
+		}
+	}
+}
+
 func TestCO2CurveSaysWhatIsMissing(t *testing.T) {
 	whole := simulated(leaf.Biochemistry{Vcmax: 50, Jmax: 90, Rd: 0.8, Heat: leaf.Bernacchi{}}, noExport, 25)
 	changed := func(f func(*Gas)) []Gas {

@@ -1,5 +1,5 @@
-// Package fit finds leaf parameters from light-response readings, leaf by leaf: three shapes of response by least squares, compared by
-// AICc, each parameter with a 95 % interval, and what is wrong with a curve. It knows no files.
+// Package fit finds leaf parameters from readings, leaf by leaf and by least squares: three shapes of light response, compared by AICc, and
+// capacities from curves over CO2; each parameter with a 95 % interval, and what is wrong with a curve. It knows no files.
 package fit
 
 import (
@@ -8,7 +8,6 @@ import (
 	"math"
 
 	"gonum.org/v1/gonum/mat"
-	"gonum.org/v1/gonum/stat/distuv"
 
 	"shadeledger/leaf"
 )
@@ -33,7 +32,7 @@ func (s Shape) String() string {
 	return []string{"non-rectangular hyperbola", "exponential", "rectangular hyperbola"}[s]
 }
 
-// Estimate is a value with its 95 % interval.
+// Estimate is a value with its 95 % interval, NaN where the readings do not determine it.
 type Estimate struct{ Value, SE, Low, High float64 }
 
 // Fit is a response fitted to one leaf.
@@ -47,8 +46,7 @@ type Fit struct {
 	AICc         float64
 	Points       int
 
-	covariance [4][4]float64 // of Ag, phi, Rd, theta
-	quantile   float64       // of Student's t
+	interval interval // of Ag, phi, Rd, theta
 }
 
 // Net is the fitted net assimilation at a light.
@@ -56,16 +54,9 @@ func (f *Fit) Net(ppfd float64) float64 {
 	return f.Shape.gross(ppfd, [4]float64{f.Ag.Value, f.Phi.Value, f.Rd.Value, f.Theta.Value}) - f.Rd.Value
 }
 
-// Band is half the width of the pointwise 95 % band of the fitted curve at a light, umol m-2 s-1.
+// Band is half the width of the pointwise 95 % band of the fitted curve at a light, umol m-2 s-1; NaN where the readings do not tell it.
 func (f *Fit) Band(ppfd float64) float64 {
-	d := f.Shape.slopes(ppfd, [4]float64{f.Ag.Value, f.Phi.Value, f.Rd.Value, f.Theta.Value})
-	v := 0.0
-	for i := range d {
-		for j := range d {
-			v += d[i] * f.covariance[i][j] * d[j]
-		}
-	}
-	return f.quantile * math.Sqrt(math.Max(0, v))
+	return f.interval.half(f.Shape.slopes(ppfd, [4]float64{f.Ag.Value, f.Phi.Value, f.Rd.Value, f.Theta.Value}))
 }
 
 // gross is the response without respiration; q is Ag, phi, Rd, theta.
@@ -116,9 +107,10 @@ const (
 	lowestTheta, mostTheta = 0.0, 0.999
 	lowestAg, highestAg    = 0.05, 200.0
 	lowestRd, highestRd    = -5.0, 20.0
+	brightest              = 4000.0 // light, umol m-2 s-1; full sun is about half of it
 )
 
-// Curve fits one shape to the points of a leaf, at least two more than the shape's parameters.
+// Curve fits one shape to the points of a leaf, at least one more than the shape's parameters.
 func Curve(points []Point, s Shape) (Fit, error) {
 	if len(points) < s.free()+1 {
 		return Fit{}, fmt.Errorf("%d points; a %s needs at least %d", len(points), s, s.free()+1)
@@ -253,9 +245,6 @@ func solve(A [4][4]float64, g [4]float64, n int, damping float64) (step [4]float
 	return step, true
 }
 
-// confidence of intervals.
-const confidence = 0.95
-
 // result puts intervals to the parameters: the linear approximation at the optimum, by Student's t over the points less the parameters. A curvature at the end
 // of its range is taken as known.
 func (s Shape) result(points []Point, q [4]float64, rss float64) Fit {
@@ -266,54 +255,19 @@ func (s Shape) result(points []Point, q [4]float64, rss float64) Fit {
 	if s == NonRectangular && (q[3] <= lowestTheta+0.01 || q[3] >= mostTheta-0.005) {
 		told = 3
 	}
-	freedom := math.Max(1, n-float64(told))
-	cov := covariance(s, points, q, told, rss/freedom)
-	t := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: freedom}.Quantile((1 + confidence) / 2)
-	f.covariance, f.quantile = cov, t
-	estimate := func(value float64, gradient [4]float64) Estimate {
-		v := 0.0
-		for i := range told {
-			for j := range told {
-				v += gradient[i] * cov[i][j] * gradient[j]
-			}
-		}
-		se := math.Sqrt(math.Max(0, v))
-		return Estimate{value, se, value - t*se, value + t*se}
-	}
-	f.Ag = estimate(q[0], [4]float64{1})
-	f.Phi = estimate(q[1], [4]float64{0, 1})
-	f.Rd = estimate(q[2], [4]float64{0, 0, 1})
-	f.Amax = estimate(q[0]-q[2], [4]float64{1, 0, -1})
-	f.Theta = estimate(q[3], [4]float64{0, 0, 0, 1})
+	A, _ := s.normal(points, q)
+	f.interval = intervals(A, told, rss, n)
+	estimate := f.interval.of
+	f.Ag = estimate(q[0], highestAg, [4]float64{1})
+	f.Phi = estimate(q[1], highestPhi, [4]float64{0, 1})
+	f.Rd = estimate(q[2], highestRd, [4]float64{0, 0, 1})
+	f.Amax = estimate(q[0]-q[2], highestAg, [4]float64{1, 0, -1})
+	f.Theta = estimate(q[3], mostTheta, [4]float64{0, 0, 0, 1})
 	if s == Exponential {
 		f.Theta = Estimate{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
 	}
-	f.Compensation = estimate(s.compensation(q), s.compensationSlopes(q))
+	f.Compensation = estimate(s.compensation(q), brightest, s.compensationSlopes(q))
 	return f
-}
-
-// covariance of the first n parameters.
-func covariance(s Shape, points []Point, q [4]float64, n int, variance float64) (out [4][4]float64) {
-	A, _ := s.normal(points, q)
-	M := mat.NewDense(n, n, nil)
-	for i := range n {
-		for j := range n {
-			M.Set(i, j, A[i][j])
-		}
-	}
-	var inv mat.Dense
-	if err := inv.Inverse(M); err != nil {
-		var c mat.Condition
-		if !errors.As(err, &c) {
-			return out
-		}
-	}
-	for i := range n {
-		for j := range n {
-			out[i][j] = variance * inv.At(i, j)
-		}
-	}
-	return out
 }
 
 // compensation is the light at which the net rate is zero; NaN where respiration is not positive or not below Ag.

@@ -157,6 +157,52 @@ func TestPublishedFits(t *testing.T) {
 	}
 }
 
+// Readings at too few lights do not tell the parameters apart: no interval, where inversion gave 1e7 or 0 for its width. What no reading depends on leaves
+// the others alone, and an interval wider than the range of any leaf is none.
+func TestWhatReadingsDoNotDetermine(t *testing.T) {
+	for _, c := range []struct {
+		name         string
+		points       []Point
+		shape        Shape
+		told, untold func(*Fit) []Estimate
+	}{
+		{"two lights", []Point{{0, -1}, {0, -1.1}, {0, -0.9}, {500, 5}, {500, 5.2}, {500, 5.3}}, NonRectangular, nil,
+			func(f *Fit) []Estimate { return []Estimate{f.Amax, f.Rd, f.Phi, f.Theta, f.Compensation} }},
+		{"three lights", []Point{{0, -1}, {0, -1.1}, {50, 1}, {50, 1.1}, {500, 5}, {500, 5.2}, {500, 5.3}}, NonRectangular, nil,
+			func(f *Fit) []Estimate { return []Estimate{f.Amax, f.Rd, f.Phi, f.Theta, f.Compensation} }},
+		{"three lights, three parameters", []Point{{0, -1}, {0, -1.1}, {50, 1}, {50, 1.1}, {500, 5}, {500, 5.2}, {500, 5.3}}, Rectangular,
+			func(f *Fit) []Estimate { return []Estimate{f.Amax, f.Rd, f.Phi, f.Compensation} }, nil},
+		{"darkness", []Point{{0, -1}, {0, -1.1}, {0, -0.9}, {0, -1}, {0, -1}, {0, -1.3}}, NonRectangular,
+			func(f *Fit) []Estimate { return []Estimate{f.Rd} },
+			func(f *Fit) []Estimate { return []Estimate{f.Ag, f.Amax, f.Phi, f.Theta} }},
+		{"no bend", []Point{{0, -1.1}, {20, 0.05}, {40, 1}, {60, 1.9}, {80, 3.1}, {100, 4}}, NonRectangular,
+			func(f *Fit) []Estimate { return []Estimate{f.Rd, f.Phi, f.Compensation} },
+			func(f *Fit) []Estimate { return []Estimate{f.Amax, f.Theta} }},
+	} {
+		f, err := Curve(c.points, c.shape)
+		if err != nil {
+			t.Fatal(c.name, err)
+		}
+		for i, e := range list(c.untold, &f) {
+			if math.IsNaN(e.Value) || !math.IsNaN(e.SE) || !math.IsNaN(e.Low) || !math.IsNaN(e.High) {
+				t.Errorf("%s, untold %d: %+v", c.name, i, e)
+			}
+		}
+		for i, e := range list(c.told, &f) {
+			if !(e.Low < e.Value && e.Value < e.High) {
+				t.Errorf("%s, told %d: %+v", c.name, i, e)
+			}
+		}
+	}
+}
+
+func list(of func(*Fit) []Estimate, f *Fit) []Estimate {
+	if of == nil {
+		return nil
+	}
+	return of(f)
+}
+
 // Slopes of every shape against differences.
 func TestSlopes(t *testing.T) {
 	q := [4]float64{11, 0.045, 1.1, 0.7}

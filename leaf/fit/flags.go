@@ -43,13 +43,16 @@ func Flags(readings []Reading, f *Fit) (out []string) {
 		flag("few points: %d, %d of them below %d umol; at least %d and %d", len(readings), dims, dim, fewest, dimPoints)
 	}
 	if low > darkest {
-		flag("no dark point: the darkest is at %.3g umol, so Rd is extrapolated", low)
+		flag("no dark point: the darkest is at %.4g umol, so Rd is extrapolated", low)
 	}
 	if f.Rd.Value <= 0 {
 		flag("Rd is not positive: check the sign of the readings and the leak of the chamber")
 	}
-	if f.Net(high) < plateau*f.Amax.Value {
-		flag("no plateau: %.0f %% of Amax at the brightest point, so Amax is extrapolated", 100*f.Net(high)/f.Amax.Value)
+	switch top := f.Net(high); {
+	case f.Amax.Value <= 0 || top <= 0:
+		flag("no net uptake at the brightest point, %.4g umol: a dead leaf, or the sign of the readings", high)
+	case top < plateau*f.Amax.Value:
+		flag("no plateau: %.0f %% of Amax at the brightest point, so Amax is extrapolated", 100*top/f.Amax.Value)
 	}
 	flagInhibition(readings, f, high, flag)
 	flagDrift(readings, f, flag)
@@ -68,8 +71,8 @@ func flagInhibition(readings []Reading, f *Fit, high float64, flag func(string, 
 			last = r.Net
 		}
 	}
-	if at < high && best-last > math.Max(inhibited*best, 3*f.RMSE) {
-		flag("photoinhibition: the rate falls by %.0f %% from %.3g to %.3g umol", 100*(best-last)/best, at, high)
+	if at < high && best > 0 && best-last > math.Max(inhibited*best, 3*f.RMSE) {
+		flag("photoinhibition: the rate falls by %.0f %% from %.4g to %.4g umol", 100*(best-last)/best, at, high)
 	}
 }
 
@@ -78,7 +81,7 @@ func flagDrift(readings []Reading, f *Fit, flag func(string, ...any)) {
 	for i, a := range readings {
 		for _, b := range readings[i+1:] {
 			if math.Abs(a.PPFD-b.PPFD) <= 0.02*math.Max(a.PPFD, dim) && math.Abs(a.Net-b.Net) > math.Max(drifted*f.Amax.Value, 4*f.RMSE) {
-				flag("drift: %.3g and %.3g umol CO2 m-2 s-1 at %.3g umol of light", a.Net, b.Net, a.PPFD)
+				flag("drift: %.3g and %.3g umol CO2 m-2 s-1 at %.4g umol of light", a.Net, b.Net, a.PPFD)
 				return
 			}
 		}
@@ -89,7 +92,7 @@ func flagDrift(readings []Reading, f *Fit, flag func(string, ...any)) {
 func flagStomata(readings []Reading, flag func(string, ...any)) {
 	for _, r := range readings {
 		if r.PPFD >= 2*dim && (r.Ci < closedCi || r.Conductance < closedConductance) {
-			flag("closed stomata at %.3g umol: the curve is not that of the leaf's capacity", r.PPFD)
+			flag("closed stomata at %.4g umol: the curve is not that of the leaf's capacity", r.PPFD)
 			return
 		}
 	}

@@ -27,6 +27,12 @@ func TestFlags(t *testing.T) {
 		{"few", "few points", func(r []Reading) []Reading { return append(r[:2], r[9:]...) }},
 		{"no dark point", "no dark point", func(r []Reading) []Reading { return r[2:] }},
 		{"no plateau", "no plateau", func(r []Reading) []Reading { return r[:9] }},
+		{"dead leaf", "no net uptake at the brightest point, 2000 umol", func(r []Reading) []Reading {
+			for i := range r {
+				r[i].Net = -1 - 0.01*float64(i%3)
+			}
+			return r
+		}},
 		{"wrong sign", "Rd is not positive", func(r []Reading) []Reading {
 			for i := range r {
 				r[i].Net += 1.5
@@ -62,6 +68,9 @@ func TestFlags(t *testing.T) {
 		}
 		if got := strings.Join(Flags(r, &f), "; "); c.want == "" && got != "" || !strings.Contains(got, c.want) {
 			t.Errorf("%s: %q", c.name, got)
+		}
+		if got := strings.Join(Flags(r, &f), "; "); f.Amax.Value <= 0 && strings.Contains(got, "% of Amax") {
+			t.Errorf("%s: a share of no Amax: %q", c.name, got)
 		}
 	}
 }
