@@ -25,7 +25,6 @@ type Capacities struct {
 	RMSE                    float64 // umol m-2 s-1
 	AICc                    float64
 	Points                  int
-	ByRubisco, ByLight      int // points that each limits
 }
 
 // limits are what one reading allows per unit of each capacity.
@@ -51,12 +50,12 @@ func CO2Curve(readings []Gas, heat leaf.Heat) (Capacities, error) {
 	for i, g := range readings {
 		list[i] = limit(g, heat)
 	}
-	best, err := capacities(list, 3)
+	best, err := capacities(gas{list: list})
 	if err != nil {
 		return best, err
 	}
 	// AICc of four capacities and a variance takes seven readings
-	if full, err := capacities(list, 4); len(list) > leastGas && err == nil && full.AICc < best.AICc {
+	if full, err := capacities(gas{list: list, export: true}); len(list) > leastGas && err == nil && full.AICc < best.AICc {
 		return full, nil
 	}
 	return best, nil
@@ -98,14 +97,35 @@ func (l *limits) slopes(q [4]float64, export bool) (d [4]float64) {
 // Range that Vcmax, Jmax, Rd and export are held to, umol m-2 s-1: wider than any leaf's (common practice).
 var leastCapacity, mostCapacity = [4]float64{1, 1, -3, 0.1}, [4]float64{400, 800, 15, 100}
 
-// squares with their normal equations.
-func gasNormal(list []limits, q [4]float64, export bool) (A [4][4]float64, g [4]float64, rss float64) {
-	for i := range list {
-		l := &list[i]
-		rate, _ := l.gross(q, export)
+// gas is the readings of a curve, fitted without or with export.
+type gas struct {
+	list   []limits
+	export bool
+}
+
+func (c gas) free() (n int, low, high [4]float64) {
+	if c.export {
+		return 4, leastCapacity, mostCapacity
+	}
+	return 3, leastCapacity, mostCapacity
+}
+
+func (c gas) squares(q [4]float64) (sum float64) {
+	for i := range c.list {
+		l := &c.list[i]
+		rate, _ := l.gross(q, c.export)
 		e := l.net - rate + q[2]*l.rd
-		rss += e * e
-		d := l.slopes(q, export)
+		sum += e * e
+	}
+	return sum
+}
+
+func (c gas) normal(q [4]float64) (A [4][4]float64, g [4]float64) {
+	for i := range c.list {
+		l := &c.list[i]
+		rate, _ := l.gross(q, c.export)
+		e := l.net - rate + q[2]*l.rd
+		d := l.slopes(q, c.export)
 		for a := range d {
 			g[a] += d[a] * e
 			for b := range d {
@@ -113,20 +133,20 @@ func gasNormal(list []limits, q [4]float64, export bool) (A [4][4]float64, g [4]
 			}
 		}
 	}
-	return A, g, rss
+	return A, g
 }
 
-// capacities fits the first n of Vcmax, Jmax, Rd, export from several starts, since the point where one limit takes over is not smooth.
-func capacities(list []limits, n int) (Capacities, error) {
+// capacities are fitted from several starts, since the point where one limit takes over is not smooth.
+func capacities(c gas) (Capacities, error) {
 	best, rss := [4]float64{}, math.Inf(1)
 	most := 0.0
-	for _, l := range list {
+	for _, l := range c.list {
 		most = math.Max(most, l.net)
 	}
 	for _, v := range []float64{15, 40, 80, 150} {
 		for _, ratio := range []float64{1.3, 1.9, 2.6} {
 			q := [4]float64{v, ratio * v, 0.015 * v, (most + 0.015*v) / 3}
-			if r := descendGas(list, &q, n); r < rss {
+			if r := descend(c, &q); r < rss {
 				best, rss = q, r
 			}
 		}
@@ -134,63 +154,24 @@ func capacities(list []limits, n int) (Capacities, error) {
 	if math.IsNaN(rss) || math.IsInf(rss, 1) {
 		return Capacities{}, errors.New("no capacities fit; are CO2 in ppm and assimilation in umol m-2 s-1?")
 	}
-	return gasResult(list, best, rss, n), nil
+	return c.result(best, rss), nil
 }
 
-func descendGas(list []limits, q *[4]float64, n int) float64 {
-	damping := 1e-2
-	A, g, rss := gasNormal(list, *q, n == 4)
-	for range 150 {
-		moved := 0.0
-		for range 12 {
-			step, ok := solve(A, g, n, damping)
-			next := *q
-			for i := range n {
-				next[i] += step[i]
-			}
-			for i := range next {
-				next[i] = math.Max(leastCapacity[i], math.Min(mostCapacity[i], next[i]))
-			}
-			if ok {
-				if A2, g2, r := gasNormal(list, next, n == 4); r < rss {
-					moved = rss - r
-					*q, A, g, rss = next, A2, g2, r
-					damping = math.Max(1e-12, damping/5)
-					break
-				}
-			}
-			damping *= 4
-		}
-		if moved < 1e-13*(rss+1e-12) {
-			break
-		}
-	}
-	return rss
-}
-
-// gasResult puts intervals to capacities as Curve does; one that limits no point is not told.
-func gasResult(list []limits, q [4]float64, rss float64, n int) Capacities {
-	count := float64(len(list))
-	c := Capacities{RMSE: math.Sqrt(rss / count), Points: len(list)}
-	c.AICc = count*math.Log(math.Max(rss, 1e-12)/count) + 2*float64(n+1) + 2*float64(n+1)*float64(n+2)/math.Max(1, count-float64(n)-2)
-	A, _, _ := gasNormal(list, q, n == 4)
+// result puts intervals to capacities as to a light response; one that limits no point is not told.
+func (c gas) result(q [4]float64, rss float64) Capacities {
+	n, _, _ := c.free()
+	count := float64(len(c.list))
+	out := Capacities{RMSE: math.Sqrt(rss / count), AICc: aicc(rss, count, n), Points: len(c.list)}
+	A, _ := c.normal(q)
 	v := intervals(A, n, rss, count)
-	estimate := func(i int) Estimate {
+	for i, to := range []*Estimate{&out.Vcmax, &out.Jmax, &out.Rd, &out.Export} {
 		if A[i][i] == 0 {
-			return Estimate{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
+			*to = Estimate{math.NaN(), math.NaN(), math.NaN(), math.NaN()}
+			continue
 		}
 		one := [4]float64{}
 		one[i] = 1
-		return v.of(q[i], mostCapacity[i], one)
+		*to = v.of(q[i], mostCapacity[i], one)
 	}
-	c.Vcmax, c.Jmax, c.Rd, c.Export = estimate(0), estimate(1), estimate(2), estimate(3)
-	for i := range list {
-		switch _, by := list[i].gross(q, n == 4); by {
-		case 0:
-			c.ByRubisco++
-		case 1:
-			c.ByLight++
-		}
-	}
-	return c
+	return out
 }

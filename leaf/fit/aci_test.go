@@ -268,17 +268,23 @@ func TestCapacityThatLimitsNothing(t *testing.T) {
 	}
 }
 
-// Six readings at two CO2 that one capacity limits tell neither it nor respiration from each other where the two are the same: no interval.
+// Readings at two CO2, one limited by each capacity, do not tell three parameters apart: no interval.
 func TestCapacitiesNotToldApart(t *testing.T) {
-	at := func(ci, net float64) Gas { return Gas{Ci: ci, Net: net, PPFD: 1500, Temperature: 25} }
-	c, err := CO2Curve([]Gas{at(100, 3), at(100, 3.1), at(100, 2.9), at(900, 18), at(900, 18.2), at(900, 17.9)}, leaf.Bernacchi{})
-	if err != nil {
-		t.Fatal(err)
+	var c gas
+	for _, net := range []float64{3, 3.1, 2.9} {
+		for _, ci := range []float64{100, 900} {
+			c.list = append(c.list, limit(Gas{Ci: ci, Net: net, PPFD: 1500, Temperature: 25}, leaf.Bernacchi{}))
+		}
 	}
-	for name, e := range map[string]Estimate{"Vcmax": c.Vcmax, "Jmax": c.Jmax, "Rd": c.Rd} {
-		if math.IsNaN(e.Value) || !math.IsNaN(e.SE+e.Low+e.High) {
+	out := c.result([4]float64{50, 90, 0.8}, 0.1)
+	for name, e := range map[string]Estimate{"Vcmax": out.Vcmax, "Jmax": out.Jmax, "Rd": out.Rd} {
+		if math.IsNaN(e.Value) || !math.IsNaN(e.SE) || !math.IsNaN(e.Low) || !math.IsNaN(e.High) {
 			t.Errorf("%s: %+v", name, e)
 		}
+	}
+	c.list = append(c.list, limit(Gas{Ci: 150, Net: 5, PPFD: 1500, Temperature: 25}, leaf.Bernacchi{}))
+	if out = c.result([4]float64{50, 90, 0.8}, 0.1); !(out.Vcmax.Low < 50 && out.Jmax.Low < 90 && out.Rd.Low < 0.8) {
+		t.Errorf("with a third CO2: %+v", out)
 	}
 }
 

@@ -7,8 +7,6 @@ import (
 	"fmt"
 	"math"
 
-	"gonum.org/v1/gonum/mat"
-
 	"shadeledger/leaf"
 )
 
@@ -93,8 +91,8 @@ func (s Shape) slopes(ppfd float64, q [4]float64) (d [4]float64) {
 	return d
 }
 
-// free is how many parameters a shape has.
-func (s Shape) free() int {
+// parameters is how many a shape has.
+func (s Shape) parameters() int {
 	if s == NonRectangular {
 		return 4
 	}
@@ -112,14 +110,14 @@ const (
 
 // Curve fits one shape to the points of a leaf, at least one more than the shape's parameters.
 func Curve(points []Point, s Shape) (Fit, error) {
-	if len(points) < s.free()+1 {
-		return Fit{}, fmt.Errorf("%d points; a %s needs at least %d", len(points), s, s.free()+1)
+	if len(points) < s.parameters()+1 {
+		return Fit{}, fmt.Errorf("%d points; a %s needs at least %d", len(points), s, s.parameters()+1)
 	}
 	best, rss := [4]float64{}, math.Inf(1)
 	for _, theta := range s.starts() {
 		q := guess(points)
 		q[3] = theta
-		if r := s.descend(points, &q); r < rss {
+		if r := descend(light{s, points}, &q); r < rss {
 			best, rss = q, r
 		}
 	}
@@ -159,59 +157,28 @@ func guess(points []Point) [4]float64 {
 	return [4]float64{math.Max(0.5, most+rd), phi, rd, 0}
 }
 
-// descend is the Levenberg-Marquardt method (Marquardt 1963, J. Soc. Ind. Appl. Math. 11:431-441) with steps held to the parameters'
-// ranges; it gives the residual sum of squares.
-func (s Shape) descend(points []Point, q *[4]float64) float64 {
-	n := s.free()
-	damping, rss := 1e-3, s.squares(points, *q)
-	for range 200 {
-		A, g := s.normal(points, *q)
-		done := true
-		for range 12 {
-			step, ok := solve(A, g, n, damping)
-			if !ok {
-				damping *= 10
-				continue
-			}
-			next := hold(*q, step)
-			if r := s.squares(points, next); r < rss {
-				done = rss-r < 1e-12*(rss+1e-12)
-				*q, rss = next, r
-				damping = math.Max(1e-12, damping/5)
-				break
-			}
-			damping *= 4
-		}
-		if done {
-			return rss
-		}
-	}
-	return rss
+// light is a shape with the points it is fitted to.
+type light struct {
+	Shape
+	points []Point
 }
 
-// hold takes a step and keeps the parameters in range.
-func hold(q, step [4]float64) [4]float64 {
-	low := [4]float64{lowestAg, 1e-5, lowestRd, lowestTheta}
-	high := [4]float64{highestAg, highestPhi, highestRd, mostTheta}
-	for i := range q {
-		q[i] = math.Max(low[i], math.Min(high[i], q[i]+step[i]))
-	}
-	return q
+func (l light) free() (n int, low, high [4]float64) {
+	return l.parameters(), [4]float64{lowestAg, 1e-5, lowestRd, lowestTheta}, [4]float64{highestAg, highestPhi, highestRd, mostTheta}
 }
 
-func (s Shape) squares(points []Point, q [4]float64) (sum float64) {
-	for _, p := range points {
-		e := p.Net - s.gross(p.PPFD, q) + q[2]
+func (l light) squares(q [4]float64) (sum float64) {
+	for _, p := range l.points {
+		e := p.Net - l.gross(p.PPFD, q) + q[2]
 		sum += e * e
 	}
 	return sum
 }
 
-// normal gives the normal equations.
-func (s Shape) normal(points []Point, q [4]float64) (A [4][4]float64, g [4]float64) {
-	for _, p := range points {
-		e := p.Net - s.gross(p.PPFD, q) + q[2]
-		d := s.slopes(p.PPFD, q)
+func (l light) normal(q [4]float64) (A [4][4]float64, g [4]float64) {
+	for _, p := range l.points {
+		e := p.Net - l.gross(p.PPFD, q) + q[2]
+		d := l.slopes(p.PPFD, q)
 		for i := range d {
 			g[i] += d[i] * e
 			for j := range d {
@@ -222,40 +189,16 @@ func (s Shape) normal(points []Point, q [4]float64) (A [4][4]float64, g [4]float
 	return A, g
 }
 
-// solve is a damped step of the first n parameters.
-func solve(A [4][4]float64, g [4]float64, n int, damping float64) (step [4]float64, ok bool) {
-	M := mat.NewSymDense(n, nil)
-	for i := range n {
-		for j := i; j < n; j++ {
-			M.SetSym(i, j, A[i][j])
-		}
-		M.SetSym(i, i, A[i][i]*(1+damping)+1e-15)
-	}
-	var c mat.Cholesky
-	if !c.Factorize(M) {
-		return step, false
-	}
-	x := mat.NewVecDense(n, nil)
-	if err := c.SolveVecTo(x, mat.NewVecDense(n, g[:n])); err != nil {
-		return step, false
-	}
-	for i := range n {
-		step[i] = x.AtVec(i)
-	}
-	return step, true
-}
-
 // result puts intervals to the parameters: the linear approximation at the optimum, by Student's t over the points less the parameters. A curvature at the end
 // of its range is taken as known.
 func (s Shape) result(points []Point, q [4]float64, rss float64) Fit {
-	n, k := float64(len(points)), s.free()
-	f := Fit{Shape: s, RMSE: math.Sqrt(rss / n), Points: len(points)}
-	f.AICc = n*math.Log(math.Max(rss, 1e-12)/n) + 2*float64(k+1) + 2*float64(k+1)*float64(k+2)/math.Max(1, n-float64(k)-2)
+	n, k := float64(len(points)), s.parameters()
+	f := Fit{Shape: s, RMSE: math.Sqrt(rss / n), AICc: aicc(rss, n, k), Points: len(points)}
 	told := k
 	if s == NonRectangular && (q[3] <= lowestTheta+0.01 || q[3] >= mostTheta-0.005) {
 		told = 3
 	}
-	A, _ := s.normal(points, q)
+	A, _ := light{s, points}.normal(q)
 	f.interval = intervals(A, told, rss, n)
 	estimate := f.interval.of
 	f.Ag = estimate(q[0], highestAg, [4]float64{1})

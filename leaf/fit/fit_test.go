@@ -175,9 +175,9 @@ func TestWhatReadingsDoNotDetermine(t *testing.T) {
 		{"darkness", []Point{{0, -1}, {0, -1.1}, {0, -0.9}, {0, -1}, {0, -1}, {0, -1.3}}, NonRectangular,
 			func(f *Fit) []Estimate { return []Estimate{f.Rd} },
 			func(f *Fit) []Estimate { return []Estimate{f.Ag, f.Amax, f.Phi, f.Theta} }},
-		{"no bend", []Point{{0, -1.1}, {20, 0.05}, {40, 1}, {60, 1.9}, {80, 3.1}, {100, 4}}, NonRectangular,
+		{"no bend", []Point{{0, -1.1}, {20, 0.05}, {40, 1}, {60, 1.9}, {80, 3.1}, {100, 4}}, Rectangular,
 			func(f *Fit) []Estimate { return []Estimate{f.Rd, f.Phi, f.Compensation} },
-			func(f *Fit) []Estimate { return []Estimate{f.Amax, f.Theta} }},
+			func(f *Fit) []Estimate { return []Estimate{f.Ag, f.Amax} }},
 	} {
 		f, err := Curve(c.points, c.shape)
 		if err != nil {
@@ -209,7 +209,7 @@ func TestSlopes(t *testing.T) {
 	for _, s := range []Shape{NonRectangular, Exponential, Rectangular} {
 		for _, I := range []float64{0, 30, 300, 1500} {
 			d := s.slopes(I, q)
-			for i := range s.free() {
+			for i := range s.parameters() {
 				h := 1e-6 * q[i]
 				up, down := q, q
 				up[i], down[i] = q[i]+h, q[i]-h
