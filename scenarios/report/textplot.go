@@ -20,27 +20,20 @@ func textPlot(p *printer, f figures.Figure, letters []byte) {
 			low, high, right = math.Min(low, q.Y), math.Max(high, q.Y), math.Max(right, q.X)
 		}
 	}
-	step := round125((high - low) / (plotRows - 1))
-	bottom := math.Floor(low/step) * step
+	step, bottom := rows(low, high)
+	row := func(y float64) int { return int(math.Round((y - bottom) / step)) }
 	canvas := make([][]byte, plotRows)
 	for r := range canvas {
 		canvas[r] = []byte(strings.Repeat(" ", plotColumns))
 	}
-	row := func(y float64) int { return int(math.Round((y - bottom) / step)) }
-	if z := row(0); z >= 0 && z < plotRows {
-		canvas[z] = []byte(strings.Repeat("-", plotColumns))
-	}
+	canvas[row(0)] = []byte(strings.Repeat("-", plotColumns))
 	for k, c := range curves {
 		for column := range plotColumns {
-			y := at(c.Line, right*float64(column)/(plotColumns-1))
-			if r := row(y); r >= 0 && r < plotRows {
-				canvas[r][column] = letters[k]
-			}
+			canvas[row(at(c.Line, right*float64(column)/(plotColumns-1)))][column] = letters[k]
 		}
 	}
 	p.f("%s\n", f.Y)
-	top := min(plotRows-1, row(high))
-	for r := top; r >= 0; r-- {
+	for r := row(high); r >= 0; r-- {
 		label := ""
 		if value := bottom + float64(r)*step; math.Abs(math.Remainder(value, 2*step)) < step/100 {
 			label = fmt.Sprintf("%.4g", value+0)
@@ -51,6 +44,16 @@ func textPlot(p *printer, f figures.Figure, letters []byte) {
 	p.f("%*s\n", 9+plotColumns, f.X)
 	for k, c := range curves {
 		p.f("%9c %s\n", letters[k], c.Name)
+	}
+}
+
+// rows are the height of a row, a round number, and that of the middle of the lowest: all from low to high is on one of plotRows.
+func rows(low, high float64) (step, bottom float64) {
+	for step = round125((high - low) / (plotRows - 1)); ; step = round125(1.01 * step) {
+		bottom = math.Floor(low/step) * step
+		if math.Round((high-bottom)/step) < plotRows {
+			return step, bottom
+		}
 	}
 }
 
