@@ -2,6 +2,7 @@ package report
 
 import (
 	"encoding/json"
+	"fmt"
 	"io"
 	"math"
 	"strings"
@@ -133,8 +134,9 @@ func stock(p *printer, o Output, s *traits.Species) {
 func responses(p *printer, s *traits.Species) {
 	shade, sun := s.SeedlingAcclimation().At(shadeGrown), s.SeedlingAcclimation().At(sunGrown)
 	p.f("\n")
-	plotResponses(p, grown(s, ""), "oX")
-	p.f("compensation point %s and %s umol m-2 s-1. %s.\n", sig(shade.CompensationPoint(), 2), sig(sun.CompensationPoint(), 2), s.SeedlingAcclimation().Rule())
+	celsius := s.Temperature().Ref
+	plotResponses(p, grown(s, "", celsius), "oX", celsius)
+	hang(p, "", fmt.Sprintf("compensation point %s and %s umol m-2 s-1. %s.", sig(shade.CompensationPoint(), 2), sig(sun.CompensationPoint(), 2), s.SeedlingAcclimation().Rule()))
 }
 
 // writeNamed writes rows under a name, without a plan.
