@@ -18,8 +18,12 @@ func newFit(io streams) *cobra.Command {
 	cmd := &cobra.Command{
 		Use:   "fit",
 		Short: "Parameters from readings: leaf traits from light responses, leaf area from light",
-		Args:  cobra.NoArgs,
-		RunE:  func(cmd *cobra.Command, _ []string) error { return cmd.Help() },
+		RunE: func(cmd *cobra.Command, args []string) error {
+			if len(args) > 0 {
+				return usagef("%q is nothing to fit: leaf or canopy; see shadeledger fit --help", args[0])
+			}
+			return cmd.Help()
+		},
 	}
 	cmd.AddCommand(newFitLeaf(io), newFitCanopy(io))
 	return cmd

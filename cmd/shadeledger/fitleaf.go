@@ -42,15 +42,20 @@ where the curve asks for it. It needs ci_ppm and leaf_temp_c.
 Columns: ppfd_umol_m2_s, net_umol_m2_s, leaf; where known species, plant, leaf_temp_c, growth_light_pct, gsw_mol_m2_s,
 ci_ppm, pressure_kpa. Headings of common instruments are known; --column NAME=HEADING names others.`,
 		Example: "  shadeledger fit leaf curves.csv\n  shadeledger fit leaf licor.csv --column leaf=sample --column net_umol_m2_s=Photo --format csv",
-		Args:    cobra.ExactArgs(1),
+		Args:    atMost(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			s, err := readSettings(cmd)
 			if err != nil {
 				return err
 			}
-			o := fitLeafOptions{settings: s, io: io, file: args[0], over: over, columns: map[string]string{}}
-			if over != "light" && over != "co2" {
+			o := fitLeafOptions{settings: s, io: io, file: first(args), over: over, columns: map[string]string{}}
+			switch {
+			case o.file == "":
+				return usagef("name the CSV file of readings, for instance: shadeledger fit leaf curves.csv")
+			case over != "light" && over != "co2":
 				return usagef("--over %s: light or co2", over)
+			case over == "co2" && s.strict && cmd.Flags().Changed("strict"):
+				return usagef("--strict: curves over CO2 are not flagged; leave it out beside --over co2")
 			}
 			for _, c := range columns {
 				name, heading, ok := strings.Cut(c, "=")
@@ -63,7 +68,7 @@ ci_ppm, pressure_kpa. Headings of common instruments are known; --column NAME=HE
 		},
 	}
 	addOutputFlags(cmd)
-	cmd.Flags().Bool("strict", false, "exit with 3 where a curve is flagged")
+	cmd.Flags().Bool("strict", false, "exit with 3 where a curve over light is flagged")
 	cmd.Flags().StringVar(&over, "over", "light", "light: curves over light; co2: curves over the CO2 within the leaf, for capacities")
 	complete(cmd, "over", "light", "co2")
 	cmd.Flags().StringArrayVar(&columns, "column", nil, "NAME=HEADING, the heading of a column in the file; may be given again")
@@ -130,6 +135,9 @@ func (o *fitLeafOptions) hand(out []report.LeafFit) error {
 		o.output = place(i)
 		if err := o.deliver(o.io, nil, func(w report.Output) error { return report.FitLeafFigure(w, page) }); err != nil {
 			return err
+		}
+		if len(pages) > 1 {
+			o.progress(o.io, "wrote %s", o.output)
 		}
 	}
 	return nil

@@ -30,6 +30,9 @@ that begin with it or hold it. --schema prints a JSON Schema for editors.`,
 			if err != nil {
 				return err
 			}
+			if schema && (len(args) > 0 || cmd.Flags().Changed("format")) {
+				return usagef("--schema is of all keys and in its own form; leave KEY and --format out")
+			}
 			return runKeys(keysOptions{s, io, first(args), schema})
 		},
 		ValidArgsFunction: completeKeys,

@@ -31,8 +31,9 @@ func run(args []string, stdout, stderr io.Writer) int {
 	}
 	fmt.Fprintln(stderr, "shadeledger: "+err.Error())
 	var usage usageError
+	var faults faultsError
 	switch {
-	case errors.As(err, &usage):
+	case errors.As(err, &usage), errors.As(err, &faults):
 		return exitUsage
 	case errors.Is(err, errWarnings):
 		return exitWarnings

@@ -12,7 +12,7 @@ import (
 // planFile is what a folder's plan is called.
 const planFile = "plan.yaml"
 
-// faultsError is a plan, or another input, with faults.
+// faultsError is a plan, or another input, with faults: wrong usage, in the exit status.
 type faultsError struct {
 	faults []plan.Fault
 	of     string // "" is the plan
@@ -51,7 +51,7 @@ func loadPlan(name string, set []string) (*scenarios.Plan, error) {
 		p, faults = plan.Read(name, opts)
 	}
 	if len(faults) > 0 {
-		return nil, usageError{faultsError{faults: faults}}
+		return nil, faultsError{faults: faults}
 	}
 	if p == nil {
 		return nil, errors.New("the plan was not read")

@@ -7,6 +7,7 @@ import (
 	"os"
 	"path/filepath"
 	"runtime"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -32,22 +33,22 @@ type settings struct {
 // settingKeys are the settings that the environment and the settings file may give, with their defaults.
 var settingKeys = map[string]string{"format": "table", "units": "", "workers": "0", "quiet": "false", "strict": "false"}
 
-// addOutputFlags adds the flags of every command that prints a result.
+// addOutputFlags adds the flags of every command that prints a result; its units too where they are the reader's choice.
 func addOutputFlags(cmd *cobra.Command) {
 	f := cmd.Flags()
 	f.String("format", "table", "table, csv or json; csv and json are always metric")
 	f.String("output", "", "write the result to this new file instead of standard output")
 	f.Bool("overwrite", false, "let --output replace a file")
-	f.String("units", "", "metric or us, of tables (default: the plan's)")
 	f.Bool("quiet", false, "no progress; cautions still print")
 	complete(cmd, "format", "table", "csv", "json")
-	complete(cmd, "units", "metric", "us")
 }
 
 // addPlanFlags adds the flags of every command that reads a plan.
 func addPlanFlags(cmd *cobra.Command) {
 	addOutputFlags(cmd)
 	f := cmd.Flags()
+	f.String("units", "", "metric or us, of tables (default: the plan's)")
+	complete(cmd, "units", "metric", "us")
 	f.StringArray("set", nil, "KEY=VALUE over a plan key, for instance 'treatments.No action.matrix.lai=4'; may be repeated")
 	f.Int("workers", 0, "goroutines; 0 is one for each processor. Results do not depend on it")
 	f.Bool("strict", false, "exit with 3 where there are warnings")
@@ -101,16 +102,26 @@ func readSettings(cmd *cobra.Command) (*settings, error) {
 // draws marks commands that draw a figure where --output names an SVG or PNG file.
 const draws = "draws"
 
-// figure turns the format to that of a figure by the ending of --output.
+// unwritten are endings of pictures and documents, in which no command writes.
+var unwritten = []string{".pdf", ".eps", ".ps", ".jpg", ".jpeg", ".gif", ".tif", ".tiff", ".bmp", ".webp", ".emf", ".wmf", ".doc", ".docx", ".xls", ".xlsx", ".ods", ".odt"}
+
+// figure turns the format to that of a figure by the ending of --output, and refuses endings that would not say what is in the file.
 func (s *settings) figure(cmd *cobra.Command) error {
-	kind, picture := map[string]report.Format{".svg": report.SVG, ".png": report.PNG}[strings.ToLower(filepath.Ext(s.output))]
-	if !picture {
-		return nil
-	}
-	if _, ok := cmd.Annotations[draws]; !ok {
+	end := strings.ToLower(filepath.Ext(s.output))
+	kind, picture := map[string]report.Format{".svg": report.SVG, ".png": report.PNG}[end]
+	_, drawing := cmd.Annotations[draws]
+	switch {
+	case picture && !drawing:
 		return usagef("--output %s: this command draws no figure; name a file for text", s.output)
+	case picture && cmd.Flags().Changed("format"):
+		return usagef("--output %s is a figure and --format a table: leave --format out, or name a file for text", s.output)
+	case picture:
+		s.format = kind
+	case slices.Contains(unwritten, end) && drawing:
+		return usagef("--output %s: figures are .svg or .png; tables go to any file for text", s.output)
+	case slices.Contains(unwritten, end):
+		return usagef("--output %s: this command writes tables; name a file for text", s.output)
 	}
-	s.format = kind
 	return nil
 }
 

@@ -15,6 +15,7 @@ type speciesOptions struct {
 	io                       streams
 	name                     string
 	compare                  []string
+	comparing                bool
 	tolerance, habit, region string
 }
 
@@ -40,7 +41,7 @@ sets two species side by side. --output FILE.svg or FILE.png draws the responses
 			if err != nil {
 				return err
 			}
-			o.settings, o.name = s, strings.Join(args, " ")
+			o.settings, o.name, o.comparing = s, strings.Join(args, " "), cmd.Flags().Changed("compare")
 			return runSpecies(o)
 		},
 		ValidArgsFunction: func(_ *cobra.Command, args []string, _ string) ([]string, cobra.ShellCompDirective) {
@@ -109,11 +110,11 @@ func (o *speciesOptions) check() error {
 		}
 	}
 	switch filters := o.tolerance != "" || o.habit != "" || o.region != ""; {
-	case len(o.compare) != 0 && len(o.compare) != 2:
+	case o.comparing && len(o.compare) != 2:
 		return usagef("--compare takes two species: A,B")
-	case len(o.compare) > 0 && o.name != "":
+	case o.comparing && o.name != "":
 		return usagef("either a NAME or --compare A,B")
-	case filters && (o.name != "" || len(o.compare) > 0):
+	case filters && (o.name != "" || o.comparing):
 		return usagef("filters narrow the list; leave them out beside a NAME or --compare")
 	}
 	return nil

@@ -12,6 +12,11 @@ func TestExitStatus(t *testing.T) {
 	if err := os.WriteFile(bad, []byte("title: bad\nsite: {latitude: 95, longitude: 1}\n"), 0o600); err != nil {
 		t.Fatal(err)
 	}
+	curves := filepath.Join(t.TempDir(), "bad.csv")
+	if err := os.WriteFile(curves, []byte("leaf,ppfd,net\na,0,-1\na,100,\"2\n"), 0o600); err != nil {
+		t.Fatal(err)
+	}
+	picture := filepath.Join(t.TempDir(), "out.svg")
 	for _, c := range []struct {
 		want int
 		args []string
@@ -26,9 +31,24 @@ func TestExitStatus(t *testing.T) {
 		{2, []string{"species", "Quercus nonsense"}},
 		{2, []string{"keys", "nonsense"}},
 		{2, []string{"start"}},
+		{2, []string{"fit", "nonsense"}},
+		{2, []string{"fit", "leaf"}},
+		{2, []string{"fit", "leaf", curves}},
+		{2, []string{"fit", "leaf", curves, "--over", "co2"}},
+		{2, []string{"fit", "leaf", curves, "--units", "us"}},
+		{2, []string{"fit", "canopy", "", curves}},
+		{2, []string{"species", "--units", "us"}},
+		{2, []string{"species", "--compare", ""}},
+		{2, []string{"species", "red oak", "--format", "csv", "--output", picture}},
+		{2, []string{"species", "red oak", "--output", "oak.pdf"}},
+		{2, []string{"balance", "--output", "balance.PDF"}},
+		{2, []string{"keys", "stand", "--schema"}},
 		{1, []string{"keys", "--output", filepath.Join(t.TempDir(), "no", "such", "folder")}},
 	} {
 		call(t, c.want, c.args...)
+	}
+	if _, err := os.Lstat(picture); err == nil {
+		t.Error("a refused figure was written")
 	}
 }
 

@@ -95,7 +95,7 @@ func (c *curveReader) read(data []byte, columns map[string]string) (out []LeafCu
 			break
 		}
 		var broken *csv.ParseError
-		if row == nil && errors.As(err, &broken) {
+		if errors.As(err, &broken) {
 			c.fault(broken.StartLine, "", broken.Err.Error(), "a quote that is opened is closed in its cell")
 			break
 		}

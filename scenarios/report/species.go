@@ -54,8 +54,17 @@ func named(s *traits.Species, name string) traits.Value {
 // library heads everything printed of the species library.
 const library = "Species library"
 
-// SpeciesList writes the list of the library.
+// SpeciesList writes the list of the library, as far as filters let it through.
 func SpeciesList(o Output, all []*traits.Species) error {
+	if len(all) == 0 {
+		p := &printer{w: o.Out}
+		if o.Format != Table {
+			p.w = o.Notes
+		}
+		if p.f("%s: no species fits these filters; leave one of them out.\n", library); p.err != nil || o.Format == Table {
+			return p.err
+		}
+	}
 	if o.Format == Table {
 		t := newTable("species", "name", "group", "tolerance", "Amax", "basis", "Rd", "basis")
 		for _, s := range all {
