@@ -114,7 +114,7 @@ func runFitLeaf(o fitLeafOptions) error {
 // hand delivers the fits as text, or as figures of up to report.MostLeaves leaves, numbered where there are several.
 func (o *fitLeafOptions) hand(out []report.LeafFit) error {
 	if o.format != report.SVG && o.format != report.PNG {
-		return o.deliver(o.io, nil, func(w report.Output) error { return report.FitLeaf(w, o.file, out) })
+		return o.deliver(o.io, nil, func(w report.Output) error { return report.FitLeaf(w, o.file, out, takesLeaf) })
 	}
 	pages := slices.Collect(slices.Chunk(out, report.MostLeaves))
 	name := o.output
@@ -143,21 +143,39 @@ func (o *fitLeafOptions) hand(out []report.LeafFit) error {
 	return nil
 }
 
-// fitOf fits one leaf.
-func fitOf(c *plan.LeafCurve) (report.LeafFit, error) {
-	l := report.LeafFit{Species: c.Species, Plant: c.Plant, Leaf: c.Leaf, GrowthLight: c.GrowthLight, Temperature: math.NaN()}
-	points := make([]fit.Point, len(c.Readings))
-	l.Points = points
+// takesLeaf tells whether a plan takes a leaf block.
+func takesLeaf(species, block string) error {
+	faults := plan.CheckLeaf(species, block)
+	if len(faults) == 0 {
+		return nil
+	}
+	f := faults[0]
+	name := strings.TrimPrefix(f.Key, "seedlings[0].leaf.")
+	return fmt.Errorf("%s: %s", name, strings.TrimPrefix(strings.TrimSpace(f.Value)+"; "+f.Fix, "; "))
+}
+
+// sample says what leaf a curve is of.
+func sample(c *plan.LeafCurve) report.Sample {
+	s := report.Sample{Species: c.Species, Plant: c.Plant, Leaf: c.Leaf, GrowthLight: c.GrowthLight, Temperature: math.NaN()}
 	sum, n := 0.0, 0.0
-	for i, r := range c.Readings {
-		points[i] = r.Point
+	for _, r := range c.Readings {
 		if !math.IsNaN(r.Temperature) {
 			sum, n = sum+r.Temperature, n+1
 		}
 	}
 	if n > 0 {
-		l.Temperature = sum / n
+		s.Temperature = sum / n
 	}
+	return s
+}
+
+// fitOf fits one leaf.
+func fitOf(c *plan.LeafCurve) (report.LeafFit, error) {
+	points := make([]fit.Point, len(c.Readings))
+	for i, r := range c.Readings {
+		points[i] = r.Point
+	}
+	l := report.LeafFit{Sample: sample(c), Points: points}
 	var err error
 	if l.Fit, err = fit.Curve(points, fit.NonRectangular); err != nil {
 		return l, err
@@ -191,10 +209,10 @@ func runFitCO2(o fitLeafOptions, curves []plan.LeafCurve) error {
 			faults = append(faults, plan.Fault{File: o.file, Line: c.Line, Key: "leaf", Value: c.Leaf, Fix: err.Error()})
 			continue
 		}
-		out = append(out, report.CO2Fit{Species: c.Species, Plant: c.Plant, Leaf: c.Leaf, GrowthLight: c.GrowthLight, Fit: f})
+		out = append(out, report.CO2Fit{Sample: sample(&c), Fit: f})
 	}
 	if len(faults) > 0 {
 		return faultsError{faults, "the file"}
 	}
-	return o.deliver(o.io, nil, func(w report.Output) error { return report.FitCO2(w, o.file, out) })
+	return o.deliver(o.io, nil, func(w report.Output) error { return report.FitCO2(w, o.file, out, takesLeaf) })
 }

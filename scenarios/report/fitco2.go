@@ -2,7 +2,6 @@ package report
 
 import (
 	"fmt"
-	"math"
 
 	"github.com/jedib0t/go-pretty/v6/table"
 
@@ -11,9 +10,8 @@ import (
 
 // CO2Fit is the capacities of one leaf from its curve over CO2.
 type CO2Fit struct {
-	Species, Plant, Leaf string
-	GrowthLight          float64 // percent of full light; NaN where not known
-	Fit                  fit.Capacities
+	Sample
+	Fit fit.Capacities
 }
 
 func capacity(name string, of func(*fit.Capacities) *fit.Estimate) []column[CO2Fit] {
@@ -39,7 +37,7 @@ var co2FitColumns = func() []column[CO2Fit] {
 }()
 
 // FitCO2 writes capacities leaf by leaf, then each species' mean over plants with its spread and a block that a plan takes.
-func FitCO2(o Output, name string, fits []CO2Fit) error {
+func FitCO2(o Output, name string, fits []CO2Fit, takes Takes) error {
 	switch o.Format {
 	case CSV:
 		return writeCSV(o.Out, co2FitColumns, fits)
@@ -51,7 +49,8 @@ func FitCO2(o Output, name string, fits []CO2Fit) error {
 		return writeNamed(o.Out, name, rows)
 	}
 	p := &printer{w: o.Out}
-	p.f("Curves over CO2 of %s: %d leaves, capacities at 25 C (export at leaf temperature), umol m-2 s-1, 95 %% intervals.\n", name, len(fits))
+	p.f("Curves over CO2 of %s: %s, 95 %% intervals.\n", name, counted(len(fits), "leaf", "leaves"))
+	p.f("Capacities at 25 C (export at leaf temperature) and RMSE in umol m-2 s-1.\n")
 	t := newTable("species", "leaf", "n", "Vcmax", "Jmax", "Rd", "export", "RMSE")
 	for i := range fits {
 		l := &fits[i]
@@ -61,51 +60,18 @@ func FitCO2(o Output, name string, fits []CO2Fit) error {
 		p.err = render(o.Out, t, 3, 4, 5, 6, 7, 8)
 	}
 	p.f("export: use of triose phosphates, where AICc asks for it.\n")
-	capacityMeans(p, fits)
+	leaves := make([]Sample, len(fits))
+	for i := range fits {
+		leaves[i] = fits[i].Sample
+	}
+	for _, k := range kinsOf(leaves) {
+		mean := func(of func(*fit.Capacities) *fit.Estimate) fit.Spread {
+			return k.mean(func(i int) float64 { return of(&fits[i].Fit).Value })
+		}
+		v, j := mean(func(c *fit.Capacities) *fit.Estimate { return &c.Vcmax }), mean(func(c *fit.Capacities) *fit.Estimate { return &c.Jmax })
+		rd := mean(func(c *fit.Capacities) *fit.Estimate { return &c.Rd })
+		k.head(p, fmt.Sprintf("Vcmax %s, Jmax %s, Rd %s", spread(v, 1), spread(j, 1), spread(rd, 2)))
+		k.capacityBlock(p, v, j, rd, takes)
+	}
 	return p.err
-}
-
-// capacityMeans prints each species' mean and a block for the plan.
-func capacityMeans(p *printer, fits []CO2Fit) {
-	var order []string
-	by := map[string][]CO2Fit{}
-	for _, l := range fits {
-		if by[l.Species] == nil {
-			order = append(order, l.Species)
-		}
-		by[l.Species] = append(by[l.Species], l)
-	}
-	for _, name := range order {
-		list := by[name]
-		plants := make([]string, len(list))
-		light, n := 0.0, 0.0
-		for i, l := range list {
-			if plants[i] = l.Plant; plants[i] == "" {
-				plants[i] = l.Leaf
-			}
-			if !math.IsNaN(l.GrowthLight) {
-				light, n = light+l.GrowthLight, n+1
-			}
-		}
-		mean := func(of func(*fit.Capacities) float64) fit.Spread {
-			return fit.MeanOfPlants(len(list), plants, func(i int) float64 { return of(&list[i].Fit) })
-		}
-		v, j := mean(func(c *fit.Capacities) float64 { return c.Vcmax.Value }), mean(func(c *fit.Capacities) float64 { return c.Jmax.Value })
-		rd := mean(func(c *fit.Capacities) float64 { return c.Rd.Value })
-		shown := name
-		if shown == "" {
-			shown = "all leaves"
-		}
-		p.f("\n%s: %d leaves of %d plants, mean and spread (SD) between plants\n", shown, len(list), v.N)
-		p.f("  Vcmax %s, Jmax %s, Rd %s\n", spread(v, 1), spread(j, 1), spread(rd, 2))
-		if v.N < plantsPerSpecies {
-			p.f("  Fewer than %d plants: too few for a species (common practice).\n", plantsPerSpecies)
-		}
-		growth := "50"
-		if n > 0 {
-			growth = text0(light/n, 0)
-		}
-		p.f("  For a plan, under seedlings (give lma too where you know it; growth_light is %s):\n    leaf:\n      biochemistry: {vcmax: %s, jmax: %s, rd: %s, growth_light: %s}\n",
-			map[bool]string{true: "the leaves' own", false: "supposed"}[n > 0], fmt.Sprintf("%.1f", v.Mean), fmt.Sprintf("%.1f", j.Mean), fmt.Sprintf("%.2f", rd.Mean), growth)
-	}
 }

@@ -8,20 +8,17 @@ import (
 	"github.com/jedib0t/go-pretty/v6/table"
 
 	"shadeledger/leaf/fit"
-	"shadeledger/leaf/traits"
 	"shadeledger/scenarios/report/figures"
 )
 
 // LeafFit is the light response of one leaf: the non-rectangular hyperbola, which plans take, and the shape that AICc prefers.
 type LeafFit struct {
-	Species, Plant, Leaf string
-	GrowthLight          float64 // percent of full light; NaN where not known
-	Temperature          float64 // of the leaf, deg C, mean; NaN where not known
-	Fit                  fit.Fit
-	Points               []fit.Point // the readings
-	Best                 fit.Shape
-	Gain                 float64 // AICc of the hyperbola less that of the best shape, 0 where it is best
-	Flags                []string
+	Sample
+	Fit    fit.Fit
+	Points []fit.Point // the readings
+	Best   fit.Shape
+	Gain   float64 // AICc of the hyperbola less that of the best shape, 0 where it is best
+	Flags  []string
 }
 
 func estimated(name string, of func(*fit.Fit) *fit.Estimate) []column[LeafFit] {
@@ -55,7 +52,7 @@ var leafFitColumns = func() []column[LeafFit] {
 // MostLeaves is as many leaves as one figure holds.
 const MostLeaves = figures.MostPanels
 
-// FitLeafFigure draws the fitted curve of every leaf with its readings and the pointwise 95 % band of the fit.
+// FitLeafFigure draws the fitted curve of every leaf with its readings and the pointwise 95 % band of the fit, as far as the readings determine it.
 func FitLeafFigure(o Output, fits []LeafFit) error {
 	f := figures.Figure{X: ppfdAxis + " (bands: 95 % interval of the curve)", Y: netAxis}
 	for i := range fits {
@@ -70,6 +67,9 @@ func FitLeafFigure(o Output, fits []LeafFit) error {
 			I := most * float64(k) / 100
 			net, half := l.Fit.Net(I), l.Fit.Band(I)
 			c.Line = append(c.Line, figures.Point{X: I, Y: net})
+			if math.IsNaN(half) {
+				continue
+			}
 			c.Low, c.High = append(c.Low, figures.Point{X: I, Y: net - half}), append(c.High, figures.Point{X: I, Y: net + half})
 		}
 		f.Panels = append(f.Panels, figures.Panel{Title: strings.TrimPrefix(l.Species+", "+l.Leaf, ", "), Curves: []figures.Curve{c}})
@@ -84,7 +84,7 @@ const clearly = 2
 const plantsPerSpecies = 5
 
 // FitLeaf writes fits leaf by leaf, then each species' mean with its spread between plants and a block that a plan takes.
-func FitLeaf(o Output, name string, fits []LeafFit) error {
+func FitLeaf(o Output, name string, fits []LeafFit, takes Takes) error {
 	switch o.Format {
 	case CSV:
 		return writeCSV(o.Out, leafFitColumns, fits)
@@ -96,7 +96,7 @@ func FitLeaf(o Output, name string, fits []LeafFit) error {
 		return writeNamed(o.Out, name, rows)
 	}
 	p := &printer{w: o.Out}
-	p.f("Light responses of %s: %d leaves, non-rectangular hyperbola, 95 %% intervals.\nAmax (net), Rd and RMSE in umol CO2 m-2 s-1, phi in mol mol-1, compensation point in umol m-2 s-1.\n", name, len(fits))
+	p.f("Light responses of %s: %s, non-rectangular hyperbola, 95 %% intervals.\nAmax (net), Rd and RMSE in umol CO2 m-2 s-1, phi in mol mol-1, compensation point in umol m-2 s-1.\n", name, counted(len(fits), "leaf", "leaves"))
 	t := newTable("species", "leaf", "n", "Amax", "Rd", "phi", "theta", "comp.", "RMSE")
 	for i := range fits {
 		l := &fits[i]
@@ -119,72 +119,39 @@ func FitLeaf(o Output, name string, fits []LeafFit) error {
 			}
 		}
 		if n > 0 {
-			p.f("%d leaves are met better by the %s (AICc lower by over %d).\n", n, shape, clearly)
+			p.f("%s met better by the %s (AICc lower by over %d).\n", counted(n, "leaf is", "leaves are"), shape, clearly)
 		}
 	}
-	summaries(p, fits)
+	leaves := make([]Sample, len(fits))
+	for i := range fits {
+		leaves[i] = fits[i].Sample
+	}
+	for _, k := range kinsOf(leaves) {
+		list := make([]fit.Fit, len(k.at))
+		for i, at := range k.at {
+			list[i] = fits[at].Fit
+		}
+		s := fit.Summarise(list, k.plants)
+		k.head(p, fmt.Sprintf("Amax %s, Rd %s, phi %s, theta %s, compensation point %s",
+			spread(s.Amax, 1), spread(s.Rd, 2), spread(s.Phi, 4), spread(s.Theta, 2), spread(s.Compensation, 0)))
+		k.lightBlock(p, s, takes)
+	}
 	return p.err
 }
 
 // ranged shows an estimate with its interval.
 func ranged(e fit.Estimate, places int) string {
-	if math.IsNaN(e.Value) {
+	switch {
+	case math.IsNaN(e.Value):
 		return "-"
+	case math.IsNaN(e.Low) || math.IsNaN(e.High):
+		return text0(e.Value, places) + " (not determined)"
 	}
-	return fmt.Sprintf("%s (%s-%s)", text0(e.Value, places), text0(e.Low, places), text0(e.High, places))
-}
-
-// summaries prints each species' mean and a block for the plan.
-func summaries(p *printer, fits []LeafFit) {
-	var order []string
-	by := map[string][]LeafFit{}
-	for _, l := range fits {
-		if by[l.Species] == nil {
-			order = append(order, l.Species)
-		}
-		by[l.Species] = append(by[l.Species], l)
+	low, high, between := text0(e.Low, places), text0(e.High, places), "-"
+	if strings.HasPrefix(low, "-") {
+		between = " to "
 	}
-	for _, name := range order {
-		var list []fit.Fit
-		var plants []string
-		light, temperature, n, warm := 0.0, 0.0, 0.0, 0.0
-		for _, l := range by[name] {
-			list = append(list, l.Fit)
-			plant := l.Plant
-			if plant == "" {
-				plant = l.Leaf
-			}
-			plants = append(plants, plant)
-			if !math.IsNaN(l.GrowthLight) {
-				light, n = light+l.GrowthLight, n+1
-			}
-			if !math.IsNaN(l.Temperature) {
-				temperature, warm = temperature+l.Temperature, warm+1
-			}
-		}
-		s := fit.Summarise(list, plants)
-		shown := name
-		if shown == "" {
-			shown = "all leaves"
-		}
-		p.f("\n%s: %d leaves of %d plants, mean and spread (SD) between plants\n", shown, s.Leaves, s.Plants)
-		p.f("  Amax %s, Rd %s, phi %s, theta %s, compensation point %s\n", spread(s.Amax, 1), spread(s.Rd, 2), spread(s.Phi, 4), spread(s.Theta, 2), spread(s.Compensation, 0))
-		if s.Plants < plantsPerSpecies {
-			p.f("  Fewer than %d plants: too few for a species (common practice).\n", plantsPerSpecies)
-		}
-		growth, at := "50", "25"
-		if n > 0 {
-			growth = text0(light/n, 0)
-		}
-		if warm > 0 {
-			at = text0(temperature/warm, 0)
-		}
-		p.f("  For a plan, under seedlings (give lma too where you know it; growth_light is %s):\n    leaf:\n      sun: {amax: %s, rd: %s, phi: %s, theta: %s, growth_light: %s}\n      t_ref: %s C\n",
-			map[bool]string{true: "the leaves' own", false: "supposed"}[n > 0], text0(s.Amax.Mean, 2), text0(s.Rd.Mean, 2), text0(s.Phi.Mean, 4), text0(s.Theta.Mean, 2), growth, at)
-		if sp, err := traits.Find(name); err == nil && sp.Needled() {
-			p.f("      area_basis: projected   # or half, or all: say which area of the needles the rates are per\n")
-		}
-	}
+	return text0(e.Value, places) + " (" + low + between + high + ")"
 }
 
 func spread(s fit.Spread, places int) string {
