@@ -177,3 +177,21 @@ func data[T any](o Output, n notes, columns []column[T], list []T) error {
 	}
 	return n.writeJSON(o.Out, rows)
 }
+
+// listed writes rows that belong to no plan as CSV, or as JSON under a name.
+func listed[T any](o Output, name string, columns []column[T], list []T) error {
+	if o.Format == CSV {
+		return writeCSV(o.Out, columns, list)
+	}
+	rows, err := jsonRows(columns, list)
+	if err != nil {
+		return err
+	}
+	e := json.NewEncoder(o.Out)
+	e.SetEscapeHTML(false)
+	e.SetIndent("", " ")
+	return e.Encode(struct {
+		Name string          `json:"name"`
+		Rows json.RawMessage `json:"rows"`
+	}{name, rows})
+}

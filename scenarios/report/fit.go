@@ -32,18 +32,14 @@ func FitCanopy(o Output, p *scenarios.Plan, c scenarios.Correction) error {
 	t.AppendRow(table.Row{"factor", "1", text0(c.Factor, 2), fmt.Sprintf("%s-%s", text0(c.Low, 2), text0(c.High, 2))})
 	t.AppendRow(table.Row{"light below, %", decimal(100*c.Before, 1), decimal(100*c.After, 1), decimal(100*c.Measured, 1)})
 	t.AppendRow(table.Row{"RMSE, points", decimal(100*c.RMSEBefore, 1), decimal(100*c.RMSE, 1), ""})
-	if q.err == nil {
-		q.err = render(o.Out, t, 2, 3, 4)
-	}
+	q.table(t, 2, 3, 4)
 	if len(c.Residuals) > 0 {
 		q.f("\n")
 		t := newTable("reading", "measured %", "model before %", "after %", "after - measured")
 		for _, r := range c.Residuals {
 			t.AppendRow(table.Row{r.Point, decimal(100*r.Measured, 1), decimal(100*r.Before, 1), decimal(100*r.After, 1), fmt.Sprintf("%+.1f", 100*(r.After-r.Measured))})
 		}
-		if q.err == nil {
-			q.err = render(o.Out, t, 2, 3, 4, 5)
-		}
+		q.table(t, 2, 3, 4, 5)
 	}
 	q.f("\nTo use it: readings: FILE under stand in the plan; every command then works with it.\n\n")
 	if q.err != nil {

@@ -38,15 +38,8 @@ var co2FitColumns = func() []column[CO2Fit] {
 
 // FitCO2 writes capacities leaf by leaf, then each species' mean over plants with its spread and a block that a plan takes.
 func FitCO2(o Output, name string, fits []CO2Fit, takes Takes) error {
-	switch o.Format {
-	case CSV:
-		return writeCSV(o.Out, co2FitColumns, fits)
-	case JSON:
-		rows, err := jsonRows(co2FitColumns, fits)
-		if err != nil {
-			return err
-		}
-		return writeNamed(o.Out, name, rows)
+	if o.Format != Table {
+		return listed(o, name, co2FitColumns, fits)
 	}
 	p := &printer{w: o.Out}
 	p.f("Curves over CO2 of %s: %s, 95 %% intervals.\n", name, counted(len(fits), "leaf", "leaves"))
@@ -56,9 +49,7 @@ func FitCO2(o Output, name string, fits []CO2Fit, takes Takes) error {
 		l := &fits[i]
 		t.AppendRow(table.Row{l.Species, l.Leaf, l.Fit.Points, ranged(l.Fit.Vcmax, 0), ranged(l.Fit.Jmax, 0), ranged(l.Fit.Rd, 2), ranged(l.Fit.Export, 1), decimal(l.Fit.RMSE, 2)})
 	}
-	if p.err == nil {
-		p.err = render(o.Out, t, 3, 4, 5, 6, 7, 8)
-	}
+	p.table(t, 3, 4, 5, 6, 7, 8)
 	p.f("export: use of triose phosphates, where AICc asks for it.\n")
 	leaves := make([]Sample, len(fits))
 	for i := range fits {

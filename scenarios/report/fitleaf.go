@@ -85,15 +85,8 @@ const plantsPerSpecies = 5
 
 // FitLeaf writes fits leaf by leaf, then each species' mean with its spread between plants and a block that a plan takes.
 func FitLeaf(o Output, name string, fits []LeafFit, takes Takes) error {
-	switch o.Format {
-	case CSV:
-		return writeCSV(o.Out, leafFitColumns, fits)
-	case JSON:
-		rows, err := jsonRows(leafFitColumns, fits)
-		if err != nil {
-			return err
-		}
-		return writeNamed(o.Out, name, rows)
+	if o.Format != Table {
+		return listed(o, name, leafFitColumns, fits)
 	}
 	p := &printer{w: o.Out}
 	p.f("Light responses of %s: %s, non-rectangular hyperbola, 95 %% intervals.\nAmax (net), Rd and RMSE in umol CO2 m-2 s-1, phi in mol mol-1, compensation point in umol m-2 s-1.\n", name, counted(len(fits), "leaf", "leaves"))
@@ -103,9 +96,7 @@ func FitLeaf(o Output, name string, fits []LeafFit, takes Takes) error {
 		f := &l.Fit
 		t.AppendRow(table.Row{l.Species, l.Leaf, f.Points, ranged(f.Amax, 1), ranged(f.Rd, 2), ranged(f.Phi, 3), decimal(f.Theta.Value, 2), ranged(f.Compensation, 0), decimal(f.RMSE, 2)})
 	}
-	if p.err == nil {
-		p.err = render(o.Out, t, 3, 4, 5, 6, 7, 8, 9)
-	}
+	p.table(t, 3, 4, 5, 6, 7, 8, 9)
 	for i := range fits {
 		if l := &fits[i]; len(l.Flags) > 0 {
 			hang(p, "  "+l.Leaf+": ", strings.Join(l.Flags, "; "))

@@ -21,15 +21,8 @@ var keyColumns = []column[Key]{
 
 // Keys writes plan keys: a list of several, all of a single one.
 func Keys(o Output, keys []Key) error {
-	switch o.Format {
-	case CSV:
-		return writeCSV(o.Out, keyColumns, keys)
-	case JSON:
-		rows, err := jsonRows(keyColumns, keys)
-		if err != nil {
-			return err
-		}
-		return writeNamed(o.Out, "plan keys", rows)
+	if o.Format != Table {
+		return listed(o, "plan keys", keyColumns, keys)
 	}
 	p := &printer{w: o.Out}
 	if len(keys) == 1 {
@@ -49,9 +42,7 @@ func Keys(o Output, keys []Key) error {
 		}
 		t.AppendRow(table.Row{k.Key, r, k.Default, k.Meaning})
 	}
-	if p.err == nil {
-		p.err = render(o.Out, t)
-	}
+	p.table(t)
 	return p.err
 }
 

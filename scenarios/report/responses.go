@@ -106,21 +106,8 @@ var compared = []string{"tolerance", "t_ref", "amax", "rd", "phi", "theta", "lma
 
 // CompareSpecies writes two species side by side: their main values, leaves of seedlings in shade and sun, and both responses.
 func CompareSpecies(o Output, a, b *traits.Species) error {
-	if o.Format == CSV || o.Format == JSON {
-		var entries []entry
-		for _, s := range []*traits.Species{a, b} {
-			for _, v := range s.Values() {
-				entries = append(entries, entry{s, v})
-			}
-		}
-		if o.Format == CSV {
-			return writeCSV(o.Out, entryColumns, entries)
-		}
-		rows, err := jsonRows(entryColumns, entries)
-		if err != nil {
-			return err
-		}
-		return writeNamed(o.Out, a.Botanical+" and "+b.Botanical, rows)
+	if o.Format != Table {
+		return listed(o, a.Botanical+" and "+b.Botanical, entryColumns, entries(a, b))
 	}
 	p := &printer{w: o.Out}
 	hang(p, "", fmt.Sprintf("%s: %s (%s) and %s (%s)", library, a.Botanical, a.Common, b.Botanical, b.Common))
@@ -146,9 +133,7 @@ func CompareSpecies(o Output, a, b *traits.Species) error {
 			t.AppendRow(table.Row{fmt.Sprintf("%s, grown at %g %%", row.name, light), sig(row.x, 2), "", sig(row.y, 2), "", row.unit})
 		}
 	}
-	if p.err == nil {
-		p.err = render(o.Out, t, 2, 4)
-	}
+	p.table(t, 2, 4)
 	p.f("\n")
 	plotResponses(p, append(grown(a, a.Common+", ", common), grown(b, b.Common+", ", common)...), "aAbB", common)
 	return p.err

@@ -1,9 +1,7 @@
 package report
 
 import (
-	"encoding/json"
 	"fmt"
-	"io"
 	"math"
 	"strings"
 
@@ -16,6 +14,16 @@ import (
 type entry struct {
 	species *traits.Species
 	value   traits.Value
+}
+
+// entries are all values of species.
+func entries(all ...*traits.Species) (out []entry) {
+	for _, s := range all {
+		for _, v := range s.Values() {
+			out = append(out, entry{s, v})
+		}
+	}
+	return out
 }
 
 var entryColumns = []column[entry]{
@@ -65,45 +73,26 @@ func SpeciesList(o Output, all []*traits.Species) error {
 			return p.err
 		}
 	}
-	if o.Format == Table {
-		t := newTable("species", "name", "group", "tolerance", "Amax", "basis", "Rd", "basis")
-		for _, s := range all {
-			a, r := named(s, "amax"), named(s, "rd")
-			t.AppendRow(table.Row{s.Botanical, s.Common, s.Group, decimal(s.Tolerance(), 1), sig(a.Value, 2), a.Basis, sig(r.Value, 2), r.Basis})
-		}
-		p := &printer{w: o.Out}
-		p.f("%s: %d species. Amax (net) and Rd in umol m-2 s-1; tolerance of shade 0 to 5.\n", library, len(all))
-		if p.err == nil {
-			p.err = render(o.Out, t, 4, 5, 7)
-		}
-		p.f("One species with units, sources and basis: shadeledger species NAME\n")
-		return p.err
+	if o.Format != Table {
+		return listed(o, library, speciesColumns, all)
 	}
-	if o.Format == CSV {
-		return writeCSV(o.Out, speciesColumns, all)
+	t := newTable("species", "name", "group", "tolerance", "Amax", "basis", "Rd", "basis")
+	for _, s := range all {
+		a, r := named(s, "amax"), named(s, "rd")
+		t.AppendRow(table.Row{s.Botanical, s.Common, s.Group, decimal(s.Tolerance(), 1), sig(a.Value, 2), a.Basis, sig(r.Value, 2), r.Basis})
 	}
-	rows, err := jsonRows(speciesColumns, all)
-	if err != nil {
-		return err
-	}
-	return writeNamed(o.Out, library, rows)
+	p := &printer{w: o.Out}
+	p.f("%s: %d species. Amax (net) and Rd in umol m-2 s-1; tolerance of shade 0 to 5.\n", library, len(all))
+	p.table(t, 4, 5, 7)
+	p.f("One species with units, sources and basis: shadeledger species NAME\n")
+	return p.err
 }
 
 // SpeciesPage writes every value of one species with unit, source and basis.
 func SpeciesPage(o Output, s *traits.Species) error {
-	var entries []entry
-	for _, v := range s.Values() {
-		entries = append(entries, entry{s, v})
-	}
-	switch o.Format {
-	case CSV:
-		return writeCSV(o.Out, entryColumns, entries)
-	case JSON:
-		rows, err := jsonRows(entryColumns, entries)
-		if err != nil {
-			return err
-		}
-		return writeNamed(o.Out, s.Botanical, rows)
+	list := entries(s)
+	if o.Format != Table {
+		return listed(o, s.Botanical, entryColumns, list)
 	}
 	p := &printer{w: o.Out}
 	p.f("%s: %s, %s\n", library, s.Botanical, s.Common)
@@ -111,7 +100,7 @@ func SpeciesPage(o Output, s *traits.Species) error {
 		p.f("Its leaf rates are partly or wholly those of its group: read its place among others so.\n")
 	}
 	t := newTable("value", "", "low", "high", "unit", "basis", "source or rule")
-	for _, e := range entries {
+	for _, e := range list {
 		v := e.value
 		why := v.Source
 		if v.Rule != "" {
@@ -119,9 +108,7 @@ func SpeciesPage(o Output, s *traits.Species) error {
 		}
 		t.AppendRow(table.Row{v.Name, sig(v.Value, 3), sig(v.Low, 3), sig(v.High, 3), v.Unit, v.Basis, why})
 	}
-	if p.err == nil {
-		p.err = render(o.Out, t, 2, 3, 4)
-	}
+	p.table(t, 2, 3, 4)
 	stock(p, o, s)
 	responses(p, s)
 	return p.err
@@ -134,9 +121,7 @@ func stock(p *printer, o Output, s *traits.Species) {
 	for _, k := range s.Stocks() {
 		t.AppendRow(table.Row{k.Name, spanned(k.Height), spanned(k.Mass), k.Meaning})
 	}
-	if p.err == nil {
-		p.err = render(o.Out, t, 2, 3)
-	}
+	p.table(t, 2, 3)
 }
 
 // responses draws net assimilation of seedlings' leaves grown in shade and in sun.
@@ -146,15 +131,4 @@ func responses(p *printer, s *traits.Species) {
 	celsius := s.Temperature().Ref
 	plotResponses(p, grown(s, "", celsius), "oX", celsius)
 	hang(p, "", fmt.Sprintf("compensation point %s and %s umol m-2 s-1. %s.", sig(shade.CompensationPoint(), 2), sig(sun.CompensationPoint(), 2), s.SeedlingAcclimation().Rule()))
-}
-
-// writeNamed writes rows under a name, without a plan.
-func writeNamed(w io.Writer, name string, rows json.RawMessage) error {
-	e := json.NewEncoder(w)
-	e.SetEscapeHTML(false)
-	e.SetIndent("", " ")
-	return e.Encode(struct {
-		Name string          `json:"name"`
-		Rows json.RawMessage `json:"rows"`
-	}{name, rows})
 }

@@ -168,6 +168,13 @@ func newTable(header ...any) table.Writer {
 	return t
 }
 
+// table writes a table as render does.
+func (p *printer) table(t table.Writer, right ...int) {
+	if p.err == nil {
+		p.err = render(p.w, t, right...)
+	}
+}
+
 // render writes a table, the numbered columns (from 1) set right.
 func render(w io.Writer, t table.Writer, right ...int) error {
 	var c []table.ColumnConfig
