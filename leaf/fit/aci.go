@@ -136,19 +136,12 @@ func (c gas) normal(q [4]float64) (A [4][4]float64, g [4]float64) {
 	return A, g
 }
 
-// capacities are fitted from several starts, since the point where one limit takes over is not smooth.
+// capacities are fitted from several starts; the best counts.
 func capacities(c gas) (Capacities, error) {
 	best, rss := [4]float64{}, math.Inf(1)
-	most := 0.0
-	for _, l := range c.list {
-		most = math.Max(most, l.net)
-	}
-	for _, v := range []float64{15, 40, 80, 150} {
-		for _, ratio := range []float64{1.3, 1.9, 2.6} {
-			q := [4]float64{v, ratio * v, 0.015 * v, (most + 0.015*v) / 3}
-			if r := descend(c, &q); r < rss {
-				best, rss = q, r
-			}
+	for _, q := range c.starts() {
+		if r := descend(c, &q); r < rss {
+			best, rss = q, r
 		}
 	}
 	if math.IsNaN(rss) || math.IsInf(rss, 1) {
