@@ -42,7 +42,7 @@ type step struct {
 	factor float64 // Ag over its reference
 	slope  float64 // Phi over its reference; light is multiplied by it
 	cap    float64 // Cap over its reference
-	weight float64 // mol CO2 in g C per umol m-2 s-1 of rate on full leaf area: s * share * 12.011e-6
+	weight float64 // g C m-2 per umol m-2 s-1 of rate on full leaf area: s * share * awake * 12.011e-6
 	yearly float64 // day weight / years
 }
 
