@@ -149,7 +149,7 @@ func TestRefusedBlocksAreNotPrinted(t *testing.T) {
 		args  []string
 		wants []string
 	}{
-		{[]string{wrongSign}, []string{"1 leaf of 1 plant", "1 leaf is met better", "No block for a plan, which refuses sun.rd: -1.21; allowed is 0.001 to 15"}},
+		{[]string{wrongSign}, []string{"1 leaf of 1 plant", "1 leaf is met better", "-1.21 (-1.80 to -0.63)", "No block for a plan, which refuses sun.rd: -1.21; allowed is 0.001 to 15"}},
 		{[]string{noJmax, "--over", "co2"}, []string{"1 leaf of 1 plant", "No block for a plan: these readings do not determine jmax."}},
 	} {
 		out, _ := call(t, 0, append([]string{"fit", "leaf"}, c.args...)...)

@@ -20,7 +20,7 @@ const (
 // checkGas tells what is missing from the readings of a leaf or in another unit.
 func checkGas(readings []Gas) error {
 	if len(readings) < leastGas {
-		return fmt.Errorf("%d readings; a curve over CO2 needs at least %d", len(readings), leastGas)
+		return fmt.Errorf("%s; a curve over CO2 needs at least %d", counted(len(readings), "reading"), leastGas)
 	}
 	low, high, most := math.Inf(1), math.Inf(-1), math.Inf(-1)
 	for _, g := range readings {

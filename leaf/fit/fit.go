@@ -111,7 +111,7 @@ const (
 // Curve fits one shape to the points of a leaf, at least one more than the shape's parameters.
 func Curve(points []Point, s Shape) (Fit, error) {
 	if len(points) < s.parameters()+1 {
-		return Fit{}, fmt.Errorf("%d points; a %s needs at least %d", len(points), s, s.parameters()+1)
+		return Fit{}, fmt.Errorf("%s; a %s needs at least %d", counted(len(points), "point"), s, s.parameters()+1)
 	}
 	best, rss := [4]float64{}, math.Inf(1)
 	for _, theta := range s.starts() {
@@ -125,6 +125,14 @@ func Curve(points []Point, s Shape) (Fit, error) {
 		return Fit{}, errors.New("no parameters fit; are light and assimilation in umol m-2 s-1?")
 	}
 	return s.result(points, best, rss), nil
+}
+
+// counted is a number with its noun.
+func counted(n int, noun string) string {
+	if n == 1 {
+		return "1 " + noun
+	}
+	return fmt.Sprintf("%d %ss", n, noun)
 }
 
 func (s Shape) starts() []float64 {

@@ -107,7 +107,6 @@ type Spread struct {
 // Summary is a species' mean over plants, each plant the mean of its leaves: leaves of one plant are not independent.
 type Summary struct {
 	Amax, Rd, Phi, Theta, Compensation Spread
-	Plants, Leaves                     int
 }
 
 // MeanOfPlants is the mean over plants of a value of n leaves, each plant the mean of its leaves; NaN values are left out.
@@ -142,13 +141,9 @@ func Summarise(fits []Fit, plants []string) Summary {
 	of := func(get func(*Fit) float64) Spread {
 		return MeanOfPlants(len(fits), plants, func(i int) float64 { return get(&fits[i]) })
 	}
-	distinct := map[string]bool{}
-	for _, p := range plants {
-		distinct[p] = true
-	}
 	return Summary{
 		Amax: of(func(f *Fit) float64 { return f.Amax.Value }), Rd: of(func(f *Fit) float64 { return f.Rd.Value }),
 		Phi: of(func(f *Fit) float64 { return f.Phi.Value }), Theta: of(func(f *Fit) float64 { return f.Theta.Value }),
-		Compensation: of(func(f *Fit) float64 { return f.Compensation.Value }), Plants: len(distinct), Leaves: len(fits),
+		Compensation: of(func(f *Fit) float64 { return f.Compensation.Value }),
 	}
 }

@@ -89,7 +89,8 @@ func FitLeaf(o Output, name string, fits []LeafFit, takes Takes) error {
 		return listed(o, name, leafFitColumns, fits)
 	}
 	p := &printer{w: o.Out}
-	p.f("Light responses of %s: %s, non-rectangular hyperbola, 95 %% intervals.\nAmax (net), Rd and RMSE in umol CO2 m-2 s-1, phi in mol mol-1, compensation point in umol m-2 s-1.\n", name, counted(len(fits), "leaf", "leaves"))
+	hang(p, "", fmt.Sprintf("Light responses of %s: %s, non-rectangular hyperbola, 95 %% intervals. Amax (net), Rd and RMSE in umol CO2 m-2 s-1, phi in mol mol-1, compensation point in umol m-2 s-1.",
+		name, counted(len(fits), "leaf", "leaves")))
 	t := newTable("species", "leaf", "n", "Amax", "Rd", "phi", "theta", "comp.", "RMSE")
 	for i := range fits {
 		l := &fits[i]
@@ -139,6 +140,9 @@ func ranged(e fit.Estimate, places int) string {
 		return text0(e.Value, places) + " (not determined)"
 	}
 	low, high, between := text0(e.Low, places), text0(e.High, places), "-"
+	if strings.Trim(low, "-0.") == "" {
+		low = strings.TrimPrefix(low, "-") // -0.00 is 0.00
+	}
 	if strings.HasPrefix(low, "-") {
 		between = " to "
 	}

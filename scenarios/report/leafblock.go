@@ -150,10 +150,13 @@ func (k *kin) print(p *printer, b leafBlock, takes Takes) {
 		return
 	}
 	said := "For a plan, under a seedling"
-	if k.species == nil {
-		said += " with sizes, leaves and respiration of its own (not a species of the library)"
-	} else {
+	switch {
+	case k.species != nil:
 		said += "; give lma too where you know it"
+	case k.name == "":
+		said += " with sizes, leaves and respiration of its own (the file names no species)"
+	default:
+		said += " with sizes, leaves and respiration of its own (the library does not know the species)"
 	}
 	said += b.said
 	if len(supposed) > 0 {
