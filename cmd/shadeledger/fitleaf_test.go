@@ -63,7 +63,7 @@ func curvesOverCO2(t *testing.T, species string, b leaf.Biochemistry) string {
 	var text strings.Builder
 	text.WriteString("species,leaf,ci_ppm,net,tleaf,ppfd\n")
 	for k, ci := range []float64{60, 80, 100, 150, 200, 260, 330, 450, 600, 800, 1100, 1400} {
-		l := leaf.Limits(ci, 1500, 25, leaf.Bernacchi{})
+		l := leaf.Limits(ci, leaf.Air{PPFD: 1500, Temperature: 25}, leaf.Bernacchi{})
 		rate := min(b.Vcmax*l.Rubisco, leaf.Electrons(l.Light, b.Jmax*l.Jmax)*l.Electrons)
 		fmt.Fprintf(&text, "%s,a,%g,%.4f,25,1500\n", species, ci, rate-b.Rd+0.05*float64(k%3-1))
 	}
