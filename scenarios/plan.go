@@ -41,6 +41,8 @@ type Plan struct {
 	Years      YearsAhead
 	Record     Record
 	Cautions   []Caution // all sixteen, in order, with their state
+	Limits     []Limit   // of the owner or the law, in the order of the keys
+	Water      Water
 
 	Facts  []Fact  // carried for the record; they change no result
 	Doubts []Doubt // doubt as given, for ranges
@@ -135,6 +137,8 @@ type Treatment struct {
 	Thinning   inventory.Thinning  // the last one; of a treatment that is thinned
 	Understory []Understory
 	Opening    Opening
+	Count      int     // openings of that shape in the stand; 0 without an opening
+	Centres    Centres // where they are
 }
 
 // Opening is a Cleared plan outline or NoOpening.

@@ -240,6 +240,10 @@ func (w *writer) treatments(p *scenarios.Plan) {
 		}
 		w.line(2, "opening", w.outline(taped, c.File, path+".opening"))
 		w.line(2, "measured", measured)
+		w.line(2, "count", w.given(path+".count", float64(t.Count), number))
+		if t.Centres.File != "" {
+			w.line(2, "centres", quote(t.Centres.File))
+		}
 		if len(c.Inside) > 0 {
 			w.line(2, "inside", "{layers: "+w.layers(c.Inside, path+".inside.layers")+"}")
 		} else {
@@ -329,6 +333,7 @@ func (w *writer) rest(p *scenarios.Plan) {
 		size += ", against: " + quote(p.Size.Against)
 	}
 	w.line(0, "size", size+"}")
+	w.limits(p)
 	w.cautions(p)
 	r := p.Record
 	w.line(0, "record", fmt.Sprintf("{forest: %s, stand: %s, owner_goal: %s, preparer: %s, licence: %s, date: %s}",

@@ -71,8 +71,8 @@ func TestEffectivePlanKeepsEverything(t *testing.T) {
 	if d := difference(p, q); d != "" {
 		t.Errorf("(-plan +read back):\n%s", d)
 	}
-	if len(p.Doubts) != 6 || len(q.Doubts) != len(p.Doubts) {
-		t.Errorf("%d doubts and %d when read back; the plan has 5 and the speed of border crowns one", len(p.Doubts), len(q.Doubts))
+	if len(p.Doubts) != 7 || len(q.Doubts) != len(p.Doubts) {
+		t.Errorf("%d doubts and %d when read back; the plan has 6 and the speed of border crowns one", len(p.Doubts), len(q.Doubts))
 	}
 	if twice := Effective(q); string(twice) != string(Effective(p)) {
 		t.Errorf("the effective plan of the effective plan differs:\n%s", twice)
@@ -194,12 +194,13 @@ seedlings:
   - {species: Betula alleghaniensis, leaf: {biochemistry: {g1: 3.9}}}
   - {species: Acer saccharum, leaf: {biochemistry: {vcmax: 37.7, jmax: 66.1, capacities: fixed, growth_light: 33}, acclimation: none}}
   - {species: Picea rubens, name: capacities, leaf: {biochemistry: {vcmax: 41, jmax: 71, rd: 0.7, lma: 160}, area_basis: projected}}
+limits: {opening: 0.5 ac +- 0.1 ac, total_share: 13.7 %, residual: {cover: 41.3 %}, adjacency: {area: 2.1 ha}, no_cut: [{from: 1 Nov, to: 15 Jan}, {from: 04-01, to: 08-31}]}
 years: {horizon: 25, leaf_regrowth: 11}
 size: {share: 65 %, up_to: 2.2 H, against: constant}
 treatments:
   - name: No action
   - {name: Thin, matrix: {lai: 2.7}, understory: {'fern: tall': remove}}
-  - {name: Circle, opening: {circle: {diameter: 1.7 H +- 2 ft}}, understory: remove}
+  - {name: Circle, opening: {circle: {diameter: 1.7 H +- 2 ft}}, understory: remove, count: 7}
   - {name: Acre, opening: {circle: {area: 0.25 ac}}, measured: crowns}
   - {name: Oval, opening: {ellipse: {area: 0.3 ac, ratio: 2, bearing: ENE}}}
   - {name: Strip, opening: {strip: {length: 61.7 m, width: 19.3 m, bearing: 33}}, inside: {layers: [{from: 0 m, to: 4 ft, lai: 1.3}]}}

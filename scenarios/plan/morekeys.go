@@ -100,10 +100,9 @@ func treatmentKeys() []Key {
 		Key{Path: p + ".steps[].year", Kind: Number, Low: 0, Top: 100, Range: "0 to 100 years", Example: "8", Meaning: "years from now; required"})
 	k = append(k, thinKeys(p+".steps[].thin")...)
 	k = append(k, keptKeys(p+".inside.keep")...)
-	for _, later := range []string{"centres", "count"} {
-		k = append(k, Key{Path: p + "." + later, Kind: Later, Meaning: "not available in this version: state the result with matrix or opening"})
-	}
-	return k
+	return append(k,
+		Key{Path: p + ".count", Kind: Number, Low: 1, Top: 10000, Range: "1 to 10 000", Default: "1, or the number of centres", Example: "12", Meaning: "openings of that shape in the stand"},
+		Key{Path: p + ".centres", Kind: File, Example: "centres.geojson", Meaning: "GeoJSON points, the middles of the openings, in metres or lon/lat as the buffers are"})
 }
 
 func restKeys() []Key {
@@ -128,9 +127,10 @@ func restKeys() []Key {
 		{Path: "size.share", Kind: Quantity, dim: share, Low: 0.01, Top: 1, Range: "1 to 100 %", Default: "50 %", Example: "50 %", Meaning: "share of an opening's crown outline that is to be comfortable"},
 		{Path: "size.up_to", Kind: Quantity, dim: length, Low: 1, Top: 1000, Range: "1 to 1000 m", Default: "3 H", Example: "3 H", Meaning: "largest opening: diameter, or short side"},
 		{Path: "size.against", Kind: Text, Default: "none", Example: "Birch", Meaning: "seedling of the plan that is to be outgrown"},
-		{Path: "cautions", Kind: Map, Default: "all OPEN", Meaning: "what was done about each caution"},
-		{Path: "record", Kind: Map, Meaning: "who prepared the plan for what"},
 	}
+	k = append(append(k, limitKeys()...),
+		Key{Path: "cautions", Kind: Map, Default: "all OPEN", Meaning: "what was done about each caution"},
+		Key{Path: "record", Kind: Map, Meaning: "who prepared the plan for what"})
 	for _, r := range []string{"forest", "stand", "owner_goal", "preparer", "licence", "date"} {
 		k = append(k, Key{Path: "record." + r, Kind: Text, Meaning: "for the record"})
 	}
@@ -143,7 +143,7 @@ func restKeys() []Key {
 			Key{Path: p + ".note", Kind: Text, Meaning: "note"},
 		)
 	}
-	for _, later := range []string{"draws", "limits", "planting"} {
+	for _, later := range []string{"draws", "planting"} {
 		k = append(k, Key{Path: later, Kind: Later, Meaning: "not available in this version: leave it out"})
 	}
 	return k

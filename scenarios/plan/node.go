@@ -37,6 +37,8 @@ type reader struct {
 	declination float64
 	co2         float64 // ppm
 	declared    bool
+	uncounted   []string // openings without a count
+	placed      mapFrame // what the first map file of the plan is in
 }
 
 // fault adds a fault about a value.

@@ -197,6 +197,7 @@ func (r *reader) plan(v val) *scenarios.Plan {
 	r.size(f["size"], p)
 	r.years(f["years"], p)
 	p.Cautions = r.cautions(f["cautions"])
+	r.limits(f["limits"], p)
 	r.record(f["record"], p)
 	return p
 }
@@ -241,7 +242,10 @@ func (r *reader) site(v val, p *scenarios.Plan) {
 	r.text(soil["texture"])
 	r.text(soil["drainage"])
 	r.quantity(soil["restricting_depth"])
-	r.quantity(soil["water_capacity"])
+	p.Water = noWater()
+	if x, ok := r.quantity(soil["water_capacity"]); ok {
+		p.Water.Capacity = x
+	}
 	r.carry(soil["texture"], soil["drainage"], soil["restricting_depth"], soil["water_capacity"])
 }
 

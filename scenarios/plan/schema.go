@@ -18,7 +18,8 @@ func init() {
 		"stand.understory[].name", "stand.understory[].height", "stand.angle_count.factor", "stand.angle_count.counts",
 		"stand.closure_readings.kind", "stand.closure_readings.values", "treatments[].steps[].year", "treatments[].steps[].thin", "stations[].name", "stations[].distance",
 		"treatments[].opening.ellipse.bearing", "treatments[].opening.strip.length", "treatments[].opening.strip.width",
-		"treatments[].opening.strip.bearing",
+		"treatments[].opening.strip.bearing", "limits.adjacency.area", "limits.buffers[].name", "limits.buffers[].distance",
+		"limits.buffers[].polygon", "limits.no_cut[].from", "limits.no_cut[].to",
 	} {
 		required[p] = true
 	}
@@ -83,7 +84,7 @@ func object(path string) map[string]any {
 }
 
 // oneOf are the keys of a block of which just one must stand.
-var oneOf = map[string][]string{"thin": {"leave", "take"}, "keep": {"count", "share"}, "understory[]": {"lai", "cover", "stems"}}
+var oneOf = map[string][]string{"thin": {"leave", "take"}, "keep": {"count", "share"}, "understory[]": {"lai", "cover", "stems"}, "residual": {"basal_area", "cover"}}
 
 func describeKey(k Key) string {
 	text := k.Meaning

@@ -67,6 +67,7 @@ func TestSchemaTakesSoundPlans(t *testing.T) {
 	check("sound", sound(t, ""))
 	check("everything", []byte(everything))
 	check("from trees", []byte(fromTrees))
+	check("limits", []byte(limited(t)))
 	for _, name := range Examples() {
 		text, err := examples.ReadFile("examples/" + name + "/plan.yaml")
 		if err != nil {
@@ -87,7 +88,7 @@ var beyond = strings.Fields(`acclimation-none-of-two alias angle-count-alone bas
 	circle-both circle-feet circle-over-1-km closure-over co2 crown-base-above-height doubt-negative doubt-out-of-order doubt-twice
 	doubt-without-unit earlier-and-dates earlier-of-evergreen elevation ellipse-mixed ellipse-wide grid growth-lights
 	height-feet-as-metres height-in-h hex horizon-high horizon-order keep-and-layers keep-without-trees lai-beside-layers lai-missing
-	latitude-minutes layer-upside-down leaf-dates-order leaf-dates-three leaf-lifespan-months longitude-east magnetic-without-declination matrix-both
+	latitude-minutes layer-upside-down leaf-dates-order leaf-dates-three leaf-lifespan-months limits-files longitude-east magnetic-without-declination matrix-both
 	matrix-lai-grows max-gap measured-alone month-13 needles-without-basis normals-both normals-impossible normals-no-radiation-unit
 	normals-order normals-rain-unit overflow own-leaf-area-missing own-leaf-mass own-without-leaves own-without-rd own-without-traits
 	polygon-crossing polygon-hole polygon-missing polygon-point readings-dirty seedling-leafless seedling-nameless seedling-names
@@ -132,7 +133,7 @@ func TestRequiredKeysAreMissed(t *testing.T) {
 		if strings.HasPrefix(path, "cautions.") && path != "cautions.frost.state" {
 			continue // one table, one rule
 		}
-		out, ok := without(t, path, layered, fromTrees)
+		out, ok := without(t, path, layered, fromTrees, limited(t))
 		if !ok {
 			t.Errorf("%s: the test's plans have no such key", path)
 			continue
@@ -140,7 +141,7 @@ func TestRequiredKeysAreMissed(t *testing.T) {
 		if s.Validate(instance(t, out)) == nil {
 			t.Errorf("%s: the schema does not miss it", path)
 		}
-		p, faults := parse("plan.yaml", out, Options{}, nil)
+		p, faults := parse("plan.yaml", out, Options{}, ofTheExample)
 		found := false
 		for _, f := range faults {
 			key := strings.NewReplacer("0", "", "1", "", "2", "", "3", "", "4", "", "5", "", "6", "").Replace(f.Key)

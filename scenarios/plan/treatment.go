@@ -31,6 +31,7 @@ func (r *reader) treatments(v val, p *scenarios.Plan, stand map[string]val) {
 		}
 		t.Understory = r.keep(f["understory"], p)
 		t.Opening = r.opening(item, f, p, stand["leaves"])
+		r.count(item, f, p, &t)
 		if f["thin"].present() {
 			r.alone(f, "thin", "matrix", "steps")
 			r.thin(f["thin"], p, &t)
@@ -127,7 +128,7 @@ func (r *reader) keep(v val, p *scenarios.Plan) []scenarios.Understory {
 func (r *reader) opening(item val, f map[string]val, p *scenarios.Plan, leaves val) scenarios.Opening {
 	v := f["opening"]
 	if !v.present() {
-		for _, k := range []string{"measured", "inside"} {
+		for _, k := range []string{"measured", "inside", "count", "centres"} {
 			if f[k].present() {
 				r.fault(f[k], describe(f[k].node), "goes with an opening only")
 			}

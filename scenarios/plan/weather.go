@@ -60,7 +60,7 @@ func (r *reader) weather(v val, p *scenarios.Plan) {
 			r.source(f["daily"], name, &weather.Daily{Rows: r.daily(name, data), MaxGap: gap}, p)
 		}
 	default:
-		if n := r.normals(f["normals"]); n != nil {
+		if n := r.normals(f["normals"], p); n != nil {
 			r.source(f["normals"], "", n, p)
 		}
 	}
@@ -108,7 +108,7 @@ func (r *reader) source(v val, name string, s weather.Source, p *scenarios.Plan)
 	p.Weather = s
 }
 
-func (r *reader) normals(v val) *weather.Normals {
+func (r *reader) normals(v val, p *scenarios.Plan) *weather.Normals {
 	f := r.fields(v)
 	if len(f) == 0 {
 		r.fault(v, "", "give mean, min, max and radiation or sunshine_share, twelve numbers each")
@@ -146,9 +146,8 @@ func (r *reader) normals(v val) *weather.Normals {
 		r.twelve(f["diffuse_share"], &n.DiffuseShare, same)
 	}
 	if f["rain"].present() {
-		var rain [12]float64
-		r.choice(r.need(v, f, "rain_unit"))
-		r.twelve(f["rain"], &rain, same)
+		unit, _ := r.choice(r.need(v, f, "rain_unit"))
+		r.twelve(f["rain"], &p.Water.Rain, func(x float64) float64 { return x * rainUnits[unit] })
 		r.carry(f["rain_unit"], f["rain"])
 	}
 	return n
