@@ -290,6 +290,7 @@ func (r *runner) balanceRows(s *scene, points []canopy.Point, res *Results) {
 				Light: sums.Percent(), LightLeafOn: keeper.LeafOnPercent(), PAR: sums.Spot() / days, SkyView: 100 * g.SkyView,
 			}
 			r.keep(keeper, i, &accounts[worker], &row)
+			row.Spring = r.gained(&accounts[worker], s.spring)
 			mismatch[at] = keeper.LeafMassMismatch(r.prepared[i])
 			for k, sp := range r.spans {
 				row.Period, row.Lines = sp.name, r.over(&accounts[worker], sp)

@@ -19,6 +19,7 @@ type scene struct {
 	stations  []canopy.Station
 	light     *light.Scene
 	leafOn    []bool
+	spring    []bool // the half year before the overstory's full leaf; nil where it sheds none
 	warnings  []Warning
 }
 
@@ -43,6 +44,9 @@ func newScene(p *Plan, t *Treatment, above *light.Above) (*scene, error) {
 	}
 	s := &scene{treatment: t, stations: p.StationsOf(t)}
 	s.leafOn = c.leafOn(above.Series)
+	if _, full, sheds := Leafing(t.Matrix); sheds {
+		s.spring = Mask(above.Series, before(full))
+	}
 	if s.leafOn == nil {
 		s.leafOn = Mask(above.Series, p.Season)
 	} else if !anyIn(s.leafOn) {

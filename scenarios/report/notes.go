@@ -38,6 +38,7 @@ type document struct {
 	Warnings []jsonWarning   `json:"warnings"`
 	Cautions []jsonCaution   `json:"cautions"`
 	Neutral  []jsonNeutral   `json:"neutral_shade,omitempty"`
+	Conflict json.RawMessage `json:"conflicts,omitempty"`
 	Notice   string          `json:"notice"`
 }
 
@@ -50,7 +51,7 @@ type jsonNeutral struct {
 // writeJSON writes rows with the notes.
 func (n notes) writeJSON(w io.Writer, rows json.RawMessage) error {
 	d := document{Plan: Name(n.plan), Rows: rows, Notice: deference,
-		Assumed: []jsonAssumed{}, Warnings: []jsonWarning{}, Cautions: []jsonCaution{}}
+		Assumed: []jsonAssumed{}, Warnings: []jsonWarning{}, Cautions: []jsonCaution{}, Conflict: n.conflicts}
 	for _, a := range n.assumed {
 		d.Assumed = append(d.Assumed, jsonAssumed(a))
 	}
@@ -76,6 +77,13 @@ func (n notes) writeJSON(w io.Writer, rows json.RawMessage) error {
 // write prints warnings, what was assumed and the cautions.
 func (n notes) write(w io.Writer) error {
 	p := &printer{w: w}
+	n.doubts(p)
+	n.cautions(p)
+	return p.err
+}
+
+// doubts prints warnings and what was assumed.
+func (n notes) doubts(p *printer) {
 	for i, x := range n.warnings {
 		hang(p, "Note "+itoa(i+1)+": ", x.Key+": "+x.Text)
 	}
@@ -98,8 +106,6 @@ func (n notes) write(w io.Writer) error {
 		}
 		hang(p, "  ", strings.Join(items, "; "))
 	}
-	n.cautions(p)
-	return p.err
 }
 
 // cautions prints the state of every caution and the words of those not closed. Nothing switches it off.

@@ -3,6 +3,7 @@
 package report
 
 import (
+	"encoding/json"
 	"fmt"
 	"io"
 	"strings"
@@ -76,9 +77,13 @@ type notes struct {
 	assumed  []scenarios.Assumed
 	warnings []scenarios.Warning
 	neutral  []scenarios.NeutralShade
+	// conflicts are rows for JSON; nil where they were not sought
+	conflicts json.RawMessage
 }
 
-func notesOf(r *scenarios.Results) notes { return notes{r.Plan, r.Assumed, r.Warnings, r.Neutral} }
+func notesOf(r *scenarios.Results) notes {
+	return notes{plan: r.Plan, assumed: r.Assumed, warnings: r.Warnings, neutral: r.Neutral}
+}
 
 // printer collects the first error of a run of writes.
 type printer struct {

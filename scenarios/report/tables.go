@@ -10,6 +10,7 @@ import (
 
 	"shadeledger/leaf"
 	"shadeledger/scenarios"
+	"shadeledger/scenarios/decide"
 	"shadeledger/scenarios/ledger"
 )
 
@@ -54,6 +55,10 @@ const (
 func Balance(o Output, r *scenarios.Results, v View) error {
 	n := notesOf(r)
 	if o.Format != Table {
+		var err error
+		if n.conflicts, err = jsonRows(findingColumns, linesOf("conflict", decide.FindConflicts(r).Conflicts)); err != nil {
+			return err
+		}
 		return data(o, n, balanceColumns, r.Balance)
 	}
 	var err error
