@@ -57,7 +57,7 @@ type BalanceRow struct {
 	BreakEven   ledger.BreakEven
 	Class       ledger.Class // by the year's net and the leaf-on light, the same for every period
 	// Spring is what it gains in a mean year, g C, on those days of the half year before the stand's full leaf on which it gains; 0 where
-	// no layer of the overstory sheds its leaves.
+	// the overstory is not deciduous for the most part.
 	Spring float64
 	// Years holds the year's net of every calendar year, g C, in order.
 	Years []float64

@@ -19,7 +19,7 @@ type scene struct {
 	stations  []canopy.Station
 	light     *light.Scene
 	leafOn    []bool
-	spring    []bool // the half year before the overstory's full leaf; nil where it sheds none
+	spring    []bool // the half year before the overstory's full leaf; nil where it is not mostly deciduous
 	warnings  []Warning
 }
 

@@ -15,15 +15,22 @@ func LeafOut(c leaf.Calendar) (Date, bool) {
 	return Date(d.Out), ok
 }
 
-// Leafing is leaf-out and full leaf of the deciduous layer with the most leaves; false where none is deciduous.
+// Leafing is leaf-out and full leaf of the deciduous layer with the most leaves; false where less than half of the leaf area is
+// deciduous, for then the stand is never bare.
 func Leafing(layers []Layer) (out, full Date, ok bool) {
-	most := 0.0
+	most, falling, all := 0.0, 0.0, 0.0
 	for _, l := range layers {
-		if d, sheds := l.Calendar.(leaf.Deciduous); sheds && l.LAI > most {
-			out, full, ok, most = Date(d.Out), Date(d.Full), true, l.LAI
+		all += l.LAI
+		d, sheds := l.Calendar.(leaf.Deciduous)
+		if !sheds {
+			continue
+		}
+		falling += l.LAI
+		if l.LAI > most {
+			out, full, most = Date(d.Out), Date(d.Full), l.LAI
 		}
 	}
-	return out, full, ok
+	return out, full, falling > 0 && falling >= all/2
 }
 
 // halfYear is how far before full leaf the spring of a stand begins, days.

@@ -23,11 +23,12 @@ type board struct {
 	results *scenarios.Results
 	cells   [][]outcome // by treatment and seedling
 	low, up []float64   // by treatment: season percent of light inside, darkest and brightest
+	marks   *marks
 }
 
 // gather reads the year's rows of a run.
 func gather(r *scenarios.Results) *board {
-	b := &board{results: r}
+	b := &board{results: r, marks: marksOf(r)}
 	place := map[[3]string]*scenarios.BalanceRow{}
 	for i := range r.Balance {
 		row := &r.Balance[i]

@@ -113,15 +113,15 @@ func (b *board) grid(u scenarios.Units, most int) []string {
 	p := b.results.Plan
 	shown := len(p.Seedlings)
 	for {
-		for _, how := range []layout{oneLineRows, twoLineRows} {
+		for _, how := range []layout{oneLineRows, oneLineMarks, twoLineRows} {
 			lines, ok := b.lay(u, how, shown)
 			if ok {
-				return b.fit(lines, most, len(p.Seedlings)-shown)
+				return b.fitNamed(lines, most, len(p.Seedlings)-shown, how)
 			}
 		}
 		if shown == 1 {
 			lines, _ := b.lay(u, twoLineRows, shown)
-			return b.fit(lines, most, len(p.Seedlings)-shown)
+			return b.fitNamed(lines, most, len(p.Seedlings)-shown, twoLineRows)
 		}
 		shown--
 	}
@@ -130,8 +130,10 @@ func (b *board) grid(u scenarios.Units, most int) []string {
 // layout is how a row is set.
 type layout int
 
+// In the first conflicts stand in words at the end of a row; in the others as signs, with names below the table.
 const (
 	oneLineRows layout = iota
+	oneLineMarks
 	twoLineRows
 )
 
@@ -140,7 +142,7 @@ const leastName = 9
 
 // lay sets header and rows; each element is one treatment's lines. ok is false where they are too wide.
 func (b *board) lay(u scenarios.Units, how layout, seedlings int) (blocks [][]string, ok bool) {
-	rows := []row{b.header(seedlings)}
+	rows := []row{b.header(how, seedlings)}
 	for t := range b.cells {
 		rows = append(rows, b.row(u, how, t, seedlings))
 	}
@@ -155,7 +157,7 @@ func (b *board) lay(u scenarios.Units, how layout, seedlings int) (blocks [][]st
 		rest += 1 + w
 	}
 	roomy := Width - rest
-	if how == oneLineRows && width[0] > roomy || roomy < leastName {
+	if how != twoLineRows && width[0] > roomy || roomy < leastName {
 		return nil, false
 	}
 	if spare := roomy - width[0] - (len(width) - 1); spare > 0 { // room for a second space between columns
@@ -165,6 +167,10 @@ func (b *board) lay(u scenarios.Units, how layout, seedlings int) (blocks [][]st
 	}
 	width[0] = min(width[0], roomy)
 	for _, r := range rows {
+		if line, ok := r.hung(width); ok && how == twoLineRows {
+			blocks = append(blocks, []string{line})
+			continue
+		}
 		name := wrap(r[0][0], width[0], width[0])
 		block := []string{}
 		for l := 0; l < 2 || l < len(name); l++ {
@@ -189,6 +195,41 @@ func (b *board) lay(u scenarios.Units, how layout, seedlings int) (blocks [][]st
 	return blocks, true
 }
 
+// hung sets a row of one line whose name is a little too long: the name runs on into the room left beside the cut.
+func (r row) hung(width []int) (string, bool) {
+	for _, f := range r {
+		if f[1] != "" {
+			return "", false
+		}
+	}
+	name, cut := r[0][0], r[1][0]
+	end := width[0] + 1 + width[1]
+	if runes(name) <= width[0] || runes(name)+1+runes(cut) > end {
+		return "", false
+	}
+	s := pad(name, end-runes(cut)) + cut
+	for k, f := range r[2:] {
+		s += " " + pad(f[0], width[k+2])
+	}
+	return s, true
+}
+
+// fitNamed is fit with the conflicts named below, in one line where their names would cost a treatment its place.
+func (b *board) fitNamed(blocks [][]string, most, hidden int, how layout) []string {
+	if how == oneLineRows || len(b.marks.rules) == 0 {
+		return b.fit(blocks, most, hidden)
+	}
+	total := 0
+	for _, x := range blocks {
+		total += len(x)
+	}
+	named := b.marks.legend(b.results.Plan)
+	if total+len(named) > most {
+		named = b.marks.brief()
+	}
+	return append(b.fit(blocks, most-len(named), hidden), named...)
+}
+
 // fit joins blocks into lines, leaving out the last treatments where there is no room, and says so.
 func (b *board) fit(blocks [][]string, most, hidden int) []string {
 	total := 0
@@ -211,7 +252,7 @@ func (b *board) fit(blocks [][]string, most, hidden int) []string {
 	return out
 }
 
-func (b *board) header(seedlings int) row {
+func (b *board) header(how layout, seedlings int) row {
 	h := row{{"treatment"}, {"cut"}, {"light"}}
 	widest := 14
 	if seedlings > 4 {
@@ -225,12 +266,15 @@ func (b *board) header(seedlings int) row {
 		}
 		h = append(h, f)
 	}
+	if how == oneLineRows {
+		h = append(h, [2]string{})
+	}
 	return h
 }
 
 func (b *board) row(u scenarios.Units, how layout, t, seedlings int) row {
 	p := b.results.Plan
-	r := row{{p.Treatments[t].Name}, cutText(CutOf(p, &p.Treatments[t]), u, how), {lightText(b.low[t], b.up[t])}}
+	r := row{{p.Treatments[t].Name}, cutText(CutOf(p, &p.Treatments[t]), u, how), b.marks.light(p.Treatments[t].Name, lightText(b.low[t], b.up[t]), how)}
 	for s := range seedlings {
 		class, at := b.cells[t][s].cell()
 		switch {
@@ -238,9 +282,14 @@ func (b *board) row(u scenarios.Units, how layout, t, seedlings int) row {
 			r = append(r, [2]string{class})
 		case how == oneLineRows:
 			r = append(r, [2]string{class + ": " + at})
+		case how == oneLineMarks:
+			r = append(r, [2]string{class + ": " + b.marks.cell(p.Treatments[t].Name, p.Seedlings[s].Name, at)})
 		default:
-			r = append(r, [2]string{class, at})
+			r = append(r, [2]string{class, b.marks.cell(p.Treatments[t].Name, p.Seedlings[s].Name, at)})
 		}
+	}
+	if how == oneLineRows {
+		r = append(r, [2]string{b.marks.words(p.Treatments[t].Name)})
 	}
 	return r
 }
@@ -256,11 +305,11 @@ func cutText(c Cut, u scenarios.Units, how layout) [2]string {
 	}
 	opening := area(c.Opening, u)
 	switch {
-	case c.Matrix > 0 && how == oneLineRows:
+	case c.Matrix > 0 && how != twoLineRows:
 		return [2]string{matrix + " + " + opening}
 	case c.Matrix > 0:
 		return [2]string{matrix, strings.ReplaceAll(opening, " ", "")}
-	case how == oneLineRows:
+	case how != twoLineRows:
 		return [2]string{opening}
 	}
 	number, unit, _ := strings.Cut(opening, " ")
