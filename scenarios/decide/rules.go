@@ -28,7 +28,7 @@ const (
 // The rules that are computed.
 var (
 	ruleFrost = Rule{"frost", "frost", "leaves come out before the last frost where more than 30 % of the sky is seen",
-		"Groot & Carlson 1996 for the sky view, white spruce in Ontario; the date is a trade rule, unsourced",
+		"Groot & Carlson 1996 for the sky view, white spruce in Ontario; the date is a trade rule, unsourced; sky view is with leaves on, a stand still bare shields less",
 		"a smaller or narrower opening, a spot nearer the edge, later-leafing stock, an evergreen nurse", "sky view", "limit"}
 	ruleWind = Rule{"windthrow", "windthrow", "cutting where height over diameter of the leading species is above 80, with great danger above 95",
 		unsourced, "no cut on exposed ground, several light steps, shorter edges; measured heights and diameters", "H:D", "limit"}
@@ -43,7 +43,7 @@ var (
 		"computed; that early leaves carry such seedlings: Augspurger 2008, Lee & Ibanez 2021", "more summer light; mind that an early spring of the stand, or a late one of the seedling, takes it", "gain before full leaf", "whole year"}
 	ruleLate = Rule{"late leaf-out", "model limits", "the seedling comes into leaf after the stand above it", "dates of the plan; Augspurger 2008", "earlier-leafing stock; check both dates in the stand", "", ""}
 	ruleDry  = Rule{"dry quarter", "drought and roots", "evaporation less rain of the quarter is more than the soil holds for plants",
-		"Turc 1961 for evaporation, from memory; Thornthwaite & Mather 1957 for the balance", "plant the shaded side, thin the border's roots' reach, a measured water capacity", "evaporation less rain", "soil holds"}
+		"Turc 1961 for evaporation, from memory; Thornthwaite & Mather 1957 for the balance", "the shaded side, spots away from the border's roots, a measured water capacity (site.soil.water_capacity)", "evaporation less rain", "soil holds"}
 	ruleInvaded = Rule{"small openings and invasives", "invasive plants", "openings of less than half an acre were found to gain most invasive plants where their seed is near",
 		"field note of the University of New Hampshire Extension, from memory", "scout and treat first; set cautions.invasive plants once that is done", "opening", "rule"}
 )

@@ -254,7 +254,7 @@ func limitTable(o Output, f *decide.Findings) error {
 		}
 		rows = append(rows, limitLines(name, measure(x.Limit, o.Units), strings.Join(names, ", "), found, x.State.String())...)
 	}
-	t := newTable("limit", "least or most", "treatment", "found", "state")
+	t := newTable("your limit", "allowed", "treatment", "found", "state")
 	for _, r := range rows {
 		t.AppendRow(r)
 	}
@@ -285,8 +285,8 @@ func sameLimit(a, b *decide.Finding) bool {
 	return a.Rule == b.Rule && a.Name == b.Name && a.State == b.State && a.Detail == b.Detail && (a.Found == b.Found || a.Found.Kind == decide.None && b.Found.Kind == decide.None)
 }
 
-// Widths of the limit table's columns, together with the spaces between them at most the screen's.
-const limitNameWidth, limitTreatmentWidth, limitFoundWidth = 18, 19, 17
+// Widths of the limit table's columns, and 11 for what is allowed and 8 for the state with two spaces between them make 79.
+const limitNameWidth, limitTreatmentWidth, limitFoundWidth = 16, 19, 17
 
 // limitLines wraps a row.
 func limitLines(name, limit, treatment, found, state string) (out []table.Row) {
