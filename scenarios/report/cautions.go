@@ -7,6 +7,7 @@ import (
 
 	"github.com/jedib0t/go-pretty/v6/table"
 
+	"shadeledger/canopy/inventory"
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/decide"
 )
@@ -59,42 +60,61 @@ func plainValue(m decide.Measure) float64 {
 // ruleName is a rule with the name of what it protects.
 func ruleName(x *decide.Finding) string { return strings.TrimSpace(x.Rule.Key + " " + x.Name) }
 
-// measure is a figure for tables.
-func measure(m decide.Measure, u scenarios.Units) string {
+// measure is a figure for tables, with more digits where the usual ones do not tell it from another.
+func measure(m decide.Measure, u scenarios.Units, more int) string {
+	percent := func(v float64) string {
+		if more == 0 {
+			return whole(v)
+		}
+		return text0(v, more)
+	}
 	switch m.Kind {
 	case decide.Plain:
-		return whole(m.Value)
+		return percent(m.Value)
 	case decide.Percent:
-		return whole(m.Value) + " %"
+		return percent(m.Value) + " %"
 	case decide.Squares:
-		return area(m.Value, u)
+		return areaTo(m.Value, u, 2+more)
 	case decide.Metres:
-		return length(m.Value, u)
+		return sig(lengthValue(m.Value, u), 3+more) + " " + lengthUnit(u)
 	case decide.Basal:
-		return basalArea(m.Value, u)
+		return sig(basalValue(m.Value, u), 3+more) + " " + basalUnit(u)
 	case decide.Depth:
 		if u == scenarios.US {
-			return sig(m.Value/1000/inchMetres, 2) + " in"
+			return sig(m.Value/1000/inventory.Inch, 2+more) + " in"
 		}
-		return whole(m.Value) + " mm"
+		return percent(m.Value) + " mm"
 	case decide.Carbon:
-		return sig(m.Value, 2) + " g C"
+		return sig(m.Value, 2+more) + " g C"
 	case decide.Relative:
-		return whole(m.Value) + " % a year"
+		return percent(m.Value) + " % a year"
 	}
 	return ""
 }
 
-const inchMetres = metresPerFoot / 12
+// mostDigits is how many more digits tell a figure from its limit.
+const mostDigits = 3
+
+// against sets what was found beside the limit, such that they read as different where they are.
+func against(x *decide.Finding, u scenarios.Units) (found, limit string) {
+	for more := range mostDigits + 1 {
+		found, limit = measure(x.Found, u, more), measure(x.Limit, u, more)
+		if found != limit || x.Found == x.Limit {
+			break
+		}
+	}
+	return found, limit
+}
 
 // foundText is what was found and the limit, in words.
 func foundText(x *decide.Finding, u scenarios.Units) string {
 	var parts []string
-	if s := measure(x.Found, u); s != "" {
-		parts = append(parts, x.Rule.Of+" "+s)
+	found, limit := against(x, u)
+	if found != "" {
+		parts = append(parts, x.Rule.Of+" "+found)
 	}
-	if s := measure(x.Limit, u); s != "" {
-		parts = append(parts, x.Rule.To+" "+s)
+	if limit != "" {
+		parts = append(parts, x.Rule.To+" "+limit)
 	}
 	if x.Detail != "" {
 		parts = append(parts, x.Detail)
@@ -248,11 +268,11 @@ func limitTable(o Output, f *decide.Findings) error {
 			name = ""
 		}
 		last = ruleName(x)
-		found := measure(x.Found, o.Units)
+		found, limit := against(x, o.Units)
 		if x.Detail != "" {
 			found = strings.TrimSpace(found + " " + x.Detail)
 		}
-		rows = append(rows, limitLines(name, measure(x.Limit, o.Units), strings.Join(names, ", "), found, x.State.String())...)
+		rows = append(rows, limitLines(name, limit, strings.Join(names, ", "), found, x.State.String())...)
 	}
 	t := newTable("your limit", "allowed", "treatment", "found", "state")
 	for _, r := range rows {

@@ -7,6 +7,7 @@ import (
 	"unicode/utf8"
 
 	"shadeledger/scenarios"
+	"shadeledger/scenarios/decide"
 	"shadeledger/scenarios/ledger"
 )
 
@@ -101,6 +102,25 @@ func TestCautionsPrintAll(t *testing.T) {
 			if utf8.RuneCountInString(l) > Width {
 				t.Errorf("%d columns: %q", utf8.RuneCountInString(l), l)
 			}
+		}
+	}
+}
+
+// A figure that is over a limit reads as another number than the limit.
+func TestFiguresDifferFromTheirLimits(t *testing.T) {
+	for _, c := range []struct {
+		found, limit decide.Measure
+		want         string
+	}{
+		{decide.Measure{Kind: decide.Percent, Value: 15.2}, decide.Measure{Kind: decide.Percent, Value: 15}, "15.2 % 15.0 %"},
+		{decide.Measure{Kind: decide.Percent, Value: 22}, decide.Measure{Kind: decide.Percent, Value: 15}, "22 % 15 %"},
+		{decide.Measure{Kind: decide.Squares, Value: 5034}, decide.Measure{Kind: decide.Squares, Value: 5000}, "5030 m2 5000 m2"},
+		{decide.Measure{Kind: decide.Metres, Value: 22.86}, decide.Measure{Kind: decide.Metres, Value: 22.86}, "22.9 m 22.9 m"},
+		{decide.Measure{}, decide.Measure{Kind: decide.Basal, Value: 12}, " 12.0 m2/ha"},
+	} {
+		found, limit := against(&decide.Finding{Found: c.found, Limit: c.limit}, scenarios.Metric)
+		if got := found + " " + limit; got != c.want {
+			t.Errorf("%q, want %q", got, c.want)
 		}
 	}
 }

@@ -84,6 +84,9 @@ func (n notes) write(w io.Writer) error {
 
 // doubts prints warnings and what was assumed.
 func (n notes) doubts(p *printer) {
+	for _, l := range n.named {
+		p.f("%s\n", l)
+	}
 	for i, x := range n.warnings {
 		hang(p, "Note "+itoa(i+1)+": ", x.Key+": "+x.Text)
 	}

@@ -79,6 +79,8 @@ type notes struct {
 	neutral  []scenarios.NeutralShade
 	// conflicts are rows for JSON; nil where they were not sought
 	conflicts json.RawMessage
+	// named are the lines that name conflicts, where no first screen does
+	named []string
 }
 
 func notesOf(r *scenarios.Results) notes {

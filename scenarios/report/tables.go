@@ -54,6 +54,9 @@ const (
 // Balance writes the ledgers of a run.
 func Balance(o Output, r *scenarios.Results, v View) error {
 	n := notesOf(r)
+	if m := marksOf(r); m.rules != nil && (o.Format != Table || v != Screen) {
+		n.named = m.legend(r.Plan)
+	}
 	if o.Format != Table {
 		var err error
 		if n.conflicts, err = jsonRows(findingColumns, linesOf("conflict", decide.FindConflicts(r).Conflicts)); err != nil {

@@ -39,14 +39,17 @@ func lengthUnit(u scenarios.Units) string {
 	return "m"
 }
 
-func area(m2 float64, u scenarios.Units) string {
+func area(m2 float64, u scenarios.Units) string { return areaTo(m2, u, 2) }
+
+// areaTo is an area to a number of significant digits.
+func areaTo(m2 float64, u scenarios.Units, digits int) string {
 	if u == scenarios.US {
-		return sig(m2/m2PerAcre, 2) + " ac"
+		return sig(m2/m2PerAcre, digits) + " ac"
 	}
 	if m2 < m2PerHectare {
-		return sig(m2, 2) + " m2"
+		return sig(m2, digits) + " m2"
 	}
-	return sig(m2/m2PerHectare, 2) + " ha"
+	return sig(m2/m2PerHectare, digits) + " ha"
 }
 
 // basalArea takes m2/ha.
