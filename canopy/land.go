@@ -34,16 +34,22 @@ func NewLand(corners [][2]float64) (Land, error) {
 	return Land{ring}, nil
 }
 
-// roundCorners is how many corners stand for a round outline: the chords of a circle lie within 0.004 % of its radius.
-const roundCorners = 360
-
-// From is how far the land lies from an outline with its centre at x, y: the shortest way in m, 0 where they touch or overlap.
-func (g Land) From(o Outline, x, y float64) float64 {
+// LandOf is the ground of an outline with its centre at x, y.
+func LandOf(o Outline, x, y float64) Land {
 	ring := corners(o)
 	for i := range ring {
 		ring[i].x += x
 		ring[i].y += y
 	}
+	return Land{ring}
+}
+
+// roundCorners is how many corners stand for a round outline: the chords of a circle lie within 0.004 % of its radius.
+const roundCorners = 360
+
+// From is how far the land lies from an outline with its centre at x, y: the shortest way in m, 0 where they touch or overlap.
+func (g Land) From(o Outline, x, y float64) float64 {
+	ring := LandOf(o, x, y).ring
 	if contains(ring, g.ring[0].x, g.ring[0].y) || contains(g.ring, ring[0].x, ring[0].y) {
 		return 0
 	}

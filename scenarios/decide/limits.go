@@ -5,6 +5,7 @@ import (
 	"strings"
 	"time"
 
+	"shadeledger/canopy"
 	"shadeledger/scenarios"
 )
 
@@ -59,7 +60,7 @@ func (f *finder) hold(x *Finding, l scenarios.Limit, t *scenarios.Treatment) boo
 	switch l := l.(type) {
 	case scenarios.OpeningLimit:
 		if opened {
-			x.Found, x.Limit = Measure{Squares, c.Stems.Area()}, Measure{Squares, l.Area}
+			x.Found, x.Limit = Measure{Squares, x.joined(t, c)}, Measure{Squares, l.Area}
 			x.State = over(x.Found.Value, l.Area)
 		}
 		return opened
@@ -70,7 +71,7 @@ func (f *finder) hold(x *Finding, l scenarios.Limit, t *scenarios.Treatment) boo
 		return opened
 	case scenarios.AdjacencyLimit:
 		if opened {
-			x.Found, x.Limit = Measure{Squares, c.Stems.Area() + l.Unsecured}, Measure{Squares, l.Area}
+			x.Found, x.Limit = Measure{Squares, x.joined(t, c) + l.Unsecured}, Measure{Squares, l.Area}
 			x.State = over(x.Found.Value, l.Area)
 		}
 		return opened
@@ -96,6 +97,47 @@ func (f *finder) share(x *Finding, most, area float64) {
 	}
 	share := area / (f.p.Stand.Area * 1e4)
 	x.Found, x.State = Measure{Percent, 100 * share}, over(share, most)
+}
+
+// joined is the area of one opening, m2, or of the most openings that touch one another where their centres are known; what they share of ground
+// counts for each.
+func (x *Finding) joined(t *scenarios.Treatment, c scenarios.Cleared) float64 {
+	reach := 0.0
+	for d := range 72 {
+		reach = math.Max(reach, canopy.Reach(c.Stems, float64(d)*math.Pi/36))
+	}
+	points := t.Centres.Points
+	group := make([]int, len(points)) // of each opening: the first one that it hangs together with
+	for i, a := range points {
+		group[i] = i
+		land := canopy.LandOf(c.Stems, a.X, a.Y)
+		for j, b := range points[:i] {
+			if math.Hypot(a.X-b.X, a.Y-b.Y) > 2.1*reach || land.From(c.Stems, b.X, b.Y) > 0 {
+				continue
+			}
+			for k, g := range group[:i+1] { // both groups are one
+				if g == group[i] {
+					group[k] = group[j]
+				}
+			}
+		}
+	}
+	most := []string{""}
+	for g := range points {
+		var names []string
+		for i := range points {
+			if group[i] == g {
+				names = append(names, points[i].Name)
+			}
+		}
+		if len(names) > len(most) {
+			most = names
+		}
+	}
+	if len(most) > 1 {
+		x.Detail = "openings " + strings.Join(most, ", ") + " touch and count as one"
+	}
+	return float64(len(most)) * c.Stems.Area()
 }
 
 // residual holds what stays between openings to the least asked for.

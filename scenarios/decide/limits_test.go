@@ -66,6 +66,36 @@ func TestEveryLimit(t *testing.T) {
 	}
 }
 
+// Openings that touch one another are one, however they hang together; those a step apart are not.
+func TestOpeningsThatTouch(t *testing.T) {
+	area := math.Pi / 4 * 3600
+	for _, c := range []struct {
+		at     []float64 // m east of the first
+		times  float64
+		detail string
+	}{
+		{[]float64{0, 60.1}, 1, ""},
+		{[]float64{0, 59.9}, 2, "openings a, b touch and count as one"},
+		{[]float64{0, 100, 50}, 3, "openings a, b, c touch and count as one"},
+		{[]float64{0, 200, 250, 400, 30}, 2, "openings a, e touch and count as one"},
+	} {
+		p := calm(t)
+		p.Limits = []scenarios.Limit{scenarios.OpeningLimit{Area: 1.5 * area}, scenarios.AdjacencyLimit{Area: 1.5 * area}}
+		for i, x := range c.at {
+			p.Treatments[2].Centres.Points = append(p.Treatments[2].Centres.Points, scenarios.Centre{Name: string(rune('a' + i)), X: x})
+		}
+		f := judged(t, p, nil)
+		if len(f.Limits) != 2 {
+			t.Fatalf("%d limits", len(f.Limits))
+		}
+		for _, x := range f.Limits {
+			if want := over(c.times*area, 1.5*area); math.Abs(x.Found.Value-c.times*area) > 1e-6*area || x.State != want || x.Detail != c.detail {
+				t.Errorf("%v: %+v; want %g times the area, %q", c.at, x, c.times, c.detail)
+			}
+		}
+	}
+}
+
 // What a limit needs and the plan does not give is said, not passed over.
 func TestLimitsNotAssessed(t *testing.T) {
 	land, err := canopy.NewLand([][2]float64{{40, -50}, {60, -50}, {60, 50}})

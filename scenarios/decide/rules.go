@@ -50,7 +50,7 @@ var (
 
 // The rules that the plan's limits make.
 var (
-	limitOpening   = Rule{"opening", "law and certification", "largest area of one opening, stem to stem", Own, "a smaller opening", "opening", "limit"}
+	limitOpening   = Rule{"opening", "law and certification", "largest area of one opening, stem to stem; openings that touch are one", Own, "a smaller opening", "opening", "limit"}
 	limitShare     = Rule{"total share", "law and certification", "largest share of the stand in openings of one entry", Own, "fewer or smaller openings", "in openings", "limit"}
 	limitResidual  = Rule{"residual basal area", "law and certification", "least basal area that stays between openings", Own, "a lighter thinning (shadeledger thin)", "stays", "least"}
 	limitCover     = Rule{"residual cover", "law and certification", "least crown cover that stays between openings, crowns standing at random", Own, "a lighter thinning (shadeledger thin)", "stays", "least"}
