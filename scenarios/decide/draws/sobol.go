@@ -92,45 +92,37 @@ func (d Design) Indices(outputs []float64) (Sensitivity, error) {
 	if s.Blocks = len(blocks); s.Blocks < 2 {
 		return s, errors.New("indices need at least 2 whole blocks of runs that gave numbers")
 	}
-	all, parts := gather(blocks, len(d.groups))
-	if s.Variance = all.square / (2 * all.n); !(s.Variance > 0) {
+	parts, square := gather(blocks, len(d.groups)), 0.0
+	for _, m := range parts {
+		square += m.square
+	}
+	if s.Variance = square / float64(2*len(blocks)); !(s.Variance > 0) {
 		return s, ErrConstant
 	}
 	for g := range d.groups {
-		s.First = append(s.First, jackknife(all, parts, func(m sums) float64 { return 2 * m.first[g] / m.square }))
-		s.Total = append(s.Total, jackknife(all, parts, func(m sums) float64 { return m.total[g] / m.square }))
+		s.First = append(s.First, jackknife(parts, func(m sums) float64 { return 2 * m.first[g] }))
+		s.Total = append(s.Total, jackknife(parts, func(m sums) float64 { return m.total[g] }))
 	}
 	return s, nil
 }
 
-// sums over blocks: of squares of f(A) and f(B), and by group of the products and squared steps.
+// sums over a batch of blocks: of squares of f(A) and f(B), and by group of the products and squared steps.
 type sums struct {
-	n, square    float64
+	square       float64
 	first, total []float64
 }
 
-// add puts m, times sign, to s.
-func (s *sums) add(m sums, sign float64) {
-	s.n, s.square = s.n+sign*m.n, s.square+sign*m.square
-	for g := range s.first {
-		s.first[g] += sign * m.first[g]
-		s.total[g] += sign * m.total[g]
-	}
-}
-
-// gather sums blocks of outputs, taken from their mean, in batches and altogether.
-func gather(blocks [][]float64, groups int) (all sums, parts []sums) {
+// gather sums blocks of outputs, taken from their mean, in batches.
+func gather(blocks [][]float64, groups int) []sums {
 	mean := 0.0
 	for i, b := range blocks {
 		mean += ((b[0]+b[1])/2 - mean) / float64(i+1)
 	}
-	empty := func() sums { return sums{first: make([]float64, groups), total: make([]float64, groups)} }
-	all, count := empty(), min(mostBatches, len(blocks))
-	for i := range count {
-		m := empty()
-		for _, b := range blocks[i*len(blocks)/count : (i+1)*len(blocks)/count] {
+	parts := make([]sums, min(mostBatches, len(blocks)))
+	for i := range parts {
+		m := sums{first: make([]float64, groups), total: make([]float64, groups)}
+		for _, b := range blocks[i*len(blocks)/len(parts) : (i+1)*len(blocks)/len(parts)] {
 			a, other := b[0]-mean, b[1]-mean
-			m.n++
 			m.square += a*a + other*other
 			for g, v := range b[2:] {
 				step := v - b[0]
@@ -138,28 +130,27 @@ func gather(blocks [][]float64, groups int) (all sums, parts []sums) {
 				m.total[g] += step * step
 			}
 		}
-		parts = append(parts, m)
-		all.add(m, 1)
+		parts[i] = m
 	}
-	return all, parts
+	return parts
 }
 
-// jackknife is a ratio of sums with its standard error from leaving out one batch at a time.
-func jackknife(all sums, parts []sums, ratio func(sums) float64) Index {
+// jackknife is the ratio of a sum over all batches to that of squares, with its standard error from leaving out one batch at a time.
+func jackknife(parts []sums, of func(sums) float64) Index {
+	above, below, mean, square := 0.0, 0.0, 0.0, 0.0
+	for _, m := range parts {
+		above, below = above+of(m), below+m.square
+	}
 	without := make([]float64, len(parts))
-	mean := 0.0
 	for i, m := range parts {
-		all.add(m, -1)
-		without[i] = ratio(all)
-		all.add(m, 1)
+		without[i] = (above - of(m)) / (below - m.square)
 		mean += without[i] / float64(len(parts))
 	}
-	square := 0.0
 	for _, v := range without {
 		square += (v - mean) * (v - mean)
 	}
 	b := float64(len(parts))
-	return Index{ratio(all), math.Sqrt(square * (b - 1) / b)}
+	return Index{above / below, math.Sqrt(square * (b - 1) / b)}
 }
 
 // Indices runs f on a design of n blocks of k inputs, each its own group, n (k + 2) runs, one after another.
