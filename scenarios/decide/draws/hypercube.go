@@ -9,7 +9,7 @@ const (
 )
 
 // Hypercube is a Latin hypercube of n rows and k columns of chances u, 0 < u < 1: each column has one value in each of the n strata of
-// width 1/n (McKay, Beckman & Conover 1979, Technometrics 21:239-245). Strata are shuffled in every column by itself, so that rows
+// width 1/n (McKay, Beckman & Conover 1979, Technometrics 21:239-245, from memory). Strata are shuffled in every column by itself, so that rows
 // stand in random order and the first m are a fair sample. The same seed gives the same bits.
 func Hypercube(n, k int, seed uint64) [][]float64 {
 	if n <= 0 || k < 0 {
