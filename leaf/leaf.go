@@ -57,6 +57,9 @@ func (s Set) Net(ppfd float64) float64 { return s.Gross(ppfd) - s.Rd }
 // CompensationPoint is the PPFD of zero net assimilation, umol m-2 s-1; see Response.CompensationPoint.
 func (s Set) CompensationPoint() float64 { return s.Response().CompensationPoint() }
 
+// mostPhi is one CO2 per eight photons, mol mol-1.
+const mostPhi = 0.125
+
 // Check tells whether the set can stand for a leaf: all finite, Ag > Rd >= 0, Phi > 0,
 // Theta 0..1, LMA > 0.
 func (s Set) Check() error {
@@ -70,7 +73,7 @@ func (s Set) Check() error {
 		return fmt.Errorf("dark respiration is %g umol m-2 s-1; it is given as a positive cost, 0 or more", s.Rd)
 	case s.Ag <= s.Rd:
 		return fmt.Errorf("net saturated rate is %g umol m-2 s-1; it must be above 0", s.Ag-s.Rd)
-	case s.Phi <= 0 || s.Phi > 0.125:
+	case s.Phi <= 0 || s.Phi > mostPhi:
 		return fmt.Errorf("initial slope is %g mol mol-1; it must be above 0 and at most 0.125, one CO2 per eight photons", s.Phi)
 	case s.Theta < 0 || s.Theta > 1:
 		return fmt.Errorf("curvature is %g; it must be 0 to 1", s.Theta)

@@ -45,11 +45,9 @@ func NewMapper(p *Plan, workers int) (*Mapper, error) {
 		few.DaysPerMonth = mapDays
 		source = &few
 	}
-	series := source.Series(p.Site, p.Sampling.Step, p.Par)
-	above := light.NewAbove(series, p.Sampling.Sky, light.Map)
-	m := &Mapper{runner{plan: p, above: above, season: Mask(series, p.Season), opts: Options{Workers: max(1, workers), Depth: Ledgers}}}
-	m.heights, m.heightOf = heights(p, Ledgers)
-	m.prepared = prepare(p, above)
+	sky := &Sky{light.NewAbove(source.Series(p.Site, p.Sampling.Step, p.Par), p.Sampling.Sky, light.Map)}
+	m := sky.Mapper(p)
+	m.opts.Workers = max(1, workers)
 	return m, nil
 }
 
@@ -58,6 +56,11 @@ func (m *Mapper) Plan() *Plan { return m.plan }
 
 // Map gives Spots[seedling][spot] of a treatment at spots in m east and north of its centre; with depth BreakEvens their break-even and class too.
 func (m *Mapper) Map(t *Treatment, spots [][2]float64, depth Depth) ([][]Spot, error) {
+	return m.survey(t, spots, func(int) Depth { return depth })
+}
+
+// survey maps spots, each to its depth.
+func (m *Mapper) survey(t *Treatment, spots [][2]float64, depth func(spot int) Depth) ([][]Spot, error) {
 	s, err := newScene(m.plan, t, m.above)
 	if err != nil {
 		return nil, err
@@ -88,9 +91,8 @@ func (m *Mapper) Map(t *Treatment, spots [][2]float64, depth Depth) ([][]Spot, e
 			a := &accounts[worker]
 			k.Keep(m.prepared[i], a)
 			x := Spot{X: points[point].X, Y: points[point].Y, Light: sums.Percent(), LightLeafOn: k.LeafOnPercent(), Net: a.Total.Net(), Ratio: a.Total.Ratio()}
-			if depth == BreakEvens {
-				x.BreakEven = k.BreakEven(m.prepared[i])
-				x.Class = ledger.ClassOf(x.Net, x.LightLeafOn, x.BreakEven)
+			if depth(point/len(m.heights)) == BreakEvens {
+				x.classAt(k.BreakEven(m.prepared[i]))
 			}
 			out[i][point/len(m.heights)] = x
 		}

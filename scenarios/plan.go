@@ -39,6 +39,7 @@ type Plan struct {
 	Sampling   Sampling
 	Size       SizeWish
 	Years      YearsAhead
+	Draws      Draws
 	Record     Record
 	Cautions   []Caution // all sixteen, in order, with their state
 	Limits     []Limit   // of the owner or the law, in the order of the keys
@@ -125,8 +126,35 @@ type Understory struct {
 type Seedling struct {
 	Name      string // unique; by default the species
 	Botanical string // "" for a full trait set of the user's own
+	Ranges    []TraitRange
 	ledger.Plant
 }
+
+// TraitRange is how well a trait of a seedling is known: its 5th and 95th percentile over its best value; days for a date.
+type TraitRange struct {
+	Trait     Trait
+	Low, High float64
+	Source    string
+}
+
+// Trait names what a range is about.
+type Trait int
+
+// The traits that draws vary.
+const (
+	Saturated    Trait = iota // light-saturated rate
+	Respiration               // of leaves in the dark
+	Slope                     // initial, of the light response
+	LeafMass                  // per area
+	Organs                    // respiration of stem and root
+	Wood                      // mass of stem and root beside leaves
+	LeafAngle                 // chi of the seedling
+	CrownArea                 // crown leaf area index
+	Lifespan                  // of leaves
+	FineRoots                 // lifespan of fine roots
+	Construction              // cost of new tissue
+	OwnLeafOut                // days that the seedling's own leaf-out may shift
+)
 
 // Treatment is one alternative.
 type Treatment struct {
@@ -187,6 +215,12 @@ type YearsAhead struct {
 	Horizon  int        // years
 	Closing  [3]float64 // edge speed of border crowns at the start, m a year and side
 	Regrowth [3]float64 // years until a thinned canopy has its leaf area again; 0 takes what is usual for the cut
+}
+
+// Draws is how ranges are drawn.
+type Draws struct {
+	Count int
+	Seed  uint64
 }
 
 // Record is who prepared the plan for what.

@@ -38,7 +38,7 @@ func newRoot(stdout, stderr io.Writer) *cobra.Command {
 	}
 	root.SetFlagErrorFunc(func(_ *cobra.Command, err error) error { return usageError{err} })
 	io := streams{stdout, stderr}
-	root.AddCommand(newStart(io), newCheck(io), newKeys(io), newStand(io), newLight(io), newBalance(io), newThin(io), newSize(io), newWhere(io), newYears(io), newCautions(io), newFit(io), newSpecies(io))
+	root.AddCommand(newStart(io), newCheck(io), newKeys(io), newStand(io), newLight(io), newBalance(io), newThin(io), newSize(io), newWhere(io), newYears(io), newSpread(io), newCautions(io), newFit(io), newSpecies(io))
 	return root
 }
 

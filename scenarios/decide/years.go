@@ -171,7 +171,7 @@ var regrowthPace = [3]float64{Late: 1.25, Likely: 1, Early: 0.8}
 // ahead is a treatment some years after the cut; changed tells whether anything still moves.
 func ahead(p *scenarios.Plan, t *scenarios.Treatment, years float64, pace Pace) (later *scenarios.Treatment, changed bool, err error) {
 	out := *t
-	full, now := leafArea(p.Stand.Layers), leafArea(t.Matrix)
+	full, now := scenarios.LeafArea(p.Stand.Layers), scenarios.LeafArea(t.Matrix)
 	if now > 0 && now < full {
 		span := p.Years.Regrowth[Early-pace] // quick leaves go with early
 		if span == 0 {
@@ -213,12 +213,5 @@ func clumping(layers []scenarios.Layer) float64 {
 	for _, l := range layers {
 		sum += l.Clumping * l.LAI
 	}
-	return sum / leafArea(layers)
-}
-
-func leafArea(layers []scenarios.Layer) (sum float64) {
-	for _, l := range layers {
-		sum += l.LAI
-	}
-	return sum
+	return sum / scenarios.LeafArea(layers)
 }

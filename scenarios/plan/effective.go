@@ -333,6 +333,7 @@ func (w *writer) rest(p *scenarios.Plan) {
 		size += ", against: " + quote(p.Size.Against)
 	}
 	w.line(0, "size", size+"}")
+	w.line(0, "draws", fmt.Sprintf("{count: %d, seed: %d}", p.Draws.Count, p.Draws.Seed))
 	w.limits(p)
 	w.cautions(p)
 	r := p.Record

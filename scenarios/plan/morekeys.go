@@ -127,6 +127,9 @@ func restKeys() []Key {
 		{Path: "size.share", Kind: Quantity, dim: share, Low: 0.01, Top: 1, Range: "1 to 100 %", Default: "50 %", Example: "50 %", Meaning: "share of an opening's crown outline that is to be comfortable"},
 		{Path: "size.up_to", Kind: Quantity, dim: length, Low: 1, Top: 1000, Range: "1 to 1000 m", Default: "3 H", Example: "3 H", Meaning: "largest opening: diameter, or short side"},
 		{Path: "size.against", Kind: Text, Default: "none", Example: "Birch", Meaning: "seedling of the plan that is to be outgrown"},
+		{Path: "draws", Kind: Map, Meaning: "how ranges are drawn"},
+		{Path: "draws.count", Kind: Number, Low: 100, Top: 100000, Range: "100 to 100000", Default: "2000", Example: "2000", Meaning: "draws of everything not known for sure"},
+		{Path: "draws.seed", Kind: Number, Low: 0, Top: 1e9, Range: "0 to 1000000000", Default: "1", Example: "1", Meaning: "where the draws begin: the same seed gives the same draws"},
 	}
 	k = append(append(k, limitKeys()...),
 		Key{Path: "cautions", Kind: Map, Default: "all OPEN", Meaning: "what was done about each caution"},
@@ -143,7 +146,7 @@ func restKeys() []Key {
 			Key{Path: p + ".note", Kind: Text, Meaning: "note"},
 		)
 	}
-	for _, later := range []string{"draws", "planting"} {
+	for _, later := range []string{"planting"} {
 		k = append(k, Key{Path: later, Kind: Later, Meaning: "not available in this version: leave it out"})
 	}
 	return k

@@ -196,6 +196,7 @@ func (r *reader) plan(v val) *scenarios.Plan {
 	r.stations(f["stations"], p)
 	r.size(f["size"], p)
 	r.years(f["years"], p)
+	r.drawn(f["draws"], p)
 	p.Cautions = r.cautions(f["cautions"])
 	r.limits(f["limits"], p)
 	r.record(f["record"], p)

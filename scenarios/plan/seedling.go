@@ -100,6 +100,7 @@ func (r *reader) seedling(item val) scenarios.Seedling {
 		r.fault(q.f["stock"], "", "sizes of stock are of the library's species; give species too, or the sizes themselves")
 	}
 	q.plant(&s.Plant)
+	q.ranges(&s)
 	if len(q.from) > 0 {
 		r.assume(item.path, strings.Join(q.from, ", ")+" of "+s.Botanical, "species library: shadeledger species "+s.Botanical)
 	}

@@ -50,3 +50,20 @@ func (r *reader) doubtOf(v val, best float64) [3]float64 {
 	}
 	return [3]float64{best, best, best}
 }
+
+// What is drawn where the plan does not say.
+const usualDraws, usualSeed = 2000, 1
+
+// drawn reads how ranges are drawn.
+func (r *reader) drawn(v val, p *scenarios.Plan) {
+	f := r.fields(v)
+	p.Draws = scenarios.Draws{Count: usualDraws, Seed: usualSeed}
+	for key, to := range map[string]func(float64){"count": func(x float64) { p.Draws.Count = int(x) }, "seed": func(x float64) { p.Draws.Seed = uint64(x) }} {
+		x, ok := r.number(f[key])
+		if ok && x != math.Trunc(x) {
+			r.fault(f[key], "", "a whole number")
+		} else if ok {
+			to(x)
+		}
+	}
+}

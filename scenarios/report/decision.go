@@ -72,44 +72,6 @@ func (o *outcome) take(row *scenarios.BalanceRow) {
 	}
 }
 
-// Cut is how much a treatment takes: the share of the basal area between openings, of leaf area where the stand is stated by layers, and
-// one opening's legal area.
-type Cut struct {
-	Matrix  float64 // 0..1
-	Opening float64 // m2
-}
-
-// CutOf measures a treatment against the uncut stand.
-func CutOf(p *scenarios.Plan, t *scenarios.Treatment) Cut {
-	var c Cut
-	before, after := leafArea(p.Stand.Layers), leafArea(t.Matrix)
-	if len(t.Trees.Trees) > 0 {
-		before, after = p.Stand.Trees.Sums().BasalArea, t.Trees.Sums().BasalArea
-	}
-	if before > 0 {
-		c.Matrix = math.Max(0, 1-after/before)
-	}
-	if o, ok := t.Opening.(scenarios.Cleared); ok {
-		c.Opening = o.Stems.Area()
-	}
-	return c
-}
-
-func leafArea(layers []scenarios.Layer) (sum float64) {
-	for _, l := range layers {
-		sum += l.LAI
-	}
-	return sum
-}
-
-// lighter orders cuts: first the share taken between openings, then the opening's area.
-func (c Cut) lighter(d Cut) bool {
-	if math.Abs(c.Matrix-d.Matrix) > 1e-9 {
-		return c.Matrix < d.Matrix
-	}
-	return c.Opening < d.Opening-1e-9
-}
-
 // byCut lists the treatments from the lightest cut to the heaviest; equal ones keep the plan's order.
 func (b *board) byCut() []int {
 	p := b.results.Plan
@@ -118,7 +80,7 @@ func (b *board) byCut() []int {
 		order[i] = i
 	}
 	sort.SliceStable(order, func(x, y int) bool {
-		return CutOf(p, &p.Treatments[order[x]]).lighter(CutOf(p, &p.Treatments[order[y]]))
+		return scenarios.CutOf(p, &p.Treatments[order[x]]).Lighter(scenarios.CutOf(p, &p.Treatments[order[y]]))
 	})
 	return order
 }
@@ -153,8 +115,8 @@ func (b *board) decision() string {
 		if names == nil {
 			continue
 		}
-		cut := CutOf(p, &p.Treatments[t])
-		uncut = uncut && cut == Cut{}
+		cut := scenarios.CutOf(p, &p.Treatments[t])
+		uncut = uncut && cut == scenarios.Cut{}
 		parts = append(parts, p.Treatments[t].Name+" for "+strings.Join(names, ", "))
 	}
 	if works == len(lightest) && uncut {

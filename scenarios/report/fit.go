@@ -23,7 +23,7 @@ func FitCanopy(o Output, p *scenarios.Plan, c scenarios.Correction) error {
 	if o.Format != Table {
 		return data(o, n, residualLightColumns, c.Residuals)
 	}
-	before := leafArea(p.Stand.Layers)
+	before := scenarios.LeafArea(p.Stand.Layers)
 	q := &printer{w: o.Out}
 	q.f("%s\nEffective leaf area from %s\n", Name(p), c.Source)
 	t := newTable("", "before", "after", "measured")

@@ -50,7 +50,7 @@ func readAs(r *scenarios.Results, u scenarios.Units) string {
 	} else {
 		s += "height " + length(p.Stand.Height, u)
 	}
-	s += ", leaf area " + text0(leafArea(p.Stand.Layers), 1) + leafSource(r)
+	s += ", leaf area " + text0(scenarios.LeafArea(p.Stand.Layers), 1) + leafSource(r)
 	if n := len(p.Stand.Understory); n > 0 {
 		var names []string
 		for _, x := range p.Stand.Understory {
@@ -274,7 +274,7 @@ func (b *board) header(how layout, seedlings int) row {
 
 func (b *board) row(u scenarios.Units, how layout, t, seedlings int) row {
 	p := b.results.Plan
-	r := row{{p.Treatments[t].Name}, cutText(CutOf(p, &p.Treatments[t]), u, how), b.marks.light(p.Treatments[t].Name, lightText(b.low[t], b.up[t]), how)}
+	r := row{{p.Treatments[t].Name}, cutText(scenarios.CutOf(p, &p.Treatments[t]), u, how), b.marks.light(p.Treatments[t].Name, lightText(b.low[t], b.up[t]), how)}
 	for s := range seedlings {
 		class, at := b.cells[t][s].cell()
 		switch {
@@ -295,7 +295,7 @@ func (b *board) row(u scenarios.Units, how layout, t, seedlings int) row {
 }
 
 // cutText is what a treatment takes: percent of leaf area between openings, the opening's legal area.
-func cutText(c Cut, u scenarios.Units, how layout) [2]string {
+func cutText(c scenarios.Cut, u scenarios.Units, how layout) [2]string {
 	matrix := whole(100*c.Matrix) + "%"
 	if c.Matrix == 0 {
 		matrix = "0"

@@ -98,11 +98,11 @@ func groupOf(p *scenarios.Plan, names []string) string {
 	var openings, cut []string
 	for i := range p.Treatments {
 		t := &p.Treatments[i]
-		c := CutOf(p, t)
+		c := scenarios.CutOf(p, t)
 		if c.Opening > 0 {
 			openings = append(openings, t.Name)
 		}
-		if c != (Cut{}) {
+		if c != (scenarios.Cut{}) {
 			cut = append(cut, t.Name)
 		}
 	}

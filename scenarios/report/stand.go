@@ -77,7 +77,7 @@ type standReport struct {
 func (b *standReport) stated() {
 	s := &b.plan.Stand
 	b.p.f("The plan states the canopy: height %s, leaf area %s in %d layers. With stand_table or\nbasal_area it would follow from the trees.\n",
-		length(s.Height, b.o.Units), text0(leafArea(s.Layers), 2), len(s.Layers))
+		length(s.Height, b.o.Units), text0(scenarios.LeafArea(s.Layers), 2), len(s.Layers))
 }
 
 func (b *standReport) table(t table.Writer, right ...int) {

@@ -1,0 +1,101 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"os"
+	"os/signal"
+	"sync"
+	"syscall"
+	"time"
+
+	"github.com/spf13/cobra"
+
+	"shadeledger/scenarios"
+	"shadeledger/scenarios/decide"
+	"shadeledger/scenarios/report"
+)
+
+func newSpread(io streams) *cobra.Command {
+	var count int
+	cmd := &cobra.Command{
+		Use:   "spread [PLAN]",
+		Short: "Ranges, what drives them, what would flip the decision, what to measure next",
+		Long: `Draws everything that is not known for sure (draws.count times, from draws.seed): leaf area, clumping, heights, crowns, leaf dates, slope,
+radiation and temperature, each seedling's leaves, stems and roots, and a generated year of weather, and runs every treatment for each. A
+value's doubt is the plan's own (78 ft +- 4 ft, or {low, best, high}), else that of readings, of the species library or what is usual in the
+field. Ranges run from the 5th to the 95th percentile.
+
+For every seedling: each treatment's light and carbon with its range, how likely a station is comfortable, which treatments cannot be separated, the one
+input that flips the decision and its value there, what to measure next and what that buys, and what moves the margin of light over the threshold.
+--format csv has every station with the chance of each class; --output FILE.svg draws what moves the margin.
+
+Ctrl-C ends the run: what was drawn by then is printed and marked, and the exit status is 1. A second Ctrl-C ends it at once.`,
+		Example:     "  shadeledger spread\n  shadeledger spread my-stand --draws 500\n  shadeledger spread my-stand --format csv --output ranges.csv",
+		Args:        atMost(1),
+		Annotations: map[string]string{draws: ""},
+		RunE: func(cmd *cobra.Command, args []string) error {
+			s, err := readSettings(cmd)
+			if err != nil {
+				return err
+			}
+			if cmd.Flags().Changed("draws") && (count < 100 || count > 100000) {
+				return usagef("--draws %d; it must be 100 to 100000", count)
+			}
+			return runSpread(s, io, first(args), count)
+		},
+	}
+	addPlanFlags(cmd)
+	cmd.Flags().IntVar(&count, "draws", 0, "draws, in place of the plan's draws.count")
+	return cmd
+}
+
+// errInterrupted ends a run that was cut short: its partial answer is printed.
+var errInterrupted = errors.New("interrupted: the answer is that of fewer draws")
+
+func runSpread(s *settings, io streams, name string, count int) error {
+	if err := s.checkOutput(); err != nil {
+		return err
+	}
+	p, err := loadPlan(name, s.set)
+	if err != nil {
+		return err
+	}
+	if count > 0 {
+		p.Draws.Count = count
+	}
+	found, err := s.spread(io, p)
+	if err != nil {
+		return err
+	}
+	if err := s.deliver(io, p, func(out report.Output) error { return report.Spread(out, p, found) }); err != nil {
+		return err
+	}
+	if found.Done < found.Query.Count {
+		return errInterrupted
+	}
+	if s.strict && len(p.Warnings) > 0 {
+		return errWarnings
+	}
+	return nil
+}
+
+// spread runs the draws with progress; an interrupt ends them.
+func (s *settings) spread(io streams, p *scenarios.Plan) (*decide.Spreads, error) {
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	defer stop()
+	context.AfterFunc(ctx, stop) // the next interrupt is the system's own
+	var once sync.Mutex
+	told := time.Now()
+	return decide.FindSpreads(ctx, p, decide.SpreadQuery{Count: p.Draws.Count, Seed: p.Draws.Seed, Workers: s.workers, Progress: func(done int) {
+		once.Lock()
+		defer once.Unlock()
+		if done == p.Draws.Count || time.Since(told) > progressEvery {
+			told = time.Now()
+			s.progress(io, "draws %d of %d", done, p.Draws.Count)
+		}
+	}})
+}
+
+// progressEvery is how often a long run tells where it is.
+const progressEvery = 2 * time.Second
