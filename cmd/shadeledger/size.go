@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"math"
 	"slices"
 	"strings"
@@ -18,6 +19,8 @@ type sizeOptions struct {
 	shapes   []string
 	bearing  float64
 	bearings bool
+	ranges   bool
+	draws    int
 }
 
 var shapes = []string{"circle", "ellipse", "strip"}
@@ -31,7 +34,8 @@ func newSize(io streams) *cobra.Command {
 comfortable over at least size.share of the area inside the crowns (50 % where the plan does not say), up to
 size.up_to. Circles go by their diameter, ellipses (twice as long as wide) and strips (three times) by their short side, all
 from stem to stem; what lies inside is as in the plan's first opening. With size.against the window ends where
-that seedling grows faster, by net carbon over what a plant is made of. --bearings turns ellipse and strip at that size.`,
+that seedling grows faster, by net carbon over what a plant is made of. --bearings turns ellipse and strip at that size. --range draws
+everything not known for sure, as spread does, and gives the 5th to the 95th percentile of every size.`,
 		Example: "  shadeledger size\n  shadeledger size my-stand --shape ellipse --bearing 90 --bearings\n  shadeledger size --set 'size.share=70 %' --set size.against=Birch",
 		Args:    atMost(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
@@ -48,9 +52,14 @@ that seedling grows faster, by net carbon over what a plant is made of. --bearin
 	f.StringSliceVar(&o.shapes, "shape", shapes, "circle, ellipse, strip: one or more, with commas")
 	f.Float64Var(&o.bearing, "bearing", 90, "true bearing of the long side, degrees")
 	f.BoolVar(&o.bearings, "bearings", false, "try bearings 0 to 170 by 10 at the size found: best and worst")
+	f.BoolVar(&o.ranges, "range", false, "low and high of every size, from draws of what is not known for sure")
+	f.IntVar(&o.draws, "draws", sizeDraws, "draws of --range")
 	complete(cmd, "shape", shapes...)
 	return cmd
 }
+
+// sizeDraws are fewer than those of spread, since each looks for every size anew.
+const sizeDraws = 60
 
 func runSize(o sizeOptions) error {
 	if err := o.checkOutput(); err != nil {
@@ -64,6 +73,9 @@ func runSize(o sizeOptions) error {
 		}
 		q.Shapes = append(q.Shapes, decide.Shape(i))
 	}
+	if o.ranges && (o.draws < 40 || o.draws > 10000) {
+		return usagef("--draws is %d; it must be 40 to 10000", o.draws)
+	}
 	if !(o.bearing >= 0 && o.bearing < 360) {
 		return usagef("--bearing is %g; it must be 0 to 360 degrees", o.bearing)
 	}
@@ -76,5 +88,18 @@ func runSize(o sizeOptions) error {
 	if err != nil {
 		return err
 	}
-	return o.deliver(o.io, p, func(out report.Output) error { return report.Sizes(out, p, t) })
+	if o.ranges {
+		if err := o.drawing(o.io, o.draws, func(ctx context.Context, progress func(int)) error {
+			return t.Range(ctx, p, decide.SpreadQuery{Count: o.draws, Seed: p.Draws.Seed, Workers: o.workers, Progress: progress})
+		}); err != nil {
+			return err
+		}
+	}
+	if err := o.deliver(o.io, p, func(out report.Output) error { return report.Sizes(out, p, t) }); err != nil {
+		return err
+	}
+	if o.ranges && t.Drawn < o.draws {
+		return errInterrupted
+	}
+	return nil
 }

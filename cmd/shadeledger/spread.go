@@ -80,21 +80,30 @@ func runSpread(s *settings, io streams, name string, count int) error {
 	return nil
 }
 
-// spread runs the draws with progress; an interrupt ends them.
-func (s *settings) spread(io streams, p *scenarios.Plan) (*decide.Spreads, error) {
+// spread finds ranges; an interrupt ends the draws.
+func (s *settings) spread(io streams, p *scenarios.Plan) (found *decide.Spreads, err error) {
+	err = s.drawing(io, p.Draws.Count, func(ctx context.Context, progress func(int)) error {
+		found, err = decide.FindSpreads(ctx, p, decide.SpreadQuery{Count: p.Draws.Count, Seed: p.Draws.Seed, Workers: s.workers, Progress: progress})
+		return err
+	})
+	return found, err
+}
+
+// drawing runs draws that tell where they are, until an interrupt.
+func (s *settings) drawing(io streams, count int, work func(ctx context.Context, progress func(done int)) error) error {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
 	context.AfterFunc(ctx, stop) // the next interrupt is the system's own
 	var once sync.Mutex
 	told := time.Now()
-	return decide.FindSpreads(ctx, p, decide.SpreadQuery{Count: p.Draws.Count, Seed: p.Draws.Seed, Workers: s.workers, Progress: func(done int) {
+	return work(ctx, func(done int) {
 		once.Lock()
 		defer once.Unlock()
-		if done == p.Draws.Count || time.Since(told) > progressEvery {
+		if done == count || time.Since(told) > progressEvery {
 			told = time.Now()
-			s.progress(io, "draws %d of %d", done, p.Draws.Count)
+			s.progress(io, "draws %d of %d", done, count)
 		}
-	}})
+	})
 }
 
 // progressEvery is how often a long run tells where it is.

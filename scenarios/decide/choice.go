@@ -179,9 +179,9 @@ func (s *sample) oneAtATime() ([]end, error) {
 	return out, nil
 }
 
-func (s *sample) bestInputs() []float64 {
-	x := make([]float64, len(s.inputs))
-	for k, in := range s.inputs {
+func (w *world) bestInputs() []float64 {
+	x := make([]float64, len(w.inputs))
+	for k, in := range w.inputs {
 		x[k] = in.Doubt.Best
 	}
 	return x

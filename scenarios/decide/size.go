@@ -65,6 +65,9 @@ type SizeRow struct {
 	Worst     float64
 	LeastGood float64 // share at the worst bearing
 	Verdict   string
+	// Over draws of what is not known for sure: the 5th and 95th percentile of the size, m; +Inf where none up to the limit is large enough. Missed is the
+	// share of draws without an answer. NaN where nothing was drawn.
+	Low, High, Missed float64
 }
 
 // Sizes is the table.
@@ -73,6 +76,7 @@ type Sizes struct {
 	Query SizeQuery
 	Rows  []SizeRow
 	Runs  int
+	Drawn int // draws that stand behind the ranges
 }
 
 // stepOfHeight is the step of sizes in tree heights.
@@ -83,13 +87,15 @@ const across = 9
 
 // sizer evaluates openings once each.
 type sizer struct {
-	q     SizeQuery
-	m     *scenarios.Mapper
-	base  scenarios.Treatment
-	seen  map[[3]int][]view
-	runs  int
-	least int // steps of the smallest opening with ground inside its crown outline
-	most  int
+	q      SizeQuery
+	m      *scenarios.Mapper
+	base   scenarios.Treatment
+	seen   map[[3]int][]view
+	runs   int
+	height float64 // m, of which sizes are tenths
+	fine   int     // spots beside each other over the short side
+	least  int     // steps of the smallest opening with ground inside its crown outline
+	most   int
 }
 
 // view is one opening for one seedling.
@@ -106,12 +112,9 @@ func FindSizes(p *scenarios.Plan, q SizeQuery) (*Sizes, error) {
 	if err != nil {
 		return nil, err
 	}
-	s := &sizer{q: q, m: m, base: opened(m.Plan()), seen: map[[3]int][]view{}}
-	H, r := m.Plan().Stand.Height, m.Plan().Stand.CrownRadius
-	s.least = int(math.Ceil((2*r + 1) / (stepOfHeight * H)))
-	s.most = int(math.Floor(q.UpTo/(stepOfHeight*H) + 1e-9))
-	if s.most < s.least {
-		return nil, fmt.Errorf("the largest size is %.3g m; with crowns of %.3g m round it an opening needs %.3g m", q.UpTo, r, float64(s.least)*stepOfHeight*H)
+	s, err := newSizer(m, q, across)
+	if err != nil {
+		return nil, err
 	}
 	uncut, err := s.uncut()
 	if err != nil {
@@ -129,6 +132,18 @@ func FindSizes(p *scenarios.Plan, q SizeQuery) (*Sizes, error) {
 	}
 	out.Runs = s.runs
 	return out, nil
+}
+
+// newSizer readies the sizes between those with ground inside their crowns and the limit; fine is how many spots stand beside each other.
+func newSizer(m *scenarios.Mapper, q SizeQuery, fine int) (*sizer, error) {
+	H, r := m.Plan().Stand.Height, m.Plan().Stand.CrownRadius
+	s := &sizer{q: q, m: m, base: opened(m.Plan()), seen: map[[3]int][]view{}, fine: fine, height: H}
+	s.least = int(math.Ceil((2*r + 1) / (stepOfHeight * H)))
+	s.most = int(math.Floor(q.UpTo/(stepOfHeight*H) + 1e-9))
+	if s.most < s.least {
+		return nil, fmt.Errorf("the largest size is %.3g m; with crowns of %.3g m round it an opening needs %.3g m", q.UpTo, r, float64(s.least)*stepOfHeight*H)
+	}
+	return s, nil
 }
 
 // opened is the treatment that sizes are tried on: the plan's first opening, else the uncut stand with a bare one.
@@ -156,7 +171,7 @@ func (s *sizer) uncut() ([]bool, error) {
 	return out, nil
 }
 
-func (s *sizer) size(k int) float64 { return float64(k) * stepOfHeight * s.m.Plan().Stand.Height }
+func (s *sizer) size(k int) float64 { return float64(k) * stepOfHeight * s.height }
 
 // look evaluates an opening of k steps for every seedling.
 func (s *sizer) look(shape Shape, k int, bearing float64) ([]view, error) {
@@ -164,18 +179,11 @@ func (s *sizer) look(shape Shape, k int, bearing float64) ([]view, error) {
 	if v, ok := s.seen[key]; ok {
 		return v, nil
 	}
-	stems, err := shape.Outline(s.size(k), bearing)
+	t, spots, err := s.cut(shape, k, bearing)
 	if err != nil {
 		return nil, err
 	}
-	crowns, err := canopy.Inset(stems, s.m.Plan().Stand.CrownRadius)
-	if err != nil {
-		return nil, err
-	}
-	t := s.base
-	inside := t.Opening.(scenarios.Cleared).Inside
-	t.Opening = scenarios.Cleared{Stems: stems, Crowns: crowns, Inside: inside}
-	maps, err := s.m.Map(&t, spread(crowns, s.size(k)-2*s.m.Plan().Stand.CrownRadius, lengths[shape]*s.size(k)/2), scenarios.BreakEvens)
+	maps, err := s.m.Map(t, spots, scenarios.BreakEvens)
 	if err != nil {
 		return nil, err
 	}
@@ -194,6 +202,22 @@ func (s *sizer) look(shape Shape, k int, bearing float64) ([]view, error) {
 	return out, nil
 }
 
+// cut is the treatment with an opening of k steps, and spots evenly over the ground inside its crowns.
+func (s *sizer) cut(shape Shape, k int, bearing float64) (*scenarios.Treatment, [][2]float64, error) {
+	stems, err := shape.Outline(s.size(k), bearing)
+	if err != nil {
+		return nil, nil, err
+	}
+	r := s.m.Plan().Stand.CrownRadius
+	crowns, err := canopy.Inset(stems, r)
+	if err != nil {
+		return nil, nil, err
+	}
+	t := s.base
+	t.Opening = scenarios.Cleared{Stems: stems, Crowns: crowns, Inside: t.Opening.(scenarios.Cleared).Inside}
+	return &t, evenly(crowns, (s.size(k)-2*r)/float64(s.fine), lengths[shape]*s.size(k)/2), nil
+}
+
 // grown is what a plant is made of, g C spent, so that net over it is relative growth, per year.
 func grown(p *ledger.Plant) float64 {
 	mass := p.LeafMass
@@ -203,9 +227,8 @@ func grown(p *ledger.Plant) float64 {
 	return mass * p.Turnover.ConstructionCost
 }
 
-// spread lists spots evenly over an outline of a width that reaches no farther than reach, m.
-func spread(o canopy.Outline, width, reach float64) (out [][2]float64) {
-	step := width / across
+// evenly lists spots a step apart over an outline that reaches no farther than reach, m.
+func evenly(o canopy.Outline, step, reach float64) (out [][2]float64) {
 	n := int(math.Ceil(reach / step))
 	for j := -n; j <= n; j++ {
 		for i := -n; i <= n; i++ {
@@ -219,7 +242,7 @@ func spread(o canopy.Outline, width, reach float64) (out [][2]float64) {
 
 func (s *sizer) row(i int, name string, shape Shape, uncut bool) (SizeRow, error) {
 	nan := math.NaN()
-	row := SizeRow{Species: name, Shape: shape, Bearing: s.q.Bearing, Uncut: uncut, Smaller: nan, Upper: nan, Best: nan, Worst: nan, BestShare: nan, LeastGood: nan}
+	row := SizeRow{Species: name, Shape: shape, Bearing: s.q.Bearing, Uncut: uncut, Smaller: nan, Upper: nan, Best: nan, Worst: nan, BestShare: nan, LeastGood: nan, Low: nan, High: nan, Missed: nan}
 	enough := func(k int) (bool, error) {
 		v, err := s.look(shape, k, s.q.Bearing)
 		return err == nil && v[i].share >= s.q.Share, err
@@ -229,7 +252,7 @@ func (s *sizer) row(i int, name string, shape Shape, uncut bool) (SizeRow, error
 		return row, err
 	}
 	if k > s.most {
-		row.Verdict = fmt.Sprintf("no opening up to %.3g H", s.size(s.most)/s.m.Plan().Stand.Height)
+		row.Verdict = fmt.Sprintf("no opening up to %.3g H", s.size(s.most)/s.height)
 		if v, err := s.look(shape, s.most, s.q.Bearing); err == nil {
 			row.Share = v[i].share
 		}

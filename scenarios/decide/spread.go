@@ -47,14 +47,55 @@ type Spreads struct {
 	sample  *sample
 }
 
+// world is a plan with everything that is not known for sure of it.
+type world struct {
+	p      *scenarios.Plan // its leaf area corrected
+	sky    *scenarios.Sky
+	years  *weather.Generator
+	seed   uint64
+	inputs []Input
+}
+
+func newWorld(p *scenarios.Plan, seed uint64) (*world, error) {
+	corrected, c, err := scenarios.Corrected(p)
+	if err != nil {
+		return nil, err
+	}
+	years, err := scenarios.YearsOf(corrected)
+	if err != nil {
+		return nil, err
+	}
+	return &world{p: corrected, sky: scenarios.NewSky(corrected), years: years, seed: seed, inputs: inputs(corrected, c)}, nil
+}
+
+// drawn gives the inputs of every draw of a Latin hypercube.
+func (w *world) drawn(count int) [][]float64 {
+	out := draws.Hypercube(count, len(w.inputs), w.seed)
+	for _, x := range out {
+		for k, in := range w.inputs {
+			x[k] = in.Doubt.At(x[k])
+		}
+	}
+	return out
+}
+
+// mapper is ready to map the plan that inputs x make, in a year.
+func (w *world) mapper(x []float64, year [12]weather.MonthAnomaly) *scenarios.Mapper {
+	c := unchanged(w.p)
+	for k, in := range w.inputs {
+		in.vary(&c, x[k])
+	}
+	for m := range year {
+		year[m].Radiation *= c.radiation
+		year[m].Temperature += c.warmth
+	}
+	return w.sky.Changed(year).Mapper(c.of(w.p))
+}
+
 // sample holds what every draw gave.
 type sample struct {
-	p        *scenarios.Plan
-	sky      *scenarios.Sky
-	years    *weather.Generator
-	seed     uint64
+	*world
 	workers  int
-	inputs   []Input
 	at       [][]canopy.Station // by treatment
 	base     []int              // first row of a treatment
 	rows     int
@@ -110,14 +151,12 @@ func newSample(p *scenarios.Plan, q SpreadQuery) (*sample, error) {
 	if err != nil {
 		return nil, err
 	}
-	corrected, c, err := scenarios.Corrected(p)
+	w, err := newWorld(p, q.Seed)
 	if err != nil {
 		return nil, err
 	}
-	s := &sample{p: corrected, seed: q.Seed, workers: q.Workers, inputs: inputs(corrected, c), sky: scenarios.NewSky(corrected)}
-	if s.years, err = scenarios.YearsOf(corrected); err != nil {
-		return nil, err
-	}
+	s := &sample{world: w, workers: q.Workers}
+	corrected := w.p
 	for i := range corrected.Treatments {
 		t := &corrected.Treatments[i]
 		s.base = append(s.base, s.rows)
@@ -129,13 +168,9 @@ func newSample(p *scenarios.Plan, q SpreadQuery) (*sample, error) {
 	}
 	s.align(full)
 	s.leads()
-	u := draws.Hypercube(q.Count, len(s.inputs), q.Seed)
 	s.draw, s.finished = make([]drawn, q.Count), make([]bool, q.Count)
-	for i := range s.draw {
-		s.draw[i].x = make([]float64, len(s.inputs))
-		for k, in := range s.inputs {
-			s.draw[i].x[k] = in.Doubt.At(u[i][k])
-		}
+	for i, x := range w.drawn(q.Count) {
+		s.draw[i].x = x
 	}
 	return s, nil
 }
@@ -252,16 +287,8 @@ func (s *sample) one(i int) error {
 
 // spots runs a plan with inputs x in a year.
 func (s *sample) spots(x []float64, year [12]weather.MonthAnomaly) ([]drawnSpot, error) {
-	c := unchanged(s.p)
-	for k, in := range s.inputs {
-		in.vary(&c, x[k])
-	}
-	for m := range year {
-		year[m].Radiation *= c.radiation
-		year[m].Temperature += c.warmth
-	}
-	p := c.of(s.p)
-	m := s.sky.Changed(year).Mapper(p)
+	m := s.mapper(x, year)
+	p := m.Plan()
 	out := make([]drawnSpot, s.rows)
 	for t := range p.Treatments {
 		found, err := m.Draw(&p.Treatments[t], s.at[t], s.wanted[t])

@@ -26,6 +26,7 @@ func (c *change) of(p *scenarios.Plan) *scenarios.Plan {
 	q.Ground.Slope, q.Ground.Aspect = c.slope, c.aspect
 	q.Stand.Height = c.height
 	q.Stand.CrownBase = math.Max(0, math.Min(c.base, c.height-leastCrown))
+	q.Stand.CrownRadius = math.Max(0, p.Stand.CrownRadius+c.crowns)
 	q.Stand.Layers = c.layers(p, p.Stand.Layers)
 	q.Stand.Understory = c.bushes(p.Stand.Understory)
 	q.Treatments = append([]scenarios.Treatment(nil), p.Treatments...)

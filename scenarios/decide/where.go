@@ -297,7 +297,7 @@ func (s *Shares) turned(m *scenarios.Mapper, t *scenarios.Treatment, c scenarios
 		}
 		turned := *t
 		turned.Opening = scenarios.Cleared{Stems: c.Stems, Crowns: crowns, Inside: c.Inside}
-		maps, err := m.Map(&turned, spread(crowns, math.Min(length, width), math.Max(length, width)/2), scenarios.BreakEvens)
+		maps, err := m.Map(&turned, evenly(crowns, math.Min(length, width)/across, math.Max(length, width)/2), scenarios.BreakEvens)
 		if err != nil {
 			return err
 		}
