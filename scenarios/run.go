@@ -119,22 +119,26 @@ func heights(p *Plan, depth Depth) (list []float64, of []int) {
 func prepare(p *Plan, above *light.Above) []*ledger.Prepared {
 	out := make([]*ledger.Prepared, len(p.Seedlings))
 	for i, s := range p.Seedlings {
-		plant := s.Plant
-		if plant.SnowDays == nil && p.Snow.Depth > plant.Height {
-			covered := Mask(above.Series, p.Snow.Period)
-			plant.SnowDays = func(day int) bool { return covered[day] }
-		}
-		if _, evergreen := plant.Leaves.(leaf.Evergreen); evergreen {
-			plant.Dormancy = p.Sampling.Dormancy
-		}
-		if _, natural := p.Sampling.Sky.(radiation.AllWeather); natural && plant.Chemistry != nil {
-			thin := *plant.Chemistry
-			thin.Pressure = leaf.PressureAt(p.Site.Elevation)
-			plant.Chemistry = &thin
-		}
-		out[i] = ledger.Prepare(&plant, above)
+		out[i] = prepareOne(p, s.Plant, above)
 	}
 	return out
+}
+
+// prepareOne works a plant out for the series: under snow that is deeper than it is tall, asleep in the cold where it is evergreen.
+func prepareOne(p *Plan, plant ledger.Plant, above *light.Above) *ledger.Prepared {
+	if plant.SnowDays == nil && p.Snow.Depth > plant.Height {
+		covered := Mask(above.Series, p.Snow.Period)
+		plant.SnowDays = func(day int) bool { return covered[day] }
+	}
+	if _, evergreen := plant.Leaves.(leaf.Evergreen); evergreen {
+		plant.Dormancy = p.Sampling.Dormancy
+	}
+	if _, natural := p.Sampling.Sky.(radiation.AllWeather); natural && plant.Chemistry != nil {
+		thin := *plant.Chemistry
+		thin.Pressure = leaf.PressureAt(p.Site.Elevation)
+		plant.Chemistry = &thin
+	}
+	return ledger.Prepare(&plant, above)
 }
 
 // neutral finds every seedling's break-even in neutral shade.

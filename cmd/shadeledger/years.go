@@ -19,9 +19,12 @@ func newYears(io streams) *cobra.Command {
 		Use:   "years [PLAN]",
 		Short: "How long it lasts: yearly light and class per station, early, likely and late",
 		Long: `Follows every treatment for years.horizon: border crowns grow into openings (years.side_closure), thinned canopies get their leaf
-area back (years.leaf_regrowth), each at three paces: early is fast crowns and quick leaves, late slow ones. For every
-seedling the years for which a station stays comfortable; --format csv has every year of every station. Light is that of maps, a
-few weighted days a month. Seedlings keep their size and no other plants grow up.`,
+area back (years.leaf_regrowth), each at three paces: early is fast crowns and quick leaves, late slow ones. Seedlings grow:
+each year's net carbon becomes leaves, wood and roots and with them height, up to the crown base, and each year's light is
+that at the height reached. After three years of loss in a row a seedling dies. For every seedling: the year in which the
+last station inside is lost, which is when to come back; the same for new stock; height; the year it stands above the
+understory. --format csv has every year of every station; an empty year lies beyond the horizon. Light is that of maps, a
+few weighted days a month. No other plants grow up.`,
 		Example: "  shadeledger years\n  shadeledger years my-stand --format csv --output years.csv\n  shadeledger years --set 'years.side_closure={low: 0.1 m/y, best: 0.25 m/y, high: 0.4 m/y}'",
 		Args:    atMost(1),
 		RunE: func(cmd *cobra.Command, args []string) error {

@@ -3,70 +3,60 @@ package decide
 import (
 	"math"
 
-	"shadeledger/canopy"
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
-)
-
-// Pace of closing: early goes with fast crowns and quick leaves.
-type Pace int
-
-// The paces.
-const (
-	Late Pace = iota
-	Likely
-	Early
 )
 
 // YearRow is one seedling at one station in one year. Ranges span the paces.
 type YearRow struct {
 	Treatment, Station, Species string
 	Year                        int
-	Light                       [3]float64 // percent over the season, by pace
+	Light                       [3]float64 // percent over the season at the seedling's height, by pace
 	LeafOn                      [3]float64
+	Height                      [3]float64 // m
+	Net                         [3]float64 // g C in the year
 	Class                       [3]ledger.Class
+	StockLight                  [3]float64 // percent over the season at the height of the plan's own size
+	StockClass                  [3]ledger.Class
 }
 
-// Lost is when one seedling at one station falls below its working threshold, years after the cut by pace: 0 where it is not above it to begin with, +Inf
-// where it stays above to the horizon.
-type Lost struct {
+// Span is what becomes of one seedling at one station, in years after the cut by pace; +Inf is not within the horizon.
+type Span struct {
 	Treatment, Station, Species string
-	Year                        [3]float64
+	Inside                      bool
+	Lost                        [3]float64 // the first year from which it is not comfortable any more; 0 where it never is
+	Stock                       [3]float64 // the same for new stock of the plan's size, planted in that year
+	Above                       [3]float64 // the first year in which it stands above the treatment's understory; 0 where there is none above it
+	Dies                        [3]float64 // after three years of loss in a row
+}
+
+// Reentry is the year by which the crew is due again for a seedling: the first in which no station inside keeps it comfortable; 0 where none does to begin with.
+type Reentry struct {
+	Treatment, Species string
+	Year               [3]float64
+	Stock              [3]float64 // the same for new stock of the plan's size: until then it can be planted
+	Best               int        // index in Spans of the station that keeps it longest at the likely pace
 }
 
 // Future is every year of every treatment.
 type Future struct {
-	Plan *scenarios.Plan
-	Rows []YearRow
-	Lost []Lost
-	Runs int
+	Plan      *scenarios.Plan
+	Rows      []YearRow // by treatment, station, seedling, year
+	Spans     []Span    // by treatment, station, seedling
+	Reentries []Reentry // by treatment, seedling
+	Runs      int
 }
 
-// worked are the years in which light is worked out; between them it is linear. Lateral growth stops after 11 to 16 years, leaves are back after 8 to 20.
-var worked = []int{0, 2, 4, 6, 8, 10, 12, 14, 16, 20, 25, 30, 40, 50, 60}
-
-// at is what a station gives a seedling in a worked year.
-type at struct {
-	light, leafOn, net, threshold float64
-}
-
-// FindYears follows every treatment for the plan's horizon: border crowns grow in and thinned canopies get their leaf area back, at three paces.
-// Stations keep their places, seedlings their size. Light is that of maps: a few weighted days a month.
+// FindYears follows every treatment for the plan's horizon: border crowns grow in, thinned canopies get their leaf area back, seedlings grow from their own net, at
+// three paces. Stations keep their places. Light is that of maps: a few weighted days a month.
 func FindYears(p *scenarios.Plan, workers int) (*Future, error) {
 	m, err := scenarios.NewMapper(p, workers)
 	if err != nil {
 		return nil, err
 	}
 	f := &Future{Plan: m.Plan()}
-	years := []int{}
-	for _, y := range worked {
-		if y < f.Plan.Years.Horizon {
-			years = append(years, y)
-		}
-	}
-	years = append(years, f.Plan.Years.Horizon)
 	for i := range f.Plan.Treatments {
-		if err := f.treatment(m, &f.Plan.Treatments[i], years); err != nil {
+		if err := f.treatment(m, &f.Plan.Treatments[i]); err != nil {
 			return nil, err
 		}
 	}
@@ -74,144 +64,124 @@ func FindYears(p *scenarios.Plan, workers int) (*Future, error) {
 }
 
 // treatment follows one treatment.
-func (f *Future) treatment(m *scenarios.Mapper, t *scenarios.Treatment, years []int) error {
+func (f *Future) treatment(m *scenarios.Mapper, t *scenarios.Treatment) error {
+	c := courseOf(f.Plan, t)
+	tracks, place := c.tracks(f.Plan.Years.Horizon)
+	ladders := make([]*scenarios.Ladder, len(f.Plan.Seedlings))
+	for i := range ladders {
+		ladders[i] = m.Ladder(i, rungs(f.Plan.Seedlings[i].Height, ceiling(&f.Plan.Stand), t.Understory))
+	}
+	if err := f.light(m, t, tracks, ladders); err != nil {
+		return err
+	}
+	opening, cleared := t.Opening.(scenarios.Cleared)
+	from := len(f.Spans)
+	for k, s := range f.Plan.StationsOf(t) {
+		inside := !cleared || opening.Crowns.Contains(s.X, s.Y)
+		for i := range f.Plan.Seedlings {
+			plant := &f.Plan.Seedlings[i]
+			one := climber{plant: &plant.Plant, ladder: ladders[i], tracks: tracks, place: place, over: competing(t, plant.Height), sees: i, station: k}
+			f.write(&one, Span{Treatment: t.Name, Station: s.Name, Species: plant.Name, Inside: inside})
+		}
+	}
+	f.reenter(from, t.Name)
+	return nil
+}
+
+// competing is the top of the understory above a seedling, m; 0 where nothing stands above it.
+func competing(t *scenarios.Treatment, height float64) (top float64) {
+	for _, u := range t.Understory {
+		if u.Top > height {
+			top = math.Max(top, u.Top)
+		}
+	}
+	return top
+}
+
+// light works the tracks out.
+func (f *Future) light(m *scenarios.Mapper, t *scenarios.Treatment, tracks [3]*track, ladders []*scenarios.Ladder) error {
 	stations := f.Plan.StationsOf(t)
 	spots := make([][2]float64, len(stations))
 	for k, s := range stations {
 		spots[k] = [2]float64{s.X, s.Y}
 	}
-	var values [3][][][]scenarios.Spot // by pace, worked year, seedling, station
-	for pace := Late; pace <= Early; pace++ {
-		for n, year := range years {
-			if n == 0 && pace > Late {
-				values[pace] = append(values[pace], values[Late][0])
+	for pace, tr := range tracks {
+		for n := len(tr.values); n < len(tr.u); n++ {
+			if n == 0 && pace > 0 {
+				tr.values = append(tr.values, tracks[0].values[0])
 				continue
 			}
-			later, changed, err := ahead(f.Plan, t, float64(year), pace)
+			if n > 0 && tr.states[n] == tr.states[n-1] {
+				tr.values = append(tr.values, tr.values[n-1])
+				continue
+			}
+			then, err := later(f.Plan, t, tr.states[n])
 			if err != nil {
 				return err
 			}
-			if !changed && n > 0 {
-				values[pace] = append(values[pace], values[pace][n-1])
-				continue
-			}
-			x, err := m.Map(later, spots, scenarios.BreakEvens)
+			x, err := m.Climb(then, spots, ladders)
 			if err != nil {
 				return err
 			}
 			f.Runs++
-			values[pace] = append(values[pace], x)
-		}
-	}
-	for k, s := range stations {
-		for i, seedling := range f.Plan.Seedlings {
-			lost := Lost{Treatment: t.Name, Station: s.Name, Species: seedling.Name, Year: [3]float64{math.Inf(1), math.Inf(1), math.Inf(1)}}
-			for year := 0; year <= f.Plan.Years.Horizon; year++ {
-				row := YearRow{Treatment: t.Name, Station: s.Name, Species: seedling.Name, Year: year}
-				for pace := Late; pace <= Early; pace++ {
-					row.set(pace, inYear(years, values[pace], i, k, year))
-					if row.Class[pace] != ledger.Comfortable && math.IsInf(lost.Year[pace], 1) {
-						lost.Year[pace] = float64(year)
-					}
-				}
-				f.Rows = append(f.Rows, row)
-			}
-			f.Lost = append(f.Lost, lost)
+			tr.values = append(tr.values, x)
 		}
 	}
 	return nil
 }
 
-// set places a seedling in a year: below where it loses carbon, comfortable at its threshold.
-func (r *YearRow) set(pace Pace, x at) {
-	r.Light[pace], r.LeafOn[pace] = x.light, x.leafOn
-	switch {
-	case x.net < 0:
-		r.Class[pace] = ledger.Below
-	case x.leafOn >= x.threshold:
-		r.Class[pace] = ledger.Comfortable
-	default:
-		r.Class[pace] = ledger.Marginal
+// write follows a seedling at every pace and keeps its rows.
+func (f *Future) write(c *climber, s Span) {
+	var lives [3]life
+	for pace := Late; pace <= Early; pace++ {
+		l := c.follow(pace, f.Plan.Years.Horizon)
+		lives[pace] = l
+		s.Lost[pace], s.Stock[pace], s.Above[pace], s.Dies[pace] = l.lost, l.stock, l.above, l.dies
+	}
+	for year := 0; year <= f.Plan.Years.Horizon; year++ {
+		row := YearRow{Treatment: s.Treatment, Station: s.Station, Species: s.Species, Year: year}
+		for pace := Late; pace <= Early; pace++ {
+			l := &lives[pace]
+			row.Light[pace], row.LeafOn[pace], row.Net[pace] = l.at[year].light, l.at[year].leafOn, l.at[year].net
+			row.Height[pace], row.Class[pace] = l.height[year], l.class[year]
+			row.StockLight[pace], row.StockClass[pace] = l.fresh[year].light, l.fresh[year].class()
+		}
+		f.Rows = append(f.Rows, row)
+	}
+	f.Spans = append(f.Spans, s)
+}
+
+// reenter finds the years in which the treatment's last stations inside are lost.
+func (f *Future) reenter(from int, treatment string) {
+	n := len(f.Plan.Seedlings)
+	for i := range n {
+		r := Reentry{Treatment: treatment, Species: f.Plan.Seedlings[i].Name, Best: -1}
+		for k := from + i; k < len(f.Spans); k += n {
+			s := &f.Spans[k]
+			if !s.Inside {
+				continue
+			}
+			for pace := range s.Lost {
+				r.Year[pace], r.Stock[pace] = math.Max(r.Year[pace], s.Lost[pace]), math.Max(r.Stock[pace], s.Stock[pace])
+			}
+			if r.Best < 0 || longer(s, &f.Spans[r.Best]) {
+				r.Best = k
+			}
+		}
+		if r.Best < 0 { // no station lies inside
+			r.Best = from + i
+			r.Year, r.Stock = f.Spans[r.Best].Lost, f.Spans[r.Best].Stock
+		}
+		f.Reentries = append(f.Reentries, r)
 	}
 }
 
-// inYear is what a station gives a seedling, linear between worked years.
-func inYear(years []int, values [][][]scenarios.Spot, seedling, station, year int) at {
-	of := func(i int) at {
-		x := values[i][seedling][station]
-		y := at{x.Light, x.LightLeafOn, x.Net, 100}
-		if x.BreakEven.Found {
-			y.threshold = x.BreakEven.Threshold.LeafOn
-		}
-		return y
-	}
-	i := 0
-	for i+1 < len(years) && years[i+1] <= year {
-		i++
-	}
-	a := of(i)
-	if years[i] == year || i+1 == len(years) {
-		return a
-	}
-	b := of(i + 1)
-	s := float64(year-years[i]) / float64(years[i+1]-years[i])
-	mix := func(x, y float64) float64 { return x + s*(y-x) }
-	return at{mix(a.light, b.light), mix(a.leafOn, b.leafOn), mix(a.net, b.net), mix(a.threshold, b.threshold)}
-}
-
-// Years until leaf area is back after a light and a heavy thinning, and the share cut that is heavy (Chan et al. 2006: light thinnings
-// after 8; Beaudet et al. 2004 and Domke 2006: 13 to 20, its ends with the paces).
-const (
-	lightRegrowth, heavyRegrowth = 8.0, 16.0
-	heavy                        = 0.5
-)
-
-var regrowthPace = [3]float64{Late: 1.25, Likely: 1, Early: 0.8}
-
-// ahead is a treatment some years after the cut; changed tells whether anything still moves.
-func ahead(p *scenarios.Plan, t *scenarios.Treatment, years float64, pace Pace) (later *scenarios.Treatment, changed bool, err error) {
-	out := *t
-	full, now := scenarios.LeafArea(p.Stand.Layers), scenarios.LeafArea(t.Matrix)
-	if now > 0 && now < full {
-		span := p.Years.Regrowth[Early-pace] // quick leaves go with early
-		if span == 0 {
-			span = regrowthPace[pace] * (lightRegrowth + (heavyRegrowth-lightRegrowth)*math.Min(1, (1-now/full)/heavy))
-		}
-		back := math.Min(1, years/span)
-		out.Matrix = append([]scenarios.Layer(nil), t.Matrix...)
-		closed, opened := clumping(p.Stand.Layers), clumping(t.Matrix)
-		for i := range out.Matrix {
-			l := &out.Matrix[i]
-			l.LAI *= 1 + back*(full/now-1)
-			gaps := 1 + back*(closed/opened-1) // between crowns, which fill them again
-			l.Clumping = math.Min(1, l.Clumping*gaps)
-			l.WAI /= gaps // wood stands at random
-		}
-		changed = changed || years <= span+2
-	}
-	c, ok := t.Opening.(scenarios.Cleared)
-	if !ok {
-		return &out, changed, nil
-	}
-	k := canopy.Closing{Speed: p.Years.Closing[pace], Stop: canopy.ClosingStop(c.Stems.Area())}
-	crowns, err := canopy.Inset(c.Crowns, k.Advance(years))
-	if err != nil { // closed over: a speck is left
-		if crowns, err = canopy.NewCircle(speck); err != nil {
-			return nil, false, err
+// longer compares by the likely pace, then by the early and the late one.
+func longer(a, b *Span) bool {
+	for _, pace := range []Pace{Likely, Early, Late} {
+		if a.Lost[pace] != b.Lost[pace] {
+			return a.Lost[pace] > b.Lost[pace]
 		}
 	}
-	out.Opening = scenarios.Cleared{Stems: c.Stems, Crowns: crowns, Inside: c.Inside, File: c.File}
-	return &out, changed || years <= k.Stop+4, nil
-}
-
-// speck is the diameter of an opening that is none, m.
-const speck = 0.02
-
-// clumping of layers, by leaf area.
-func clumping(layers []scenarios.Layer) float64 {
-	sum := 0.0
-	for _, l := range layers {
-		sum += l.Clumping * l.LAI
-	}
-	return sum / scenarios.LeafArea(layers)
+	return false
 }

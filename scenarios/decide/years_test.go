@@ -8,37 +8,47 @@ import (
 	"shadeledger/scenarios/ledger"
 )
 
-// Light falls with the years and with the pace, classes follow, and what is lost is lost when the class falls.
-func TestYearsOnlyDarken(t *testing.T) {
+// Classes and lost years go together, seedlings never shrink, a faster pace is never better, and stock of the plan's size sees light that only falls.
+func TestYearsHangTogether(t *testing.T) {
 	p := sized(t)
 	f, err := FindYears(p, 2)
 	if err != nil {
 		t.Fatal(err)
 	}
 	n := p.Years.Horizon + 1
-	if len(f.Rows) != n*len(f.Lost) {
-		t.Fatalf("%d rows, %d spots", len(f.Rows), len(f.Lost))
+	if len(f.Rows) != n*len(f.Spans) {
+		t.Fatalf("%d rows, %d spots", len(f.Rows), len(f.Spans))
 	}
-	for i, l := range f.Lost {
-		rows := f.Rows[i*n : (i+1)*n]
-		for y, r := range rows {
+	for i, l := range f.Spans {
+		for y, r := range f.Rows[i*n : (i+1)*n] {
 			if r.Treatment != l.Treatment || r.Station != l.Station || r.Species != l.Species || r.Year != y {
 				t.Fatalf("row %+v beside %+v", r, l)
 			}
-			if r.Light[Early] > r.Light[Likely]+1e-9 || r.Light[Likely] > r.Light[Late]+1e-9 {
-				t.Errorf("%s, %s, year %d: %v by pace", r.Treatment, r.Station, y, r.Light)
-			}
 			for pace := Late; pace <= Early; pace++ {
-				if y > 0 && r.Light[pace] > rows[y-1].Light[pace]+0.05 {
-					t.Errorf("%s, %s, year %d, pace %d: %.2f %% after %.2f", r.Treatment, r.Station, y, pace, r.Light[pace], rows[y-1].Light[pace])
+				if y > 0 && r.StockLight[pace] > f.Rows[i*n+y-1].StockLight[pace]+0.05 {
+					t.Errorf("%s, %s, year %d, pace %d: %.2f %% after %.2f", r.Treatment, r.Station, y, pace, r.StockLight[pace], f.Rows[i*n+y-1].StockLight[pace])
 				}
-				if before := float64(y) < l.Year[pace]; before != (r.Class[pace] == ledger.Comfortable) && before {
-					t.Errorf("%s, %s, %s, year %d, pace %d: %s, lost in %g", r.Treatment, r.Station, r.Species, y, pace, r.Class[pace], l.Year[pace])
+				if r.Class[pace] == ledger.Comfortable && float64(y) >= l.Lost[pace] || float64(y) == l.Lost[pace]-1 && r.Class[pace] != ledger.Comfortable {
+					t.Errorf("%s, %s, %s, year %d, pace %d: %s, lost in %g", r.Treatment, r.Station, r.Species, y, pace, r.Class[pace], l.Lost[pace])
 				}
+				if y > 0 && r.Height[pace] < f.Rows[i*n+y-1].Height[pace] {
+					t.Errorf("%s, %s, %s, year %d, pace %d shrinks to %g m", r.Treatment, r.Station, r.Species, y, pace, r.Height[pace])
+				}
+				if y > 0 && r.Height[pace] > f.Rows[i*n+y-1].Height[pace] && f.Rows[i*n+y-1].Net[pace] <= 0 {
+					t.Errorf("%s, %s, %s, year %d, pace %d grows after a net of %g g C", r.Treatment, r.Station, r.Species, y, pace, f.Rows[i*n+y-1].Net[pace])
+				}
+			}
+			if r.StockLight[Early] > r.StockLight[Likely]+1e-9 || r.StockLight[Likely] > r.StockLight[Late]+1e-9 {
+				t.Errorf("%s, %s, year %d: %v %% by pace", r.Treatment, r.Station, y, r.StockLight)
+			}
+			if r.Height[Early] > r.Height[Likely]+1e-6 || r.Height[Likely] > r.Height[Late]+1e-6 {
+				t.Errorf("%s, %s, %s, year %d: %v m by pace", r.Treatment, r.Station, r.Species, y, r.Height)
 			}
 		}
-		if l.Year[Early] > l.Year[Likely] || l.Year[Likely] > l.Year[Late] {
-			t.Errorf("%+v: lost later at a faster pace", l)
+		for _, years := range [][3]float64{l.Lost, l.Stock} {
+			if years[Early] > years[Likely] || years[Likely] > years[Late] {
+				t.Errorf("%+v: lost later at a faster pace", l)
+			}
 		}
 	}
 }
@@ -58,7 +68,7 @@ func TestThinnedStandsCloseAgain(t *testing.T) {
 	light := func(treatment, year int, pace Pace) float64 {
 		for _, r := range f.Rows {
 			if r.Treatment == p.Treatments[treatment].Name && r.Year == year {
-				return r.Light[pace]
+				return r.StockLight[pace]
 			}
 		}
 		t.Fatal("no such row")
@@ -90,13 +100,13 @@ func TestYearsOfTheUncutAndTheClosed(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	uncut := f.Rows[0].Light[Likely]
+	uncut := f.Rows[0].StockLight[Likely]
 	for _, r := range f.Rows {
 		switch {
-		case r.Treatment == p.Treatments[0].Name && r.Light[Likely] != uncut:
-			t.Errorf("the uncut stand has %.3f %% in year %d, %.3f in the first", r.Light[Likely], r.Year, uncut)
-		case r.Treatment == p.Treatments[1].Name && r.Year == 20 && r.Station == "centre" && math.Abs(r.Light[Likely]-uncut) > 0.2:
-			t.Errorf("closed over: %.2f %% at the centre, %.2f under the stand", r.Light[Likely], uncut)
+		case r.Treatment == p.Treatments[0].Name && r.StockLight[Likely] != uncut:
+			t.Errorf("the uncut stand has %.3f %% in year %d, %.3f in the first", r.StockLight[Likely], r.Year, uncut)
+		case r.Treatment == p.Treatments[1].Name && r.Year == 20 && r.Station == "centre" && math.Abs(r.StockLight[Likely]-uncut) > 0.2:
+			t.Errorf("closed over: %.2f %% at the centre, %.2f under the stand", r.StockLight[Likely], uncut)
 		}
 	}
 }

@@ -3,7 +3,7 @@ package report
 import (
 	"fmt"
 	"math"
-	"strings"
+	"slices"
 
 	"github.com/jedib0t/go-pretty/v6/table"
 
@@ -12,20 +12,31 @@ import (
 	"shadeledger/scenarios/ledger"
 )
 
-// yearLine is a year with when the seedling loses the spot.
+// yearLine is a year with what becomes of the seedling at its spot.
 type yearLine struct {
 	decide.YearRow
-	lost *decide.Lost
+	span *decide.Span
+	due  *decide.Reentry
 }
 
-// lostYear leaves a spot that is never lost up to the horizon empty.
-func lostYear(pace decide.Pace) func(*yearLine) float64 {
-	return func(r *yearLine) float64 {
-		if y := r.lost.Year[pace]; !math.IsInf(y, 1) {
-			return y
-		}
+// within leaves a year beyond the horizon empty.
+func within(y float64) float64 {
+	if math.IsInf(y, 1) {
 		return math.NaN()
 	}
+	return y
+}
+
+func lostYear(pace decide.Pace) func(*yearLine) float64 {
+	return func(r *yearLine) float64 { return within(r.span.Lost[pace]) }
+}
+
+func stockYear(pace decide.Pace) func(*yearLine) float64 {
+	return func(r *yearLine) float64 { return within(r.span.Stock[pace]) }
+}
+
+func dueYear(pace decide.Pace) func(*yearLine) float64 {
+	return func(r *yearLine) float64 { return within(r.due.Year[pace]) }
 }
 
 var yearColumns = []column[yearLine]{
@@ -34,53 +45,113 @@ var yearColumns = []column[yearLine]{
 	words("species", func(r *yearLine) string { return r.Species }),
 	figure("year", func(r *yearLine) float64 { return float64(r.Year) }),
 	figure("light_pct", func(r *yearLine) float64 { return r.Light[decide.Likely] }),
-	figure("light_pct_low", func(r *yearLine) float64 { return r.Light[decide.Early] }),
-	figure("light_pct_high", func(r *yearLine) float64 { return r.Light[decide.Late] }),
+	figure("light_pct_low", func(r *yearLine) float64 { return slices.Min(r.Light[:]) }),
+	figure("light_pct_high", func(r *yearLine) float64 { return slices.Max(r.Light[:]) }),
 	words("class", func(r *yearLine) string { return r.Class[decide.Likely].String() }),
-	words("class_low", func(r *yearLine) string { return r.Class[decide.Early].String() }),
-	words("class_high", func(r *yearLine) string { return r.Class[decide.Late].String() }),
+	words("class_low", func(r *yearLine) string { return slices.Min(r.Class[:]).String() }),
+	words("class_high", func(r *yearLine) string { return slices.Max(r.Class[:]).String() }),
+	figure("height_m", func(r *yearLine) float64 { return r.Height[decide.Likely] }),
+	figure("height_m_low", func(r *yearLine) float64 { return slices.Min(r.Height[:]) }),
+	figure("height_m_high", func(r *yearLine) float64 { return slices.Max(r.Height[:]) }),
+	figure("net_gC", func(r *yearLine) float64 { return r.Net[decide.Likely] }),
+	figure("stock_light_pct", func(r *yearLine) float64 { return r.StockLight[decide.Likely] }),
+	words("stock_class", func(r *yearLine) string { return r.StockClass[decide.Likely].String() }),
 	figure("lost_early", lostYear(decide.Early)),
 	figure("lost_likely", lostYear(decide.Likely)),
 	figure("lost_late", lostYear(decide.Late)),
+	figure("stock_lost_early", stockYear(decide.Early)),
+	figure("stock_lost_likely", stockYear(decide.Likely)),
+	figure("stock_lost_late", stockYear(decide.Late)),
+	figure("above_year", func(r *yearLine) float64 { return within(r.span.Above[decide.Likely]) }),
+	figure("above_year_low", func(r *yearLine) float64 { return within(slices.Min(r.span.Above[:])) }),
+	figure("above_year_high", func(r *yearLine) float64 { return within(slices.Max(r.span.Above[:])) }),
+	figure("dies_early", func(r *yearLine) float64 { return within(r.span.Dies[decide.Early]) }),
+	figure("dies_likely", func(r *yearLine) float64 { return within(r.span.Dies[decide.Likely]) }),
+	figure("dies_late", func(r *yearLine) float64 { return within(r.span.Dies[decide.Late]) }),
+	figure("reentry_early", dueYear(decide.Early)),
+	figure("reentry_likely", dueYear(decide.Likely)),
+	figure("reentry_late", dueYear(decide.Late)),
 }
 
-// Years writes how long every station keeps every seedling comfortable.
+// yearLines joins every year with its spot.
+func yearLines(f *decide.Future) []yearLine {
+	years, seedlings := f.Plan.Years.Horizon+1, len(f.Plan.Seedlings)
+	lines := make([]yearLine, len(f.Rows))
+	due := map[[2]string]*decide.Reentry{}
+	for i := range f.Reentries {
+		due[[2]string{f.Reentries[i].Treatment, f.Reentries[i].Species}] = &f.Reentries[i]
+	}
+	for i, r := range f.Rows {
+		lines[i] = yearLine{r, &f.Spans[i/years], due[[2]string{r.Treatment, f.Plan.Seedlings[i/years%seedlings].Name}]}
+	}
+	return lines
+}
+
+// Years writes how long every station keeps every seedling comfortable, and how tall it is by then.
 func Years(o Output, plan *scenarios.Plan, f *decide.Future) error {
 	n := notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
 	if o.Format != Table {
-		perLost := plan.Years.Horizon + 1
-		lines := make([]yearLine, len(f.Rows))
-		for i, r := range f.Rows {
-			lines[i] = yearLine{r, &f.Lost[i/perLost]}
-		}
-		return data(o, n, yearColumns, lines)
+		return data(o, n, yearColumns, yearLines(f))
 	}
 	p := &printer{w: o.Out}
 	c := plan.Years.Closing
 	p.f("%s\n%s\n", Name(plan), seasonLine(plan))
-	hang(p, "", fmt.Sprintf("Years after the cut for which a seedling stays comfortable, early to late, to year %d. Border crowns grow in at %.2f m a year and side (%.2f to %.2f), slowing, and stop after 11 to 16 years; thinned canopies have their leaves back %s.",
+	hang(p, "", fmt.Sprintf("What the years do, to year %d, at an early, a likely and a late pace. Border crowns grow in at %.2f m a year and side (%.2f to %.2f), slowing, and stop after 11 to 16 years; thinned canopies have their leaves back %s. Seedlings grow from their own yearly net.",
 		plan.Years.Horizon, c[1], c[0], c[2], regrowth(plan)))
-	t := newTable("treatment", "seedling", "at the start", "centre", "longest", "years there", "light now", "year 10", fmt.Sprintf("year %d", plan.Years.Horizon))
+	t := newTable("treatment", "seedling", "kept", "station", "lost", "new stock", lengthUnit(o.Units), "above")
 	last := ""
-	for _, name := range treatmentNames(f) {
-		for _, s := range plan.Seedlings {
-			shown := name
-			if shown == last {
-				shown = ""
-			}
-			last = name
-			t.AppendRow(append(table.Row{shown, s.Name}, yearCells(plan, f, name, s.Name)...))
+	for i := range f.Reentries {
+		r := &f.Reentries[i]
+		shown := r.Treatment
+		if shown == last {
+			shown = ""
 		}
+		last = r.Treatment
+		t.AppendRow(append(table.Row{shown, r.Species}, yearCells(o, f, r)...))
 	}
 	if p.err == nil {
-		p.err = render(o.Out, t, 7, 8, 9)
+		p.err = render(o.Out, t, 7, 8)
 	}
-	hang(p, "", "at the start: stations inside that are comfortable right after the cut; longest: the station that keeps it longest; light: over the season at that station, likely pace. + is beyond the last year. Seedlings keep their size; competing plants are not followed.")
+	hang(p, "", fmt.Sprintf("kept: stations inside that are comfortable right after the cut and in the last year, likely pace, of all inside; station: that which keeps the seedling longest. lost: early-likely-late, the year in which the last station inside stops being comfortable for the growing seedling; come back by then. new stock: the same for stock of the plan's size planted in that year. %d+ is beyond the last year followed, dies: after %d years of loss. %s: height at the station in the likely year lost or the last one, at most the crown base; above: the year it stands above the understory, - where none is taller. Plants that come up later are not followed.",
+		plan.Years.Horizon, decide.Fading, lengthUnit(o.Units)))
+	lightByYear(p, o, f)
 	p.f("\n")
 	if p.err != nil {
 		return p.err
 	}
 	return n.write(o.Out)
+}
+
+// lightByYear writes the light of the first seedling's best station.
+func lightByYear(p *printer, o Output, f *decide.Future) {
+	var years []int
+	header := []any{"light %"}
+	right := []int{}
+	for y := 0; y <= f.Plan.Years.Horizon; y += max(1, f.Plan.Years.Horizon/6) {
+		years, header, right = append(years, y), append(header, fmt.Sprintf("year %d", y)), append(right, len(years)+2)
+	}
+	t := newTable(header...)
+	n := len(f.Plan.Seedlings)
+	for i := 0; i < len(f.Reentries); i += n {
+		r := &f.Reentries[i]
+		rows := rowsOf(f, r.Best)
+		row := table.Row{r.Treatment}
+		for _, y := range years {
+			row = append(row, whole(rows[y].Light[decide.Likely]))
+		}
+		t.AppendRow(row)
+	}
+	p.f("\n")
+	hang(p, "", fmt.Sprintf("Light over the season on %s at its best station, at its height in that year, likely pace:", f.Plan.Seedlings[0].Name))
+	if p.err == nil {
+		p.err = render(o.Out, t, right...)
+	}
+}
+
+// rowsOf are the years of a span.
+func rowsOf(f *decide.Future, span int) []decide.YearRow {
+	n := f.Plan.Years.Horizon + 1
+	return f.Rows[span*n : (span+1)*n]
 }
 
 func regrowth(p *scenarios.Plan) string {
@@ -90,60 +161,48 @@ func regrowth(p *scenarios.Plan) string {
 	return "after 8 years where the cut was light, 16 (13 to 20) where it was half or more"
 }
 
-func treatmentNames(f *decide.Future) (out []string) {
-	for _, l := range f.Lost {
-		if len(out) == 0 || out[len(out)-1] != l.Treatment {
-			out = append(out, l.Treatment)
-		}
-	}
-	return out
-}
-
 // yearCells are one seedling's figures in one treatment.
-func yearCells(plan *scenarios.Plan, f *decide.Future, treatment, seedling string) table.Row {
-	var start, centre, longest string
-	var best *decide.Lost
-	var lights [3]string
-	perLost := plan.Years.Horizon + 1
-	good, inside := 0, 0
-	for i := range f.Lost {
-		l := &f.Lost[i]
-		if l.Treatment != treatment || l.Species != seedling || strings.HasSuffix(l.Station, "outside") {
+func yearCells(o Output, f *decide.Future, r *decide.Reentry) table.Row {
+	good, kept, inside := 0, 0, 0
+	for i := range f.Spans {
+		s := &f.Spans[i]
+		if s.Treatment != r.Treatment || s.Species != r.Species || !s.Inside {
 			continue
 		}
 		inside++
-		rows := f.Rows[i*perLost : (i+1)*perLost]
-		if rows[0].Class[decide.Likely] == ledger.Comfortable {
+		if rowsOf(f, i)[0].Class[decide.Likely] == ledger.Comfortable {
 			good++
 		}
-		if l.Station == "centre" || l.Station == scenarios.UnderCanopy {
-			centre = kept(l, plan.Years.Horizon)
-		}
-		if best == nil || longer(l, best) {
-			best, longest = l, l.Station
-			for k, year := range []int{0, min(10, plan.Years.Horizon), plan.Years.Horizon} {
-				lights[k] = whole(rows[year].Light[decide.Likely])
-			}
+		if math.IsInf(s.Lost[decide.Likely], 1) {
+			kept++
 		}
 	}
-	start = fmt.Sprintf("%d of %d", good, inside)
-	return table.Row{start, centre, longest, kept(best, plan.Years.Horizon), lights[0], lights[1], lights[2]}
-}
-
-// longer compares by the likely pace, then by the early and the late one.
-func longer(a, b *decide.Lost) bool {
-	for _, pace := range []decide.Pace{decide.Likely, decide.Early, decide.Late} {
-		if a.Year[pace] != b.Year[pace] {
-			return a.Year[pace] > b.Year[pace]
-		}
+	best := &f.Spans[r.Best]
+	rows := rowsOf(f, r.Best)
+	then := rows[int(math.Min(r.Year[decide.Likely], float64(f.Plan.Years.Horizon)))]
+	above := "-"
+	switch y := best.Above[decide.Likely]; {
+	case math.IsInf(y, 1):
+		above = "never"
+	case y > 0:
+		above = fmt.Sprintf("%.0f", y)
 	}
-	return false
+	return table.Row{fmt.Sprintf("%d-%d/%d", good, kept, inside), best.Station, lost(r, best, f.Plan.Years.Horizon), yearRange(r.Stock, f.Plan.Years.Horizon),
+		text0(lengthValue(then.Height[decide.Likely], o.Units), 1), above}
 }
 
-// kept is the range of years, early to late.
-func kept(l *decide.Lost, horizon int) string {
-	if l == nil {
-		return "-"
+// lost is when the last station is lost; of a seedling that is never comfortable, whether it dies.
+func lost(r *decide.Reentry, best *decide.Span, horizon int) string {
+	if y := best.Dies[decide.Likely]; slices.Max(r.Year[:]) == 0 && !math.IsInf(y, 1) {
+		return fmt.Sprintf("dies %.0f", y)
+	}
+	return yearRange(r.Year, horizon)
+}
+
+// yearRange is early-likely-late.
+func yearRange(year [3]float64, horizon int) string {
+	if slices.Max(year[:]) == 0 {
+		return "never"
 	}
 	text := func(y float64) string {
 		if math.IsInf(y, 1) {
@@ -151,12 +210,9 @@ func kept(l *decide.Lost, horizon int) string {
 		}
 		return fmt.Sprintf("%.0f", y)
 	}
-	a, b := text(l.Year[decide.Early]), text(l.Year[decide.Late])
-	switch {
-	case l.Year[decide.Late] == 0:
-		return "none"
-	case a == b:
-		return a
+	early, likely, late := text(year[decide.Early]), text(year[decide.Likely]), text(year[decide.Late])
+	if early == late && early == likely {
+		return likely
 	}
-	return a + "-" + b
+	return early + "-" + likely + "-" + late
 }
