@@ -32,7 +32,8 @@ func newThin(io streams) *cobra.Command {
 		Use:   "thin [PLAN]",
 		Short: "Residual basal area against light and the stand's own carbon gain, both ways",
 		Long: `Residual basal area against light, sky view, each seedling's balance and class, and what the stand's own leaves gain:
-what the stand gives up and what the seedlings get in one table. Trees go as in the plan's first thinned treatment,
+what the stand gives up and what the seedlings get in one table, and for how many years each seedling stays comfortable
+while the canopy closes again (see years). Trees go as in the plan's first thinned treatment,
 else smallest first; --order takes another order.
 
 --light asks how much basal area may stay for a percent of full light, --comfortable for a seedling of the plan to be

@@ -24,6 +24,9 @@ const (
 	heavy                        = 0.5
 )
 
+// same is the share of leaf area that may be missing from a stand that is not thinned: rounding.
+const same = 1e-9
+
 var regrowthPace = [3]float64{Late: 1.25, Likely: 1, Early: 0.8}
 
 // state is how far a treatment is back: how far border crowns have come in, m, and the share of the leaf area lost that is there again.
@@ -38,7 +41,7 @@ type course struct {
 
 func courseOf(p *scenarios.Plan, t *scenarios.Treatment) (c course) {
 	full, now := leafArea(p.Stand.Layers), leafArea(t.Matrix)
-	c.thinned = now > 0 && now < full
+	c.thinned = now > 0 && now < full*(1-same)
 	o, opens := t.Opening.(scenarios.Cleared)
 	c.opens = opens
 	for pace := Late; pace <= Early; pace++ {
@@ -67,7 +70,7 @@ func (c *course) at(pace Pace, years float64) (s state) {
 // later is a treatment in a state: crowns come in, leaf area comes back with the clumping of the uncut stand, wood does not.
 func later(p *scenarios.Plan, t *scenarios.Treatment, s state) (*scenarios.Treatment, error) {
 	out := *t
-	if full, now := leafArea(p.Stand.Layers), leafArea(t.Matrix); now > 0 && now < full {
+	if full, now := leafArea(p.Stand.Layers), leafArea(t.Matrix); now > 0 && now < full*(1-same) {
 		out.Matrix = append([]scenarios.Layer(nil), t.Matrix...)
 		closed, opened := clumping(p.Stand.Layers), clumping(t.Matrix)
 		for i := range out.Matrix {

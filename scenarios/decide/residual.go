@@ -2,6 +2,7 @@ package decide
 
 import (
 	"fmt"
+	"math"
 
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
@@ -13,6 +14,8 @@ type Target interface {
 	met(rows []scenarios.BalanceRow) bool
 	depth() scenarios.Depth
 	String() string
+	// lasts is for how many years a thinned stand meets the target, by pace; +Inf is beyond the horizon.
+	lasts(f *Future) [3]float64
 }
 
 // LightTarget is a percent of full light over the season.
@@ -32,6 +35,36 @@ func (t ComfortTarget) met(rows []scenarios.BalanceRow) bool {
 	return false
 }
 
+// lasts counts the years from the cut in which the light stays, at the height of the plan's first seedling.
+func (t LightTarget) lasts(f *Future) (years [3]float64) {
+	for pace := range years {
+		first := f.Rows[0].StockLight[pace] // light of maps; the answer itself is at the target
+		for _, r := range f.Rows[:f.Plan.Years.Horizon+1] {
+			if r.StockLight[pace] < math.Min(t.Percent, first) {
+				break
+			}
+			years[pace]++
+		}
+		if years[pace] > float64(f.Plan.Years.Horizon) {
+			years[pace] = math.Inf(1)
+		}
+	}
+	return years
+}
+
+// lasts is when the seedling is lost as it grows.
+func (t ComfortTarget) lasts(f *Future) [3]float64 {
+	for _, s := range f.Spans {
+		if s.Species == t.Seedling {
+			for pace := range s.Lost { // likewise
+				s.Lost[pace] = math.Max(1, s.Lost[pace])
+			}
+			return s.Lost
+		}
+	}
+	return [3]float64{}
+}
+
 func (LightTarget) depth() scenarios.Depth   { return scenarios.Ledgers }
 func (ComfortTarget) depth() scenarios.Depth { return scenarios.BreakEvens }
 
@@ -41,12 +74,13 @@ func (t ComfortTarget) String() string { return t.Seedling + " comfortable" }
 // Residual is the answer: the most basal area that meets a target.
 type Residual struct {
 	Target  Target
-	Found   bool    // false: not even with all trees gone that may go
-	Uncut   bool    // the uncut stand meets it
-	Leave   float64 // m2/ha
-	Cut     float64 // percent of the basal area
-	Light   float64 // percent over the season there, computed forward
-	Next    float64 // the least basal area tried that misses the target, m2/ha
+	Found   bool       // false: not even with all trees gone that may go
+	Uncut   bool       // the uncut stand meets it
+	Leave   float64    // m2/ha
+	Cut     float64    // percent of the basal area
+	Light   float64    // percent over the season there, computed forward
+	Next    float64    // the least basal area tried that misses the target, m2/ha
+	Above   [3]float64 // years for which the target is met from there, by pace; +Inf is beyond the horizon
 	Runs    int
 	Rows    []scenarios.BalanceRow // at Leave, by seedling
 	Results *scenarios.Results
@@ -94,8 +128,19 @@ func FindResidual(p *scenarios.Plan, q ThinQuery, t Target) (*Residual, error) {
 			return out, err
 		}
 	}
-	_, err = try(asked, scenarios.BreakEvens) // the answer computed forward, with its classes
-	return out, err
+	if _, err = try(asked, scenarios.BreakEvens); err != nil { // the answer computed forward, with its classes
+		return out, err
+	}
+	plan, _, err := s.plan([]float64{asked})
+	if err != nil {
+		return out, err
+	}
+	future, err := FindYears(plan, q.Workers)
+	if err != nil {
+		return out, err
+	}
+	out.Above = t.lasts(future)
+	return out, nil
 }
 
 // halve looks for the most basal area that is enough between none and one that is not; it gives the least one tried that is not.

@@ -42,6 +42,7 @@ type ThinRow struct {
 	Species            string  // of the seedling
 	Net                float64 // of the seedling, g C in a mean year
 	Class              ledger.Class
+	Above              [3]float64 // years for which it stays comfortable as it grows, by pace; 0 where it is not, +Inf beyond the horizon
 }
 
 // ThinTable is a row of thinnings.
@@ -69,6 +70,10 @@ func Thin(p *scenarios.Plan, q ThinQuery, leave []float64) (*ThinTable, error) {
 		return nil, err
 	}
 	r.Correction = s.correction
+	future, err := FindYears(plan, q.Workers)
+	if err != nil {
+		return nil, err
+	}
 	out := &ThinTable{Results: r, Trees: trees}
 	uncut := trees[0].Sums().BasalArea
 	n := len(plan.Seedlings)
@@ -79,9 +84,13 @@ func Thin(p *scenarios.Plan, q ThinQuery, leave []float64) (*ThinTable, error) {
 		for _, l := range plan.Treatments[i].Matrix {
 			lai += l.LAI
 		}
-		for _, b := range r.Balance[i*n : (i+1)*n] {
-			out.Rows = append(out.Rows, ThinRow{Residual: ba, Cut: 100 * (1 - ba/uncut), LAI: lai, Light: b.Light, LightLeafOn: b.LightLeafOn,
-				SkyView: b.SkyView, StandGain: gross - respired, Species: b.Species, Net: b.Lines.Net(), Class: b.Class})
+		for k, b := range r.Balance[i*n : (i+1)*n] {
+			row := ThinRow{Residual: ba, Cut: 100 * (1 - ba/uncut), LAI: lai, Light: b.Light, LightLeafOn: b.LightLeafOn,
+				SkyView: b.SkyView, StandGain: gross - respired, Species: b.Species, Net: b.Lines.Net(), Class: b.Class}
+			if b.Class == ledger.Comfortable {
+				row.Above = future.Spans[i*n+k].Lost
+			}
+			out.Rows = append(out.Rows, row)
 		}
 	}
 	return out, nil

@@ -9,6 +9,7 @@ import (
 
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/decide"
+	"shadeledger/scenarios/ledger"
 )
 
 var thinColumns = []column[decide.ThinRow]{
@@ -22,7 +23,9 @@ var thinColumns = []column[decide.ThinRow]{
 	words("species", func(r *decide.ThinRow) string { return r.Species }),
 	figure("net_gC", func(r *decide.ThinRow) float64 { return r.Net }),
 	words("class", func(r *decide.ThinRow) string { return r.Class.String() }),
-	figure("years_above", func(*decide.ThinRow) float64 { return math.NaN() }), // no yearly run yet
+	figure("years_above", func(r *decide.ThinRow) float64 { return within(r.Above[decide.Likely]) }),
+	figure("years_above_low", func(r *decide.ThinRow) float64 { return within(r.Above[decide.Early]) }),
+	figure("years_above_high", func(r *decide.ThinRow) float64 { return within(r.Above[decide.Late]) }),
 }
 
 // notesOfThin leaves out what is said of single treatments.
@@ -52,7 +55,7 @@ func Thin(o Output, plan *scenarios.Plan, t *decide.ThinTable, q decide.ThinQuer
 		r := t.Rows[i]
 		row := table.Row{text0(basalValue(r.Residual, o.Units), 0), whole(r.Cut), text0(r.LAI, 1), whole(r.Light), whole(r.LightLeafOn), whole(r.SkyView), text0(r.StandGain, 0)}
 		for _, x := range t.Rows[i : i+seedlings] {
-			row = append(row, sig(x.Net, 2)+" "+x.Class.String()[:1])
+			row = append(row, sig(x.Net, 2)+" "+x.Class.String()[:1]+keeps(&x, plan.Years.Horizon))
 		}
 		w.AppendRow(row)
 	}
@@ -63,12 +66,32 @@ func Thin(o Output, plan *scenarios.Plan, t *decide.ThinTable, q decide.ThinQuer
 		}
 		p.err = render(o.Out, w, right...)
 	}
-	hang(p, "", "stand gain: what the trees' leaves assimilate less their respiration, g C per m2 of ground in a mean year; under each seedling its own net, g C per plant and year, and its class: b below, m marginal, c comfortable. Years above the threshold: with a later version.")
+	hang(p, "", "stand gain: what the trees' leaves assimilate less their respiration, g C per m2 of ground in a mean year; under each seedling its own net, g C per plant and year, and its class: b below, m marginal, c comfortable, with the years for which it stays so as it grows and the canopy closes, likely pace.")
 	p.f("\n")
 	if p.err != nil {
 		return p.err
 	}
 	return n.write(o.Out)
+}
+
+// lasting says for how long an answer holds.
+func lasting(years [3]float64, horizon int) string {
+	if years[decide.Late] <= 1 {
+		return "Crowns close again: the target is met in the first year and no longer. Leave less to keep it."
+	}
+	return fmt.Sprintf("Crowns close again: the target is met for %s years (early-likely-late). Leave less to keep it longer.", yearRange(years, horizon))
+}
+
+// keeps is the number of years a comfortable seedling stays so.
+func keeps(r *decide.ThinRow, horizon int) string {
+	switch y := r.Above[decide.Likely]; {
+	case r.Class != ledger.Comfortable:
+		return ""
+	case math.IsInf(y, 1):
+		return fmt.Sprintf(" %d+", horizon)
+	default:
+		return fmt.Sprintf(" %.0f", y)
+	}
 }
 
 // how says in which order trees go and what is left below them.
@@ -129,7 +152,7 @@ func Residual(o Output, plan *scenarios.Plan, a *decide.Residual, q decide.ThinQ
 		for _, r := range a.Rows {
 			hang(p, "  ", fmt.Sprintf("%s: %s, net %s g C a year", r.Species, r.Class, sig(r.Lines.Net(), 2)))
 		}
-		hang(p, "", "Light falls again as crowns close: no number of years yet.")
+		hang(p, "", lasting(a.Above, plan.Years.Horizon))
 	}
 	p.f("\n")
 	if p.err != nil {
@@ -172,6 +195,9 @@ var residualColumns = []column[residualRow]{
 	figure("residual_ba_m2_ha", found(func(a *decide.Residual) float64 { return a.Leave })),
 	figure("cut_pct", found(func(a *decide.Residual) float64 { return a.Cut })),
 	figure("light_pct", found(func(a *decide.Residual) float64 { return a.Light })),
+	figure("years_above", found(func(a *decide.Residual) float64 { return within(a.Above[decide.Likely]) })),
+	figure("years_above_low", found(func(a *decide.Residual) float64 { return within(a.Above[decide.Early]) })),
+	figure("years_above_high", found(func(a *decide.Residual) float64 { return within(a.Above[decide.Late]) })),
 }
 
 // layerRow is a slab of a treatment's trees for a period.
