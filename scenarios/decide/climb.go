@@ -12,7 +12,7 @@ import (
 const Fading = 3
 
 // stride is the greatest ratio between heights at which light and ledger are worked out; shrubs add their own.
-const stride = 2.7
+const stride = 2.1
 
 // ceiling is the height at which seedlings are followed no further, m: the crown base of the stand, where they enter the canopy; no less than a quarter of
 // its height.
@@ -77,7 +77,7 @@ type climber struct {
 	station int
 }
 
-// on is what the station gives at some wood in a state of a track: between rungs light and threshold go with the logarithm of height, so does net over leaf mass.
+// on is what the station gives at some wood in a state of a track: between rungs light, threshold and net over leaf mass go with height.
 func (c *climber) on(values [][][]scenarios.Spot, wood float64) at {
 	rungs := values[c.sees]
 	w := c.ladder.Wood
@@ -90,7 +90,8 @@ func (c *climber) on(values [][][]scenarios.Spot, wood float64) at {
 	}
 	a, b := of(&rungs[i][c.station]), of(&rungs[i+1][c.station])
 	a.net, b.net = a.net/ledger.LeafAt(w[i]), b.net/ledger.LeafAt(w[i+1])
-	x := mix(a, b, math.Log(wood/w[i])/math.Log(w[i+1]/w[i]))
+	h := c.ladder.Heights
+	x := mix(a, b, (c.plant.HeightAt(wood)-h[i])/(h[i+1]-h[i]))
 	x.net *= ledger.LeafAt(wood)
 	return x
 }

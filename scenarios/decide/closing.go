@@ -5,6 +5,7 @@ import (
 
 	"shadeledger/canopy"
 	"shadeledger/scenarios"
+	"shadeledger/scenarios/ledger"
 )
 
 // Pace of closing: early goes with fast crowns and quick leaves.
@@ -40,8 +41,8 @@ type course struct {
 }
 
 func courseOf(p *scenarios.Plan, t *scenarios.Treatment) (c course) {
-	full, now := leafArea(p.Stand.Layers), leafArea(t.Matrix)
-	c.thinned = now > 0 && now < full*(1-same)
+	before, now := leafArea(p.Stand.Layers), leafArea(t.Matrix)
+	c.thinned = now > 0 && now < before*(1-same)
 	o, opens := t.Opening.(scenarios.Cleared)
 	c.opens = opens
 	for pace := Late; pace <= Early; pace++ {
@@ -50,7 +51,7 @@ func courseOf(p *scenarios.Plan, t *scenarios.Treatment) (c course) {
 		}
 		c.span[pace] = p.Years.Regrowth[Early-pace] // quick leaves go with early
 		if c.span[pace] == 0 && c.thinned {
-			c.span[pace] = regrowthPace[pace] * (lightRegrowth + (heavyRegrowth-lightRegrowth)*math.Min(1, (1-now/full)/heavy))
+			c.span[pace] = regrowthPace[pace] * (lightRegrowth + (heavyRegrowth-lightRegrowth)*math.Min(1, (1-now/before)/heavy))
 		}
 	}
 	return c
@@ -70,12 +71,12 @@ func (c *course) at(pace Pace, years float64) (s state) {
 // later is a treatment in a state: crowns come in, leaf area comes back with the clumping of the uncut stand, wood does not.
 func later(p *scenarios.Plan, t *scenarios.Treatment, s state) (*scenarios.Treatment, error) {
 	out := *t
-	if full, now := leafArea(p.Stand.Layers), leafArea(t.Matrix); now > 0 && now < full*(1-same) {
+	if before, now := leafArea(p.Stand.Layers), leafArea(t.Matrix); now > 0 && now < before*(1-same) {
 		out.Matrix = append([]scenarios.Layer(nil), t.Matrix...)
 		closed, opened := clumping(p.Stand.Layers), clumping(t.Matrix)
 		for i := range out.Matrix {
 			l := &out.Matrix[i]
-			l.LAI *= 1 + s.back*(full/now-1)
+			l.LAI *= 1 + s.back*(before/now-1)
 			gaps := 1 + s.back*(closed/opened-1) // between crowns, which fill them again
 			l.Clumping = math.Min(1, l.Clumping*gaps)
 			l.WAI /= gaps // wood stands at random
@@ -121,8 +122,8 @@ type track struct {
 	values [][][][]scenarios.Spot // by state, seedling, rung, station
 }
 
-// intervals of a track on which one thing alone moves.
-const intervals = 10
+// intervals of a track on which one thing alone moves; every fourth state has the break-even of every size, between them its ratio to that of the first size is linear.
+const intervals, full = 8, 4
 
 // worked are the years in which light is worked out where crowns and leaves move together. Lateral growth stops after 11 to 16 years, leaves are back
 // after 8 to 20.
@@ -176,4 +177,68 @@ func (t *track) between(u float64) (i int, s float64) {
 		return i, 0
 	}
 	return i, math.Max(0, math.Min(1, (u-t.u[i])/(t.u[i+1]-t.u[i])))
+}
+
+// whole tells whether a state has the break-even of every size.
+func (t *track) whole(n int) bool { return n%full == 0 || n == len(t.u)-1 }
+
+// thresholds gives every state the break-even of every size.
+func (t *track) thresholds(p *scenarios.Plan) {
+	for n := range t.u {
+		if t.whole(n) {
+			continue
+		}
+		a, b := n-n%full, min(n-n%full+full, len(t.u)-1)
+		s := (t.u[n] - t.u[a]) / (t.u[b] - t.u[a])
+		for i, rungs := range t.values[n] {
+			for j := range rungs {
+				for k := range rungs[j] {
+					if x := &rungs[j][k]; !x.BreakEven.Found {
+						from := step{t.values[a][i][0][k].BreakEven, t.values[a][i][j][k].BreakEven}
+						to := step{t.values[b][i][0][k].BreakEven, t.values[b][i][j][k].BreakEven}
+						x.BreakEven = ratioed(rungs[0][k].BreakEven, from, to, s).of(p.Seedlings[i].Factor)
+					}
+				}
+			}
+		}
+	}
+}
+
+// step is the break-even of the first size and of another, in one state.
+type step struct{ first, other ledger.BreakEven }
+
+// point is a break-even to be.
+type point struct {
+	found          bool
+	season, leafOn float64
+}
+
+func (x point) of(factor float64) ledger.BreakEven {
+	if !x.found {
+		return ledger.BreakEven{}
+	}
+	return ledger.NewBreakEven(x.season, x.leafOn, factor)
+}
+
+// ratioed is the break-even of the other size between two states: that of the first size times the ratio of both; where one of them has none or is 0, what lies between
+// the other size's own.
+func ratioed(first ledger.BreakEven, a, b step, s float64) point {
+	found := a.other.Found && b.other.Found
+	x := point{found, a.other.Season + s*(b.other.Season-a.other.Season), a.other.LeafOn + s*(b.other.LeafOn-a.other.LeafOn)}
+	if !(found && first.Found && least(a.first) > 0 && least(b.first) > 0) {
+		return x
+	}
+	ratio := func(of func(ledger.BreakEven) float64) float64 {
+		p, q := of(a.other)/of(a.first), of(b.other)/of(b.first)
+		return of(first) * (p + s*(q-p))
+	}
+	return point{true, ratio(func(b ledger.BreakEven) float64 { return b.Season }), ratio(func(b ledger.BreakEven) float64 { return b.LeafOn })}
+}
+
+// least of a break-even's figures; 0 where there is none.
+func least(b ledger.BreakEven) float64 {
+	if !b.Found {
+		return 0
+	}
+	return math.Min(b.Season, b.LeafOn)
 }

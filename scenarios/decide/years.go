@@ -2,6 +2,7 @@ package decide
 
 import (
 	"math"
+	"slices"
 
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
@@ -111,7 +112,7 @@ func (f *Future) light(m *scenarios.Mapper, t *scenarios.Treatment, tracks [3]*t
 				tr.values = append(tr.values, tracks[0].values[0])
 				continue
 			}
-			if n > 0 && tr.states[n] == tr.states[n-1] {
+			if n > 0 && tr.states[n] == tr.states[n-1] && (tr.whole(n-1) || !tr.whole(n)) {
 				tr.values = append(tr.values, tr.values[n-1])
 				continue
 			}
@@ -119,13 +120,20 @@ func (f *Future) light(m *scenarios.Mapper, t *scenarios.Treatment, tracks [3]*t
 			if err != nil {
 				return err
 			}
-			x, err := m.Climb(then, spots, ladders)
+			depth := scenarios.Ledgers
+			if tr.whole(n) {
+				depth = scenarios.BreakEvens
+			}
+			x, err := m.Climb(then, spots, ladders, depth)
 			if err != nil {
 				return err
 			}
 			f.Runs++
 			tr.values = append(tr.values, x)
 		}
+	}
+	for _, tr := range tracks {
+		tr.thresholds(f.Plan)
 	}
 	return nil
 }
@@ -138,6 +146,7 @@ func (f *Future) write(c *climber, s Span) {
 		lives[pace] = l
 		s.Lost[pace], s.Stock[pace], s.Above[pace], s.Dies[pace] = l.lost, l.stock, l.above, l.dies
 	}
+	s.Lost, s.Dies = ends(s.Lost), ends(s.Dies)
 	for year := 0; year <= f.Plan.Years.Horizon; year++ {
 		row := YearRow{Treatment: s.Treatment, Station: s.Station, Species: s.Species, Year: year}
 		for pace := Late; pace <= Early; pace++ {
@@ -149,6 +158,12 @@ func (f *Future) write(c *climber, s Span) {
 		f.Rows = append(f.Rows, row)
 	}
 	f.Spans = append(f.Spans, s)
+}
+
+// ends puts the first year to the early and the last to the late pace: a seedling kept smaller by a faster pace may do with less light for a little longer.
+func ends(years [3]float64) [3]float64 {
+	years[Early], years[Late] = slices.Min(years[:]), slices.Max(years[:])
+	return years
 }
 
 // reenter finds the years in which the treatment's last stations inside are lost.
