@@ -3,6 +3,7 @@ package decide
 import (
 	"math"
 	"testing"
+	"time"
 
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/ledger"
@@ -91,6 +92,63 @@ func TestThinnedStandsCloseAgain(t *testing.T) {
 		t.Logf("%s: %.1f points over the uncut stand's %.1f, %.1f in year %d", p.Treatments[i].Name, gained, uncut, left, year)
 		if left > gained/4 || left < -0.5 {
 			t.Errorf("%s: %.1f of %.1f points are left in year %d", p.Treatments[i].Name, left, gained, year)
+		}
+	}
+}
+
+// A light thinning is back near uncut light after 8 years (Chan et al. 2006, CJFR 36:2696, Douglas-fir), heavy ones in the same stand are not: of the light
+// gained by taking a twelfth of the basal area at most three tenths are left in year 8, of that by taking half of it more than that.
+func TestLightThinningsCloseInEightYears(t *testing.T) {
+	p := example(t, "kestrel-fork")
+	p.Sampling.Step = time.Hour
+	q := QueryOf(p)
+	uncut := p.Stand.Trees.Sums().BasalArea
+	s, err := newStands(p, q)
+	if err != nil {
+		t.Fatal(err)
+	}
+	thinned, _, err := s.plan([]float64{uncut, uncut * 11 / 12, uncut / 2})
+	if err != nil {
+		t.Fatal(err)
+	}
+	f, err := FindYears(thinned, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	per := len(thinned.Seedlings) * (thinned.Years.Horizon + 1)
+	for i, cut := range []float64{1.0 / 12, 0.5} {
+		none, now, then, end := f.Rows[0].StockLight[Likely], f.Rows[(i+1)*per].StockLight[Likely], f.Rows[(i+1)*per+8].StockLight[Likely], f.Rows[(i+1)*per+20].StockLight[Likely]
+		left := (then - none) / (now - none)
+		t.Logf("%.0f %% cut: light %.2f %% uncut, %.2f after the cut, %.2f in year 8, %.2f in year 20: %.0f %% of the gain left in year 8", 100*cut, none, now, then, end, 100*left)
+		if (left > 0.3) != (i == 1) {
+			t.Errorf("%.0f %% cut: %.0f %% of the gain is left in year 8", 100*cut, 100*left)
+		}
+	}
+}
+
+// The thin command's years are those of the same thinning in the plan.
+func TestThinYearsAreThePlans(t *testing.T) {
+	p := sized(t)
+	p.Treatments = p.Treatments[2:3]
+	f, err := FindYears(p, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	q := QueryOf(p)
+	q.Workers = 2
+	table, err := Thin(p, q, []float64{p.Stand.Trees.Sums().BasalArea, p.Treatments[0].Trees.Sums().BasalArea})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i, s := range f.Spans {
+		row := table.Rows[len(p.Seedlings)+i]
+		want := s.Lost
+		if row.Class != ledger.Comfortable {
+			want = [3]float64{}
+		}
+		t.Logf("%s: %v", row.Species, row.Above)
+		if row.Species != s.Species || row.Above != want {
+			t.Errorf("%s stays comfortable for %v years, the plan says %v", row.Species, row.Above, s.Lost)
 		}
 	}
 }

@@ -98,7 +98,7 @@ func Years(o Output, plan *scenarios.Plan, f *decide.Future) error {
 	p.f("%s\n%s\n", Name(plan), seasonLine(plan))
 	hang(p, "", fmt.Sprintf("What the years do, to year %d, at an early, a likely and a late pace. Border crowns grow in at %.2f m a year and side (%.2f to %.2f), slowing, and stop after 11 to 16 years; thinned canopies have their leaves back %s. Seedlings grow from their own yearly net.",
 		plan.Years.Horizon, c[1], c[0], c[2], regrowth(plan)))
-	t := newTable("treatment", "seedling", "kept", "station", "lost", "new stock", lengthUnit(o.Units), "above")
+	t := newTable("treatment", "seedling", "kept", "station", "lost", "new stock", lengthUnit(o.Units), "over")
 	last := ""
 	for i := range f.Reentries {
 		r := &f.Reentries[i]
@@ -112,7 +112,7 @@ func Years(o Output, plan *scenarios.Plan, f *decide.Future) error {
 	if p.err == nil {
 		p.err = render(o.Out, t, 7, 8)
 	}
-	hang(p, "", fmt.Sprintf("kept: stations inside that are comfortable right after the cut and in the last year, likely pace, of all inside; station: that which keeps the seedling longest. lost: early-likely-late, the year in which the last station inside stops being comfortable for the growing seedling; come back by then. new stock: the same for stock of the plan's size planted in that year. %d+ is beyond the last year followed, dies: after %d years of loss. %s: height at the station in the likely year lost or the last one, at most the crown base; above: the year it stands above the understory, - where none is taller. Plants that come up later are not followed.",
+	hang(p, "", fmt.Sprintf("kept: stations inside that are comfortable right after the cut and in the last year, likely pace, of all inside; station: that which keeps the seedling longest. lost: early-likely-late, the year in which the last station inside stops being comfortable for the growing seedling; come back by then. new stock: the same for stock of the plan's size planted in that year. %d+ is beyond the last year followed; dies: after %d years of loss. %s: height at the station in the likely year lost or the last one, at most the crown base; over: the year it stands above the understory, - where none is taller, no where it never does. Plants that come up later are not followed.",
 		plan.Years.Horizon, decide.Fading, lengthUnit(o.Units)))
 	lightByYear(p, o, f)
 	p.f("\n")
@@ -183,7 +183,7 @@ func yearCells(o Output, f *decide.Future, r *decide.Reentry) table.Row {
 	above := "-"
 	switch y := best.Above[decide.Likely]; {
 	case math.IsInf(y, 1):
-		above = "never"
+		above = "no"
 	case y > 0:
 		above = fmt.Sprintf("%.0f", y)
 	}
@@ -199,7 +199,7 @@ func lost(r *decide.Reentry, best *decide.Span, horizon int) string {
 	return yearRange(r.Year, horizon)
 }
 
-// yearRange is early-likely-late.
+// yearRange is early-likely-late, early-late where the likely year is beyond the horizon too.
 func yearRange(year [3]float64, horizon int) string {
 	if slices.Max(year[:]) == 0 {
 		return "never"
@@ -211,8 +211,11 @@ func yearRange(year [3]float64, horizon int) string {
 		return fmt.Sprintf("%.0f", y)
 	}
 	early, likely, late := text(year[decide.Early]), text(year[decide.Likely]), text(year[decide.Late])
-	if early == late && early == likely {
+	switch {
+	case early == late && early == likely:
 		return likely
+	case math.IsInf(year[decide.Likely], 1):
+		return early + "-" + late
 	}
 	return early + "-" + likely + "-" + late
 }
