@@ -121,7 +121,7 @@ func restKeys() []Key {
 		{Path: "sampling.dormancy", Kind: Choice, Words: []string{"lagged", "none"}, Default: "lagged; none under an overcast or uniform sky", Example: "none", Meaning: "whether evergreens sleep through cold: capacity follows temperature with a lag"},
 		{Path: "years", Kind: Map, Meaning: "how the stand closes again"},
 		{Path: "years.horizon", Kind: Number, Low: 1, Top: 60, Range: "1 to 60 years", Default: "30", Example: "30", Meaning: "years looked ahead"},
-		{Path: "years.side_closure", Kind: Quantity, dim: speed, Low: 0, Top: 2, Range: "0 to 2 m/y", Default: "the region's; 0.18 m/y, 0.10 to 0.40", Example: "0.18 m/y", Meaning: "how fast border crowns grow in, a side, at the start"},
+		{Path: "years.side_closure", Kind: Quantity, dim: speed, Low: 0, Top: 2, Range: "0 to 2 m/y", Default: "the region's, else the leading species', else 0.18 m/y, 0.10 to 0.40", Example: "0.18 m/y", Meaning: "how fast border crowns grow in, a side, at the start"},
 		{Path: "years.leaf_regrowth", Kind: Number, Low: 1, Top: 60, Range: "1 to 60 years", Default: "8 for light to 20 for heavy thinnings", Example: "13", Meaning: "years until a thinned canopy has its leaf area again"},
 		{Path: "size", Kind: Map, Meaning: "what openings are sought for"},
 		{Path: "size.share", Kind: Quantity, dim: share, Low: 0.01, Top: 1, Range: "1 to 100 %", Default: "50 %", Example: "50 %", Meaning: "share of an opening's crown outline that is to be comfortable"},
