@@ -179,3 +179,76 @@ func TestYearsOfTheUncutAndTheClosed(t *testing.T) {
 		}
 	}
 }
+
+// An opening in a thinned stand closes from both sides: light falls every year at every pace, and once the leaves are back it is that of the opening in the uncut stand,
+// but for the wood that was taken.
+func TestOpeningsInThinnedStands(t *testing.T) {
+	p := sized(t)
+	thin, open := *treatmentOf(t, p, "Thin to 60"), *treatmentOf(t, p, "Circle 1.0 H")
+	both := open
+	both.Name, both.Matrix = "both", thin.Matrix
+	p.Treatments = []scenarios.Treatment{open, both}
+	f, err := FindYears(p, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	n := p.Years.Horizon + 1
+	half := len(f.Spans) / 2
+	for i := range half {
+		alone, with := f.Rows[i*n:(i+1)*n], f.Rows[(half+i)*n:(half+i+1)*n]
+		if with[0].StockLight[Likely] < alone[0].StockLight[Likely]+1 {
+			t.Errorf("%s: %.1f %% in the thinned stand, %.1f in the uncut one", with[0].Station, with[0].StockLight[Likely], alone[0].StockLight[Likely])
+		}
+		if off := with[n-1].StockLight[Likely] - alone[n-1].StockLight[Likely]; off < -0.5 || off > 5 {
+			t.Errorf("%s: in year 30 %.1f points over the opening in the uncut stand", with[0].Station, off)
+		}
+		for y := 1; y < n; y++ {
+			for pace := Late; pace <= Early; pace++ {
+				if with[y].StockLight[pace] > with[y-1].StockLight[pace]+0.05 {
+					t.Errorf("%s, year %d, pace %d: %.2f %% after %.2f", with[y].Station, y, pace, with[y].StockLight[pace], with[y-1].StockLight[pace])
+				}
+			}
+		}
+	}
+}
+
+// A first-season plant has its own leaves in the year of the cut and new ones, made in the light it stands in, from then on; new stock always has its own.
+func TestFirstSeasonLastsOneYear(t *testing.T) {
+	p, q := sized(t), sized(t)
+	for i := range q.Seedlings {
+		q.Seedlings[i].Ledger = ledger.FirstSeason
+	}
+	p.Treatments, q.Treatments = p.Treatments[:3], q.Treatments[:3]
+	acclimated, err := FindYears(p, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	first, err := FindYears(q, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	m, err := scenarios.NewMapper(q, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	n, other := p.Years.Horizon+1, 0
+	for i := range first.Spans {
+		maps, err := m.Map(&m.Plan().Treatments[i/len(q.Seedlings)], [][2]float64{{0, 0}}, scenarios.BreakEvens)
+		if err != nil {
+			t.Fatal(err)
+		}
+		row, want := first.Rows[i*n], maps[i%len(q.Seedlings)][0]
+		if row.Net[Likely] != want.Net || row.Class[Likely] != want.Class || row.StockClass[Late] != want.Class {
+			t.Errorf("%s, %s: net %g, %s, for %g, %s", row.Treatment, row.Species, row.Net[Likely], row.Class[Likely], want.Net, want.Class)
+		}
+		if row.Net[Likely] != acclimated.Rows[i*n].Net[Likely] {
+			other++
+		}
+		if grew := first.Rows[i*n+1].Height[Likely] > row.Height[Likely]; grew != (row.Net[Likely] > 0) {
+			t.Errorf("%s, %s: net %g, grew %v", row.Treatment, row.Species, row.Net[Likely], grew)
+		}
+	}
+	if other == 0 {
+		t.Error("first-season leaves earn what acclimated ones do everywhere")
+	}
+}
