@@ -9,8 +9,9 @@ import (
 
 type yearsOptions struct {
 	*settings
-	io   streams
-	plan string
+	io       streams
+	plan     string
+	stations bool
 }
 
 func newYears(io streams) *cobra.Command {
@@ -23,8 +24,8 @@ area back (years.leaf_regrowth), each at three paces: early is fast crowns and q
 each year's net carbon becomes leaves, wood and roots and with them height, up to the crown base, and each year's light is
 that at the height reached. After three years of loss in a row a seedling dies. For every seedling: the year in which the
 last station inside is lost, which is when to come back; the same for new stock; height; the year it stands above the
-understory. --format csv has every year of every station; an empty year lies beyond the horizon. Light is that of maps, a
-few weighted days a month. No other plants grow up.`,
+understory. --stations prints when every station is lost, --format csv has every year of every station; an empty year lies
+beyond the horizon. Light is that of maps, a few weighted days a month. No other plants grow up.`,
 		Example: "  shadeledger years\n  shadeledger years my-stand --format csv --output years.csv\n  shadeledger years --set 'years.side_closure={low: 0.1 m/y, best: 0.25 m/y, high: 0.4 m/y}'",
 		Args:    atMost(1),
 		RunE: func(cmd *cobra.Command, args []string) error {
@@ -37,6 +38,7 @@ few weighted days a month. No other plants grow up.`,
 		},
 	}
 	addPlanFlags(cmd)
+	cmd.Flags().BoolVar(&o.stations, "stations", false, "print when every station is lost")
 	return cmd
 }
 
@@ -52,5 +54,9 @@ func runYears(o yearsOptions) error {
 	if err != nil {
 		return err
 	}
-	return o.deliver(o.io, p, func(out report.Output) error { return report.Years(out, p, f) })
+	write := report.Years
+	if o.stations {
+		write = report.YearStations
+	}
+	return o.deliver(o.io, p, func(out report.Output) error { return write(out, p, f) })
 }

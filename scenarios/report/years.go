@@ -122,6 +122,33 @@ func Years(o Output, plan *scenarios.Plan, f *decide.Future) error {
 	return n.write(o.Out)
 }
 
+// YearStations writes when every station is lost.
+func YearStations(o Output, plan *scenarios.Plan, f *decide.Future) error {
+	if o.Format != Table {
+		return Years(o, plan, f)
+	}
+	n := notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
+	p := &printer{w: o.Out}
+	p.f("%s\n%s\n", Name(plan), seasonLine(plan))
+	t := newTable("treatment", "station", "seedling", "lost", "new stock", lengthUnit(o.Units), "over")
+	for i := range f.Spans {
+		s := &f.Spans[i]
+		last := rowsOf(f, i)[plan.Years.Horizon]
+		t.AppendRow(table.Row{s.Treatment, s.Station, s.Species, lost(s.Lost, s, plan.Years.Horizon), yearRange(s.Stock, plan.Years.Horizon),
+			text0(lengthValue(last.Height[decide.Likely], o.Units), 1), over(s)})
+	}
+	if p.err == nil {
+		p.err = render(o.Out, t, 6, 7)
+	}
+	hang(p, "", fmt.Sprintf("lost: early-likely-late, the year in which the station stops being comfortable for the growing seedling; new stock: the same for stock of the plan's size planted in that year. %d+ is beyond the last year followed; dies: after %d years of loss. %s: height in year %d, likely pace, at most the crown base; over: the year it stands above the understory, - where none is taller, no where it never does.",
+		plan.Years.Horizon, decide.Fading, lengthUnit(o.Units), plan.Years.Horizon))
+	p.f("\n")
+	if p.err != nil {
+		return p.err
+	}
+	return n.write(o.Out)
+}
+
 // lightByYear writes the light of the first seedling's best station.
 func lightByYear(p *printer, o Output, f *decide.Future) {
 	var years []int
@@ -180,23 +207,27 @@ func yearCells(o Output, f *decide.Future, r *decide.Reentry) table.Row {
 	best := &f.Spans[r.Best]
 	rows := rowsOf(f, r.Best)
 	then := rows[int(math.Min(r.Year[decide.Likely], float64(f.Plan.Years.Horizon)))]
-	above := "-"
-	switch y := best.Above[decide.Likely]; {
-	case math.IsInf(y, 1):
-		above = "no"
-	case y > 0:
-		above = fmt.Sprintf("%.0f", y)
-	}
-	return table.Row{fmt.Sprintf("%d-%d/%d", good, kept, inside), best.Station, lost(r, best, f.Plan.Years.Horizon), yearRange(r.Stock, f.Plan.Years.Horizon),
-		text0(lengthValue(then.Height[decide.Likely], o.Units), 1), above}
+	return table.Row{fmt.Sprintf("%d-%d/%d", good, kept, inside), best.Station, lost(r.Year, best, f.Plan.Years.Horizon), yearRange(r.Stock, f.Plan.Years.Horizon),
+		text0(lengthValue(then.Height[decide.Likely], o.Units), 1), over(best)}
 }
 
-// lost is when the last station is lost; of a seedling that is never comfortable, whether it dies.
-func lost(r *decide.Reentry, best *decide.Span, horizon int) string {
-	if y := best.Dies[decide.Likely]; slices.Max(r.Year[:]) == 0 && !math.IsInf(y, 1) {
+// over is the year in which a seedling stands above the understory, likely pace.
+func over(s *decide.Span) string {
+	switch y := s.Above[decide.Likely]; {
+	case math.IsInf(y, 1):
+		return "no"
+	case y > 0:
+		return fmt.Sprintf("%.0f", y)
+	}
+	return "-"
+}
+
+// lost is when a spot, or the last one, is lost; of a seedling that is never comfortable, whether it dies.
+func lost(year [3]float64, s *decide.Span, horizon int) string {
+	if y := s.Dies[decide.Likely]; slices.Max(year[:]) == 0 && !math.IsInf(y, 1) {
 		return fmt.Sprintf("dies %.0f", y)
 	}
-	return yearRange(r.Year, horizon)
+	return yearRange(year, horizon)
 }
 
 // yearRange is early-likely-late, early-late where the likely year is beyond the horizon too.
