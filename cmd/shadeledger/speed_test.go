@@ -31,7 +31,7 @@ func benchmarkBalance(b *testing.B, name string) {
 		if err != nil {
 			b.Fatal(err)
 		}
-		if err := report.Balance(report.Output{Out: io.Discard, Notes: io.Discard, Format: report.CSV}, r, report.Screen); err != nil {
+		if err := report.Balance(report.Output{Out: io.Discard, Notes: io.Discard, Format: report.CSV}, r, report.Screen, nil); err != nil {
 			b.Fatal(err)
 		}
 		b.ReportMetric(float64(len(r.Balance)), "rows")

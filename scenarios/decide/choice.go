@@ -50,6 +50,7 @@ type Flip struct {
 	Input Input
 	Value float64 // where the class at the best station changes
 	Above bool    // it changes above the value
+	Far   float64 // normal deviates from the best value
 	Runs  int
 }
 

@@ -41,7 +41,7 @@ type course struct {
 }
 
 func courseOf(p *scenarios.Plan, t *scenarios.Treatment) (c course) {
-	before, now := leafArea(p.Stand.Layers), leafArea(t.Matrix)
+	before, now := scenarios.LeafArea(p.Stand.Layers), scenarios.LeafArea(t.Matrix)
 	c.thinned = now > 0 && now < before*(1-same)
 	o, opens := t.Opening.(scenarios.Cleared)
 	c.opens = opens
@@ -71,7 +71,7 @@ func (c *course) at(pace Pace, years float64) (s state) {
 // later is a treatment in a state: crowns come in, leaf area comes back with the clumping of the uncut stand, wood does not.
 func later(p *scenarios.Plan, t *scenarios.Treatment, s state) (*scenarios.Treatment, error) {
 	out := *t
-	if before, now := leafArea(p.Stand.Layers), leafArea(t.Matrix); now > 0 && now < before*(1-same) {
+	if before, now := scenarios.LeafArea(p.Stand.Layers), scenarios.LeafArea(t.Matrix); now > 0 && now < before*(1-same) {
 		out.Matrix = append([]scenarios.Layer(nil), t.Matrix...)
 		closed, opened := clumping(p.Stand.Layers), clumping(t.Matrix)
 		for i := range out.Matrix {
@@ -105,14 +105,7 @@ func clumping(layers []scenarios.Layer) float64 {
 	for _, l := range layers {
 		sum += l.Clumping * l.LAI
 	}
-	return sum / leafArea(layers)
-}
-
-func leafArea(layers []scenarios.Layer) (sum float64) {
-	for _, l := range layers {
-		sum += l.LAI
-	}
-	return sum
+	return sum / scenarios.LeafArea(layers)
 }
 
 // track is a row of states in which light is worked out; u is what rises along it: meters come in, share back, or years.

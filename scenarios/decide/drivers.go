@@ -70,7 +70,7 @@ func (s *sample) flip(row int, ends []end) (Flip, error) {
 		f.Runs += halvings
 		if far < nearest {
 			nearest = far
-			f = Flip{Found: true, Input: s.inputs[to.input], Value: value, Above: to.above, Runs: f.Runs}
+			f = Flip{Found: true, Input: s.inputs[to.input], Value: value, Above: to.above, Far: far, Runs: f.Runs}
 		}
 	}
 	return f, nil

@@ -157,7 +157,7 @@ func (l *inputList) site() {
 		a := p.Ground.Aspect * 180 / math.Pi
 		l.add(Input{Key: "site.aspect", Label: "aspect", Unit: "deg", Doubt: around(a, aspectError), Source: practice, Seedling: -1, vary: func(c *change, x float64) { c.aspect = x * math.Pi / 180 }})
 	}
-	l.add(Input{Key: "weather.radiation", Label: "mean radiation", Unit: "times normal", Doubt: about(1, radiationRange), Source: "normals, " + practice, Seedling: -1, vary: func(c *change, x float64) { c.radiation *= x }})
+	l.add(Input{Key: "weather.radiation", Label: "mean radiation", Unit: "x normal", Doubt: about(1, radiationRange), Source: "normals, " + practice, Seedling: -1, vary: func(c *change, x float64) { c.radiation *= x }})
 	l.add(Input{Key: "weather.par_fraction", Label: "PAR in radiation", Unit: "1", Doubt: about(p.Par.Fraction, parRange), Source: "0.42 to 0.48, common practice", Seedling: -1,
 		vary: func(c *change, x float64) { c.radiation *= x / p.Par.Fraction }})
 	l.add(Input{Key: "weather.temperature", Label: "mean temperature", Unit: "K warmer", Doubt: around(0, warmthError), Source: "normals, " + practice, Seedling: -1, vary: func(c *change, x float64) { c.warmth = x }})
@@ -187,7 +187,7 @@ func (l *inputList) seedling(i int) {
 	s := &l.p.Seedlings[i]
 	for _, r := range s.Ranges {
 		in := traitInputs[r.Trait]
-		best, unit := 1.0, "times its best value"
+		best, unit := 1.0, "x best"
 		if r.Trait == scenarios.OwnLeafOut {
 			best, unit = 0, "days later"
 		}

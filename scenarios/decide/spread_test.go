@@ -15,10 +15,10 @@ import (
 )
 
 // small is the example with two treatments and one seedling.
-func small(t testing.TB, seedling string) *scenarios.Plan {
+func small(t *testing.T, seedling string) *scenarios.Plan {
 	t.Helper()
 	p := *example(t, "kettle-bench")
-	p.Treatments = []scenarios.Treatment{p.Treatments[0], treatmentOf(t, &p, "Circle 1.0 H")}
+	p.Treatments = []scenarios.Treatment{p.Treatments[0], *treatmentOf(t, &p, "Circle 1.0 H")}
 	for i := range p.Seedlings {
 		if p.Seedlings[i].Name == seedling {
 			p.Seedlings = p.Seedlings[i : i+1]
@@ -27,17 +27,6 @@ func small(t testing.TB, seedling string) *scenarios.Plan {
 	}
 	t.Fatalf("no seedling %q", seedling)
 	return nil
-}
-
-func treatmentOf(t testing.TB, p *scenarios.Plan, name string) scenarios.Treatment {
-	t.Helper()
-	for _, x := range p.Treatments {
-		if x.Name == name {
-			return x
-		}
-	}
-	t.Fatalf("no treatment %q", name)
-	return scenarios.Treatment{}
 }
 
 func spreadOf(t *testing.T, p *scenarios.Plan, q SpreadQuery) *Spreads {

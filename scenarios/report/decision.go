@@ -23,6 +23,7 @@ type board struct {
 	results *scenarios.Results
 	cells   [][]outcome // by treatment and seedling
 	low, up []float64   // by treatment: season percent of light inside, darkest and brightest
+	doubts  *Doubts
 	marks   *marks
 }
 
@@ -109,7 +110,7 @@ func (b *board) decision() string {
 		var names []string
 		for s, at := range lightest {
 			if at == t {
-				names = append(names, p.Seedlings[s].Name+where(b.cells[t][s]))
+				names = append(names, p.Seedlings[s].Name+b.where(t, s))
 			}
 		}
 		if names == nil {
@@ -159,6 +160,14 @@ func where(o outcome) string {
 		return " (" + s + ")"
 	}
 	return ""
+}
+
+// where is the same with doubts: how sure it is and the years it holds.
+func (b *board) where(t, seedling int) string {
+	if s := b.doubts.sure(t, seedling); s != "" {
+		return " (" + s + ")"
+	}
+	return where(b.cells[t][seedling])
 }
 
 // letters shortens default stations to C N E S W; stations the user named keep their names.

@@ -8,14 +8,15 @@ import (
 )
 
 // FirstScreen writes the answer of a run in at most Height lines of Width columns: the decision, then a row a
-// treatment and a column a seedling.
-func FirstScreen(o Output, r *scenarios.Results) error {
+// treatment and a column a seedling. Doubts, where there are any, put years, chances, the flip and what to measure on it.
+func FirstScreen(o Output, r *scenarios.Results, d *Doubts) error {
 	b := gather(r)
+	b.doubts = d
 	var lines []string
 	lines = append(lines, heading(r.Plan)...)
 	lines = append(lines, wrap(readAs(r, o.Units), Width, Width)...)
 	lines = append(lines, wrap(b.decision(), Width, Width)...)
-	last := footer(r)
+	last := footer(r, d)
 	lines = append(lines, b.grid(o.Units, Height-len(lines)-len(last))...)
 	lines = append(lines, last...)
 	p := &printer{w: o.Out}
@@ -85,15 +86,20 @@ func leafSource(r *scenarios.Results) string {
 }
 
 // footer points to the notes below the screen, to what was assumed and to the cautions.
-func footer(r *scenarios.Results) []string {
-	s := itoa(open(r.Plan)) + " cautions open, " + itoa(len(r.Assumed)) + " values assumed: shadeledger check. No range yet."
+func footer(r *scenarios.Results, d *Doubts) []string {
+	s := itoa(open(r.Plan)) + " cautions open, " + itoa(len(r.Assumed)) + " values assumed: shadeledger check. "
+	if d == nil {
+		s += "Ranges: --range."
+	} else {
+		s += itoa(d.Spreads.Done) + " draws."
+	}
 	switch n := len(r.Warnings); {
 	case n == 1:
 		s = "1 note, " + s
 	case n > 1:
 		s = itoa(n) + " notes, " + s
 	}
-	return wrap(s, Width, Width)
+	return append(d.flips(), wrap(s, Width, Width)...)
 }
 
 // cell is the words of an outcome.
@@ -277,6 +283,9 @@ func (b *board) row(u scenarios.Units, how layout, t, seedlings int) row {
 	r := row{{p.Treatments[t].Name}, cutText(scenarios.CutOf(p, &p.Treatments[t]), u, how), b.marks.light(p.Treatments[t].Name, lightText(b.low[t], b.up[t]), how)}
 	for s := range seedlings {
 		class, at := b.cells[t][s].cell()
+		if years := b.doubts.years(t, s); years != "" && at != "" {
+			at = years
+		}
 		switch {
 		case at == "":
 			r = append(r, [2]string{class})

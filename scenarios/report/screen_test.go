@@ -86,7 +86,7 @@ func made(t *testing.T, class classOf) *scenarios.Results {
 func screen(t *testing.T, r *scenarios.Results) []string {
 	t.Helper()
 	var b bytes.Buffer
-	if err := FirstScreen(Output{Out: &b, Units: scenarios.US}, r); err != nil {
+	if err := FirstScreen(Output{Out: &b, Units: scenarios.US}, r, nil); err != nil {
 		t.Fatal(err)
 	}
 	lines := strings.Split(strings.TrimSuffix(b.String(), "\n"), "\n")
@@ -170,7 +170,7 @@ func TestFormatsCarryTheNotes(t *testing.T) {
 	r.Balance[0].BreakEven = ledger.BreakEven{}
 	r.Balance[0].Lines[ledger.Income] = math.NaN()
 	var out, side bytes.Buffer
-	if err := Balance(Output{Out: &out, Notes: &side, Format: CSV}, r, Screen); err != nil {
+	if err := Balance(Output{Out: &out, Notes: &side, Format: CSV}, r, Screen, nil); err != nil {
 		t.Fatal(err)
 	}
 	records, err := csv.NewReader(&out).ReadAll()
@@ -187,7 +187,7 @@ func TestFormatsCarryTheNotes(t *testing.T) {
 		}
 	}
 	out.Reset()
-	if err := Balance(Output{Out: &out, Format: JSON}, r, Screen); err != nil {
+	if err := Balance(Output{Out: &out, Format: JSON}, r, Screen, nil); err != nil {
 		t.Fatal(err)
 	}
 	var doc struct {

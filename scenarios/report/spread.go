@@ -165,7 +165,7 @@ func measureLine(c *decide.Choice) string {
 		return "No single measurement narrows it much."
 	}
 	m := c.Measures[0]
-	return fmt.Sprintf("Measure next: %s (margin's range %s points to %s).", m.Work, whole(m.From), whole(m.To))
+	return fmt.Sprintf("Measure next: %s (range %s to %s points).", m.Work, whole(m.From), whole(m.To))
 }
 
 // driverLine is a bar of the tornado: the margin from the input's 5th to its 95th percentile on the margin's own scale.

@@ -51,8 +51,8 @@ const (
 	Ledger
 )
 
-// Balance writes the ledgers of a run.
-func Balance(o Output, r *scenarios.Results, v View) error {
+// Balance writes the ledgers of a run; d is nil without ranges.
+func Balance(o Output, r *scenarios.Results, v View, d *Doubts) error {
 	n := notesOf(r)
 	if m := marksOf(r); m.rules != nil && (o.Format != Table || v != Screen) {
 		n.named = m.legend(r.Plan)
@@ -62,14 +62,14 @@ func Balance(o Output, r *scenarios.Results, v View) error {
 		if n.conflicts, err = jsonRows(findingColumns, linesOf("conflict", decide.FindConflicts(r).Conflicts)); err != nil {
 			return err
 		}
-		return data(o, n, balanceColumns, r.Balance)
+		return data(o, n, d.ranged(balanceColumns), r.Balance)
 	}
 	var err error
 	switch v {
 	case Screen:
-		err = FirstScreen(o, r)
+		err = FirstScreen(o, r, d)
 	case Stations:
-		err = stations(o, r)
+		err = stations(o, r, d)
 	case Ledger:
 		err = ledgerTable(o, r)
 	}
@@ -85,21 +85,28 @@ func Balance(o Output, r *scenarios.Results, v View) error {
 }
 
 // stations is the table of every station.
-func stations(o Output, r *scenarios.Results) error {
+func stations(o Output, r *scenarios.Results, d *Doubts) error {
 	p := &printer{w: o.Out}
 	p.f("%s\n%s\n", Name(r.Plan), seasonLine(r.Plan))
 	t := newTable("treatment", "station", "seedling", "period", "light %", "leaf-on %", "net g C", "income:cost", "break-even %", "threshold %", "class")
 	for i := range r.Balance {
 		b := &r.Balance[i]
-		t.AppendRow(table.Row{b.Treatment, b.Station, b.Species, b.Period, whole(b.Light), whole(b.LightLeafOn), sig(b.Lines.Net(), 2),
+		t.AppendRow(table.Row{b.Treatment, b.Station, b.Species, b.Period, whole(b.Light),
+			d.between(b, whole(b.LightLeafOn), func(x *decide.SpreadRow) decide.Range { return x.LeafOn }),
+			d.between(b, sig(b.Lines.Net(), 2), func(x *decide.SpreadRow) decide.Range { return x.Net }),
 			decimal(b.Lines.Ratio(), 2), whole(ifFound(func(x ledger.BreakEven) float64 { return x.LeafOn })(b)),
-			whole(ifFound(func(x ledger.BreakEven) float64 { return x.Threshold.LeafOn })(b)), b.Class.String()})
+			d.between(b, whole(ifFound(func(x ledger.BreakEven) float64 { return x.Threshold.LeafOn })(b)), func(x *decide.SpreadRow) decide.Range { return x.Threshold }),
+			b.Class.String()})
 	}
 	if p.err == nil {
 		p.err = render(o.Out, t, 5, 6, 7, 8, 9, 10)
 	}
 	p.f("break-even and threshold: leaf-on percent of full light; - where the year stays below zero at every light.\n")
-	p.f("Ranges: no range yet.\n")
+	if d == nil {
+		p.f("Ranges: --range.\n")
+	} else {
+		p.f("In brackets the 5th to the 95th percentile of %d draws, at stations inside and under the canopy.\n", d.Spreads.Done)
+	}
 	return p.err
 }
 

@@ -105,7 +105,7 @@ func Places(o Output, plan *scenarios.Plan, p *decide.Places) error {
 	if len(p.Whole) > 0 {
 		hang(out, "", "Without an opening, so without places: "+strings.Join(p.Whole, ", ")+".")
 	}
-	hang(out, "", "A zone may reach beyond the crowns, under the border. Short months: months of the season in which the seedling at the zone's middle spends more than it earns. No range yet.")
+	hang(out, "", "A zone may reach beyond the crowns, under the border. Short months: months of the season in which the seedling at the zone's middle spends more than it earns. Ranges: shadeledger spread.")
 	out.f("\n")
 	if out.err != nil {
 		return out.err
