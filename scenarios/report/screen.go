@@ -89,7 +89,7 @@ func leafSource(r *scenarios.Results) string {
 func footer(r *scenarios.Results, d *Doubts) []string {
 	s := itoa(open(r.Plan)) + " cautions open, " + itoa(len(r.Assumed)) + " values assumed: shadeledger check. "
 	if d == nil {
-		s += "Ranges: --range."
+		s += "Range: --range."
 	} else {
 		s += itoa(d.Spreads.Done) + " draws."
 	}
