@@ -1,6 +1,7 @@
 package decide
 
 import (
+	"errors"
 	"math"
 	"sort"
 
@@ -31,9 +32,29 @@ func (s *sample) explain(c *Choice, seedling int, ends []end) error {
 	}
 	margin := draws.NewSpread(y)
 	c.Margin = Range{margin.Low, margin.Median, margin.High}
-	fit, err := draws.Regress(x, y)
+	told, err := s.drivers(c, row, ends, x, y)
 	if err != nil {
 		return err
+	}
+	if c.Flip, err = s.flip(row, ends); err != nil {
+		return err
+	}
+	c.Measures = s.measures(c, told, seedling)
+	return nil
+}
+
+// drivers regresses the margin y on what was drawn x. Draws too few for the inputs, or a margin that never moves, tell of no drivers.
+func (s *sample) drivers(c *Choice, row int, ends []end, x [][]float64, y []float64) ([]draws.Coefficient, error) {
+	c.Fit = math.NaN()
+	if len(x) < len(x[0])+2 {
+		return make([]draws.Coefficient, len(x[0])), nil
+	}
+	fit, err := draws.Regress(x, y)
+	if errors.Is(err, draws.ErrConstant) {
+		return make([]draws.Coefficient, len(x[0])), nil
+	}
+	if err != nil {
+		return nil, err
 	}
 	c.Fit = fit.R2
 	for k := range x[0] {
@@ -48,11 +69,7 @@ func (s *sample) explain(c *Choice, seedling int, ends []end) error {
 		}
 	}
 	sort.SliceStable(c.Drivers, func(a, b int) bool { return c.Drivers[a].Share > c.Drivers[b].Share })
-	if c.Flip, err = s.flip(row, ends); err != nil {
-		return err
-	}
-	c.Measures = s.measures(c, fit.Inputs, seedling)
-	return nil
+	return fit.Inputs, nil
 }
 
 // flip finds the input that changes the class at a row with the least of its own doubt: the nearest ones by a straight line from the best margin to
