@@ -17,6 +17,7 @@ type Choice struct {
 	Options  []Option // the lightest cut first
 	Lightest int      // the option that is the lightest cut that works by the best values; -1 where none does
 	Decides  int      // the option that doubt is told of: the lightest, else the one nearest to working
+	Best     float64  // margin there of the best values, points
 	Margin   Range    // there, points of leaf-on light above the threshold at the best station
 	Fit      float64  // share of the ranks' variance that the drivers explain
 	Drivers  []Driver // what moves the margin, most first

@@ -22,17 +22,24 @@ const leastShare = 0.005
 // 21:499-509) and looks for the flip and for what to measure.
 func (s *sample) explain(c *Choice, seedling int, ends []end) error {
 	row := c.Options[c.Decides].row
+	c.Best = s.bestMargin(row)
+	columns := s.concerning(seedling)
 	var x [][]float64
 	var y []float64
 	for i := range s.draw {
-		if d := &s.draw[i]; s.finished[i] {
-			x = append(x, append(append([]float64(nil), d.x...), d.light[:]...))
-			y = append(y, d.spots[row].margin())
+		d := &s.draw[i]
+		if !s.finished[i] {
+			continue
 		}
+		at := append([]float64(nil), d.light[:]...)
+		for _, k := range columns {
+			at = append(at, d.x[k])
+		}
+		x, y = append(x, at), append(y, d.spots[row].margin())
 	}
 	margin := draws.NewSpread(y)
 	c.Margin = Range{margin.Low, margin.Median, margin.High}
-	told, err := s.drivers(c, row, ends, x, y)
+	told, err := s.drivers(c, columns, ends, x, y)
 	if err != nil {
 		return err
 	}
@@ -43,33 +50,48 @@ func (s *sample) explain(c *Choice, seedling int, ends []end) error {
 	return nil
 }
 
-// drivers regresses the margin y on what was drawn x. Draws too few for the inputs, or a margin that never moves, tell of no drivers.
-func (s *sample) drivers(c *Choice, row int, ends []end, x [][]float64, y []float64) ([]draws.Coefficient, error) {
+// concerning lists the inputs that bear on a seedling: its own and those of the stand and the site.
+func (s *sample) concerning(seedling int) (columns []int) {
+	for k, in := range s.inputs {
+		if in.Seedling < 0 || in.Seedling == seedling {
+			columns = append(columns, k)
+		}
+	}
+	return columns
+}
+
+// drivers regresses the margin y on what was drawn x: the year's light and warmth, then the columns of the inputs. It gives every input's share of the
+// ranks' variance. Draws too few for the inputs, or a margin that never moves, tell of no drivers.
+func (s *sample) drivers(c *Choice, columns []int, ends []end, x [][]float64, y []float64) (shares []float64, err error) {
 	c.Fit = math.NaN()
+	shares = make([]float64, len(s.inputs))
 	if len(x) < len(x[0])+2 {
-		return make([]draws.Coefficient, len(x[0])), nil
+		return shares, nil
 	}
 	fit, err := draws.Regress(x, y)
 	if errors.Is(err, draws.ErrConstant) {
-		return make([]draws.Coefficient, len(x[0])), nil
+		return shares, nil
 	}
 	if err != nil {
 		return nil, err
 	}
 	c.Fit = fit.R2
-	for k := range x[0] {
-		d := Driver{Coefficient: fit.Inputs[k].Value, Share: math.Max(0, fit.Inputs[k].Share), Low: math.NaN(), High: math.NaN()}
-		if k < len(s.inputs) {
-			d.Input, d.Low, d.High = s.inputs[k], ends[k].low[row].margin(), ends[k].high[row].margin()
+	row := c.Options[c.Decides].row
+	for n, told := range fit.Inputs {
+		d := Driver{Coefficient: told.Value, Share: math.Max(0, told.Share), Low: math.NaN(), High: math.NaN()}
+		if n < len(yearInputs) {
+			d.Input = yearInputs[n]
 		} else {
-			d.Input = yearInputs[k-len(s.inputs)]
+			k := columns[n-len(yearInputs)]
+			d.Input, d.Low, d.High = s.inputs[k], ends[k].low[row].margin(), ends[k].high[row].margin()
+			shares[k] = d.Share
 		}
 		if d.Share >= leastShare {
 			c.Drivers = append(c.Drivers, d)
 		}
 	}
 	sort.SliceStable(c.Drivers, func(a, b int) bool { return c.Drivers[a].Share > c.Drivers[b].Share })
-	return fit.Inputs, nil
+	return shares, nil
 }
 
 // flip finds the input that changes the class at a row with the least of its own doubt: the nearest ones by a straight line from the best margin to
@@ -183,14 +205,14 @@ const leastGain = 0.03
 
 // measures lists the work that would narrow the margin, by the shares of variance of what it tells: range times
 // sqrt(1 - sum share (1 - left^2)).
-func (s *sample) measures(c *Choice, told []draws.Coefficient, seedling int) (out []FieldWork) {
+func (s *sample) measures(c *Choice, shares []float64, seedling int) (out []FieldWork) {
 	from := c.Margin[2] - c.Margin[0]
 	for _, w := range works {
 		saved := 0.0
 		m := FieldWork{Work: w.name, From: from}
 		for k, in := range s.inputs {
-			if (in.Seedling < 0 || in.Seedling == seedling) && w.tells(in) && told[k].Share > 0 {
-				saved += told[k].Share * (1 - w.leaves*w.leaves)
+			if (in.Seedling < 0 || in.Seedling == seedling) && w.tells(in) && shares[k] > 0 {
+				saved += shares[k] * (1 - w.leaves*w.leaves)
 				m.Narrows = append(m.Narrows, in.Label)
 			}
 		}

@@ -10,6 +10,7 @@ import (
 	"shadeledger/scenarios"
 	"shadeledger/scenarios/decide"
 	"shadeledger/scenarios/ledger"
+	"shadeledger/scenarios/report/figures"
 )
 
 // spanColumns are a range's low, middle and high.
@@ -43,7 +44,11 @@ func spreadColumns() (out []column[decide.SpreadRow]) {
 // Spread writes the ranges, what drives them, what would flip the decision and what to measure next.
 func Spread(o Output, plan *scenarios.Plan, s *decide.Spreads) error {
 	n := notes{plan: plan, assumed: plan.Assumed, warnings: append(append([]scenarios.Warning(nil), plan.Warnings...), spreadWarnings(s)...)}
-	if o.Format != Table {
+	switch o.Format {
+	case SVG, PNG:
+		return tornado(o, s)
+	case Table:
+	default:
 		return data(o, n, spreadColumns(), s.Rows)
 	}
 	p := &printer{w: o.Out}
@@ -205,3 +210,27 @@ func span(r decide.Range, places int) string {
 }
 
 func percent(share float64) string { return whole(100*share) + " %" }
+
+// mostBars of a seedling in a figure.
+const mostBars = 8
+
+// tornado draws what moves the margin of every seedling, one input at a time.
+func tornado(o Output, s *decide.Spreads) error {
+	f := figures.Bars{X: "margin: leaf-on light less threshold, points of full light", Key: "one input at a time, the others at best: open bars at its 5th percentile, full bars at its 95th", MarkName: "threshold"}
+	for i := range s.Choices {
+		c := &s.Choices[i]
+		panel := figures.BarPanel{Title: c.Species + ", " + c.Options[c.Decides].Treatment, Middle: c.Best}
+		for _, d := range c.Drivers {
+			if !math.IsNaN(d.Low) && len(panel.Bars) < mostBars {
+				panel.Bars = append(panel.Bars, figures.Bar{Name: d.Input.Label, Low: d.Low, End: d.High})
+			}
+		}
+		if len(panel.Bars) > 0 {
+			f.Panels = append(f.Panels, panel)
+		}
+	}
+	if len(f.Panels) == 0 {
+		return fmt.Errorf("%s no drivers to draw", drawsLine(s))
+	}
+	return figures.WriteBars(o.Out, f, o.kind())
+}

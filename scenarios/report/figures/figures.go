@@ -79,16 +79,21 @@ func Write(w io.Writer, f Figure, kind Kind) error {
 	}
 	f = f.legible()
 	s := newSheet(&f)
+	return output(w, vg.Point{X: s.width, Y: s.height}, kind, s.paint)
+}
+
+// output draws a page of a size as SVG or PNG.
+func output(w io.Writer, size vg.Point, kind Kind, paint func(draw.Canvas) error) error {
 	if kind == PNG {
-		c := vgimg.NewWith(vgimg.UseWH(s.width, s.height), vgimg.UseDPI(dpi))
-		if err := s.paint(draw.New(c)); err != nil {
+		c := vgimg.NewWith(vgimg.UseWH(size.X, size.Y), vgimg.UseDPI(dpi))
+		if err := paint(draw.New(c)); err != nil {
 			return err
 		}
 		_, err := vgimg.PngCanvas{Canvas: c}.WriteTo(w)
 		return err
 	}
-	c := vgsvg.NewWith(vgsvg.UseWH(s.width, s.height), vgsvg.EmbedFonts(true))
-	if err := s.paint(draw.New(c)); err != nil {
+	c := vgsvg.NewWith(vgsvg.UseWH(size.X, size.Y), vgsvg.EmbedFonts(true))
+	if err := paint(draw.New(c)); err != nil {
 		return err
 	}
 	_, err := c.WriteTo(w)
