@@ -33,7 +33,7 @@ var allowed = map[string][]string{
 	"scenarios/decide/draws":   {},
 	"scenarios/decide":         {"radiation/weather", "leaf", "canopy", "canopy/inventory", "scenarios", "scenarios/light", "scenarios/ledger", "scenarios/decide/draws"},
 	"scenarios/report/figures": {},
-	"scenarios/report":         {"scenarios/report/figures", "leaf/fit", "canopy/correct", "canopy/inventory", "scenarios/decide", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
+	"scenarios/report":         {"scenarios/report/figures", "leaf/fit", "canopy", "canopy/correct", "canopy/inventory", "scenarios/decide", "leaf", "leaf/traits", "scenarios", "scenarios/ledger"},
 	"cmd/shadeledger":          {"leaf", "leaf/fit", "canopy/inventory", "scenarios/decide", "leaf/traits", "scenarios", "scenarios/plan", "scenarios/report"},
 }
 

@@ -89,16 +89,11 @@ func (b *board) byCut() []int {
 // decision says in words the lightest cut under which each seedling is comfortable, or why there is none.
 func (b *board) decision() string {
 	p := b.results.Plan
-	lightest := make([]int, len(p.Seedlings))
+	lightest := b.lightest()
 	works := 0
-	for s := range lightest {
-		lightest[s] = -1
-		for _, t := range b.byCut() {
-			if b.cells[t][s].class == ledger.Comfortable {
-				lightest[s] = t
-				works++
-				break
-			}
+	for _, t := range lightest {
+		if t >= 0 {
+			works++
 		}
 	}
 	if works == 0 {

@@ -23,6 +23,10 @@ func FirstScreen(o Output, r *scenarios.Results, d *Doubts) error {
 	for _, l := range lines {
 		p.f("%s\n", strings.TrimRight(l, " "))
 	}
+	if d.told() {
+		p.f("\n")
+		b.sentences(p, o.Units)
+	}
 	return p.err
 }
 
