@@ -14,6 +14,9 @@ func AllWeatherDome() *Dome { return evenDome(12, 18, 8) }
 // MapDome is coarser, for thousands of spots.
 func MapDome() *Dome { return evenDome(9, 12, 5) }
 
+// DrawDome is as fine in its cells with fewer azimuths in each, for draws that are moved to what a finer dome gives.
+func DrawDome() *Dome { return evenDome(9, 12, 2) }
+
 // evenDome has rings of equal width.
 func evenDome(rings, sectors, azimuths int) *Dome {
 	d := &Dome{Zenith: make([]float64, rings+1), Sectors: sectors, Azimuths: azimuths}

@@ -56,11 +56,11 @@ func (m *Mapper) Plan() *Plan { return m.plan }
 
 // Map gives Spots[seedling][spot] of a treatment at spots in m east and north of its centre; with depth BreakEvens their break-even and class too.
 func (m *Mapper) Map(t *Treatment, spots [][2]float64, depth Depth) ([][]Spot, error) {
-	return m.survey(t, spots, func(int) Depth { return depth })
+	return m.survey(t, spots, func(int, int) Depth { return depth })
 }
 
 // survey maps spots, each to its depth.
-func (m *Mapper) survey(t *Treatment, spots [][2]float64, depth func(spot int) Depth) ([][]Spot, error) {
+func (m *Mapper) survey(t *Treatment, spots [][2]float64, depth func(seedling, spot int) Depth) ([][]Spot, error) {
 	s, err := newScene(m.plan, t, m.above)
 	if err != nil {
 		return nil, err
@@ -91,7 +91,7 @@ func (m *Mapper) survey(t *Treatment, spots [][2]float64, depth func(spot int) D
 			a := &accounts[worker]
 			k.Keep(m.prepared[i], a)
 			x := Spot{X: points[point].X, Y: points[point].Y, Light: sums.Percent(), LightLeafOn: k.LeafOnPercent(), Net: a.Total.Net(), Ratio: a.Total.Ratio()}
-			if depth(point/len(m.heights)) == BreakEvens {
+			if depth(i, point/len(m.heights)) == BreakEvens {
 				x.classAt(k.BreakEven(m.prepared[i]))
 			}
 			out[i][point/len(m.heights)] = x

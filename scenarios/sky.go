@@ -25,7 +25,7 @@ func NewSky(p *Plan) *Sky {
 	}
 	few := *n
 	few.DaysPerMonth = mapDays
-	return &Sky{light.NewAbove(few.Series(p.Site, step, p.Par), p.Sampling.Sky, light.Map)}
+	return &Sky{light.NewAbove(few.Series(p.Site, step, p.Par), p.Sampling.Sky, light.Draw)}
 }
 
 // Changed is the sky of another year: light times the month's factor, air warmer by its offset. Patterns of the sky stay.
@@ -43,14 +43,14 @@ func (s *Sky) Mapper(p *Plan) *Mapper {
 	return m
 }
 
-// Draw gives Spots[seedling][station] at stations of a treatment, with break-evens where they are wanted.
-func (m *Mapper) Draw(t *Treatment, stations []canopy.Station, wanted []bool) ([][]Spot, error) {
+// Draw gives Spots[seedling][station] at stations of a treatment, with the break-even of each seedling at one of them.
+func (m *Mapper) Draw(t *Treatment, stations []canopy.Station, at []int) ([][]Spot, error) {
 	spots := make([][2]float64, len(stations))
 	for i, s := range stations {
 		spots[i] = [2]float64{s.X, s.Y}
 	}
-	return m.survey(t, spots, func(spot int) Depth {
-		if wanted[spot] {
+	return m.survey(t, spots, func(seedling, spot int) Depth {
+		if at[seedling] == spot {
 			return BreakEvens
 		}
 		return Ledgers

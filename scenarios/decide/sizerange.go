@@ -120,15 +120,18 @@ func (s *sizer) glance(shape Shape, k int, bearing float64) ([]view, error) {
 		return nil, err
 	}
 	stations := make([]canopy.Station, len(spots))
-	wanted, middle := make([]bool, len(spots)), 0
-	for i, at := range spots {
-		stations[i] = canopy.Station{X: at[0], Y: at[1]}
-		if math.Hypot(at[0], at[1]) < math.Hypot(spots[middle][0], spots[middle][1]) {
+	middle := 0
+	for i, spot := range spots {
+		stations[i] = canopy.Station{X: spot[0], Y: spot[1]}
+		if math.Hypot(spot[0], spot[1]) < math.Hypot(spots[middle][0], spots[middle][1]) {
 			middle = i
 		}
 	}
-	wanted[middle] = true
-	found, err := s.m.Draw(t, stations, wanted)
+	at := make([]int, len(s.m.Plan().Seedlings))
+	for i := range at {
+		at[i] = middle
+	}
+	found, err := s.m.Draw(t, stations, at)
 	if err != nil {
 		return nil, err
 	}

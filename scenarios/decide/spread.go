@@ -101,8 +101,7 @@ type sample struct {
 	rows     int
 	best     []scenarios.Spot // by row, of the best values on the draws' own sky and step
 	full     []scenarios.BalanceRow
-	lead     [][]int  // by treatment and seedling: the station with most light over its threshold
-	wanted   [][]bool // by treatment and station: one of them
+	lead     [][]int // by treatment and seedling: the station with most light over its threshold
 	draw     []drawn
 	finished []bool
 }
@@ -239,16 +238,15 @@ func (s *sample) align(full *scenarios.Results) {
 // leads finds each seedling's best station of each treatment: draws find their break-even there.
 func (s *sample) leads() {
 	for t := range s.p.Treatments {
-		lead, wanted := make([]int, len(s.p.Seedlings)), make([]bool, len(s.at[t]))
+		lead := make([]int, len(s.p.Seedlings))
 		for i := range lead {
 			for k := range s.at[t] {
 				if s.bestMargin(s.row(t, i, k)) > s.bestMargin(s.row(t, i, lead[i])) {
 					lead[i] = k
 				}
 			}
-			wanted[lead[i]] = true
 		}
-		s.lead, s.wanted = append(s.lead, lead), append(s.wanted, wanted)
+		s.lead = append(s.lead, lead)
 	}
 }
 
@@ -291,7 +289,7 @@ func (s *sample) spots(x []float64, year [12]weather.MonthAnomaly) ([]drawnSpot,
 	p := m.Plan()
 	out := make([]drawnSpot, s.rows)
 	for t := range p.Treatments {
-		found, err := m.Draw(&p.Treatments[t], s.at[t], s.wanted[t])
+		found, err := m.Draw(&p.Treatments[t], s.at[t], s.lead[t])
 		if err != nil {
 			return nil, err
 		}

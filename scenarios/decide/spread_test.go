@@ -297,3 +297,63 @@ func measured(s *sample, from *rand.Rand) *scenarios.Plan {
 	p.Weather = &n
 	return p
 }
+
+// What draws save in days, steps and azimuths of the sky moves their figures, once these are moved to the balance's own, by little beside their ranges: each
+// draw is held against a map of the same plan with a finer sky, every quarter hour.
+func TestDrawsAgainstFinerRuns(t *testing.T) {
+	base := small(t, "Birch")
+	s, err := newSample(base, SpreadQuery{Count: 20, Seed: 8, Workers: 2})
+	if err != nil {
+		t.Fatal(err)
+	}
+	fine, err := scenarios.NewMapper(s.p, 2)
+	if err != nil {
+		t.Fatal(err)
+	}
+	exact := func(p *scenarios.Plan) (light, net []float64) {
+		m, err := scenarios.NewMapper(p, 2)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for tr := range p.Treatments {
+			var spots [][2]float64
+			for _, at := range s.at[tr] {
+				spots = append(spots, [2]float64{at.X, at.Y})
+			}
+			found, err := m.Map(&p.Treatments[tr], spots, scenarios.Ledgers)
+			if err != nil {
+				t.Fatal(err)
+			}
+			for _, x := range found[0] {
+				light, net = append(light, x.Light), append(net, x.Net)
+			}
+		}
+		return light, net
+	}
+	lightBest, netBest := exact(fine.Plan())
+	var offLight, offNet []float64
+	for i := range s.draw {
+		c := unchanged(s.p)
+		for k, in := range s.inputs {
+			if in.Key != "weather.radiation" && in.Key != "weather.par_fraction" && in.Key != "weather.temperature" {
+				in.vary(&c, s.draw[i].x[k])
+			} else {
+				s.draw[i].x[k] = in.Doubt.Best
+			}
+		}
+		moved, err := s.spots(s.draw[i].x, meanYear())
+		if err != nil {
+			t.Fatal(err)
+		}
+		light, net := exact(c.of(s.p))
+		for r := range moved {
+			offLight = append(offLight, math.Abs(moved[r].light-light[r]*s.full[r].Light/lightBest[r]))
+			offNet = append(offNet, math.Abs(moved[r].net-(net[r]+s.full[r].Lines.Net()-netBest[r])))
+		}
+	}
+	l, n := draws.NewSpread(offLight), draws.NewSpread(offNet)
+	t.Logf("light off by %.2f points in the median, %.2f at the 95th percentile; net by %.3f and %.3f g C", l.Median, l.High, n.Median, n.High)
+	if l.High > 1.5 || n.High > 0.3 {
+		t.Errorf("light off by %.2f points, net by %.3f g C at the 95th percentile", l.High, n.High)
+	}
+}

@@ -121,10 +121,18 @@ func (t *traitChange) on(p *ledger.Plant) {
 		p.Organs[i].Rate *= t.organs
 		p.Organs[i].Mass *= t.wood
 	}
-	p.Chi = math.Max(leastChi, math.Min(mostChi, p.Chi*t.angle))
+	p.Chi = math.Max(leastChi, math.Min(mostChi, p.Chi*stepped(t.angle)))
 	p.CrownLAI *= t.crown
 	p.Turnover.LeafLifespan *= t.lifespan
 	p.Turnover.FineRootLifespan *= t.fineRoots
 	p.Turnover.ConstructionCost *= t.cost
 	p.Leaves = shifted(p.Leaves, t.leadDays)
+}
+
+// chiStep is the ratio of neighbouring leaf angles that draws take: rules of incidence are then worked out once for many.
+const chiStep = 1.05
+
+// stepped is a factor on the nearest step.
+func stepped(factor float64) float64 {
+	return math.Pow(chiStep, math.Round(math.Log(factor)/math.Log(chiStep)))
 }

@@ -54,7 +54,7 @@ func Prepare(p *Plant, above *light.Above) *Prepared {
 		r.made = madeSet(p)
 	}
 	if p.Chi != 1 {
-		r.angle = canopy.NewIncidence(p.Chi)
+		r.angle = above.Incidence(p.Chi)
 	}
 	days := len(s.Days)
 	r.leafDay, r.leafNight = make([]float64, days), make([]float64, days)

@@ -21,11 +21,28 @@ type Above struct {
 	OpenRings []float64
 	Pattern   []int32
 
-	dome *canopy.Dome
-	open *canopy.CellLight
+	angles *angles
+	dome   *canopy.Dome
+	open   *canopy.CellLight
 	// radiance of every cell by pattern, normalised to unit level-plane flux
 	radiance []float32
 	patterns int
+}
+
+// angles keeps the incidence rules of leaf angles that were asked for under one sky.
+type angles struct {
+	sync.Mutex
+	of map[float64]*canopy.Incidence
+}
+
+// Incidence is the rules of a leaf angle, worked out once under this sky.
+func (a *Above) Incidence(chi float64) *canopy.Incidence {
+	a.angles.Lock()
+	defer a.angles.Unlock()
+	if a.angles.of[chi] == nil {
+		a.angles.of[chi] = canopy.NewIncidence(chi)
+	}
+	return a.angles.of[chi]
 }
 
 // Rings is the number of rings of a shape.
@@ -34,10 +51,11 @@ func (a *Above) Rings() int { return len(a.Zenith) - 1 }
 // Resolution says how finely the sky is divided.
 type Resolution int
 
-// The resolutions: Station for single spots, Map for thousands.
+// The resolutions: Station for single spots, Map for thousands, Draw for the same spots over and over.
 const (
 	Station Resolution = iota
 	Map
+	Draw
 )
 
 // patternSeconds is how long an all-weather sky pattern is kept: the sun moves half a cell in this time. The light's amount
@@ -46,14 +64,17 @@ const patternSeconds = 1800
 
 // NewAbove prepares the sky over a plan.
 func NewAbove(series *weather.Series, sky radiation.Sky, resolution Resolution) *Above {
-	a := &Above{Series: series, Pattern: make([]int32, len(series.Lit.Step))}
+	a := &Above{Series: series, Pattern: make([]int32, len(series.Lit.Step)), angles: &angles{of: map[float64]*canopy.Incidence{}}}
 	switch sky.(type) {
 	case radiation.Uniform, radiation.Overcast:
 		a.dome = canopy.FixedSkyDome()
 	default:
 		a.dome = canopy.AllWeatherDome()
-		if resolution == Map {
+		switch resolution {
+		case Map:
 			a.dome = canopy.MapDome()
+		case Draw:
+			a.dome = canopy.DrawDome()
 		}
 	}
 	a.Zenith = a.dome.Zenith
