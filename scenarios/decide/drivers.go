@@ -61,13 +61,10 @@ func (s *sample) concerning(seedling int) (columns []int) {
 }
 
 // drivers regresses the margin y on what was drawn x: the year's light and warmth, then the columns of the inputs. It gives every input's share of the
-// ranks' variance. Draws too few for the inputs, or a margin that never moves, tell of no drivers.
+// ranks' variance. A margin that never moves tells of no drivers.
 func (s *sample) drivers(c *Choice, columns []int, ends []end, x [][]float64, y []float64) (shares []float64, err error) {
 	c.Fit = math.NaN()
 	shares = make([]float64, len(s.inputs))
-	if len(x) < len(x[0])+2 {
-		return shares, nil
-	}
 	fit, err := draws.Regress(x, y)
 	if errors.Is(err, draws.ErrConstant) {
 		return shares, nil

@@ -142,7 +142,7 @@ func FindSpreads(ctx context.Context, p *scenarios.Plan, q SpreadQuery) (*Spread
 	return out, err
 }
 
-// leastDraws is the number below which no range is told.
+// leastDraws is the number below which no range is told; it is more than the inputs that bear on one seedling.
 const leastDraws = 40
 
 func newSample(p *scenarios.Plan, q SpreadQuery) (*sample, error) {

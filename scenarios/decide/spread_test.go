@@ -171,7 +171,7 @@ func TestInterruptedSpread(t *testing.T) {
 	if s.Done < 60 || s.Done > 70 || len(s.Rows) == 0 || s.Choices[0].Options[0].Chance < 0 {
 		t.Errorf("%d draws, %d rows", s.Done, len(s.Rows))
 	}
-	many := *example(t, "kettle-bench") // fewer draws than inputs: ranges and chances without drivers
+	many := *example(t, "kettle-bench") // fewer draws than inputs: those of each seedling are fewer
 	many.Treatments = many.Treatments[:1]
 	short, cut := context.WithCancel(context.Background())
 	defer cut()
@@ -180,7 +180,7 @@ func TestInterruptedSpread(t *testing.T) {
 			cut()
 		}
 	}})
-	if err != nil || few.Done != leastDraws || len(few.Rows) == 0 || len(few.Choices[0].Drivers) > 0 || !math.IsNaN(few.Choices[0].Fit) {
+	if err != nil || few.Done != leastDraws || len(few.Rows) == 0 || few.Done >= len(few.Inputs) || len(few.Choices[0].Drivers) == 0 {
 		t.Errorf("after %d draws of %d inputs: %v", few.Done, len(few.Inputs), err)
 	}
 	stopped, end := context.WithCancel(context.Background())
