@@ -28,7 +28,6 @@ type change struct {
 	crowns, leafOut, warmth                   float64 // m, days, K
 	slope, aspect                             float64 // rad
 	traits                                    []traitChange
-	year                                      int // of generated weather; 0 is the long mean
 }
 
 // traitChange is what a draw makes of one seedling.
