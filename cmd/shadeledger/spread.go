@@ -16,8 +16,16 @@ import (
 	"shadeledger/scenarios/report"
 )
 
+type spreadOptions struct {
+	*settings
+	io      streams
+	plan    string
+	count   int // draws; 0 takes the plan's
+	indices bool
+}
+
 func newSpread(io streams) *cobra.Command {
-	var count int
+	o := spreadOptions{io: io}
 	cmd := &cobra.Command{
 		Use:   "spread [PLAN]",
 		Short: "Ranges, what drives them, what would flip the decision, what to measure next",
@@ -39,42 +47,54 @@ Ctrl-C ends the run: what was drawn by then is printed and marked, and the exit 
 			if err != nil {
 				return err
 			}
-			if cmd.Flags().Changed("draws") && (count < 100 || count > 100000) {
-				return usagef("--draws %d; it must be 100 to 100000", count)
+			if cmd.Flags().Changed("draws") && (o.count < 100 || o.count > 100000) {
+				return usagef("--draws %d; it must be 100 to 100000", o.count)
 			}
-			return runSpread(s, io, first(args), count)
+			o.settings, o.plan = s, first(args)
+			return runSpread(o)
 		},
 	}
 	addPlanFlags(cmd)
-	cmd.Flags().IntVar(&count, "draws", 0, "draws, in place of the plan's draws.count")
+	cmd.Flags().BoolVar(&o.indices, "indices", false, "first-order and total Sobol indices by groups of inputs too, from as many runs again")
+	cmd.Flags().IntVar(&o.count, "draws", 0, "draws, in place of the plan's draws.count")
 	return cmd
 }
 
 // errInterrupted ends a run that was cut short: its partial answer is printed.
 var errInterrupted = errors.New("interrupted: the answer is that of fewer draws")
 
-func runSpread(s *settings, io streams, name string, count int) error {
-	if err := s.checkOutput(); err != nil {
+func runSpread(o spreadOptions) error {
+	if err := o.checkOutput(); err != nil {
 		return err
 	}
-	p, err := loadPlan(name, s.set)
+	p, err := loadPlan(o.plan, o.set)
 	if err != nil {
 		return err
 	}
-	if count > 0 {
-		p.Draws.Count = count
+	if o.count > 0 {
+		p.Draws.Count = o.count
 	}
-	found, err := s.spread(io, p)
+	found, err := o.spread(o.io, p)
 	if err != nil {
 		return err
 	}
-	if err := s.deliver(io, p, func(out report.Output) error { return report.Spread(out, p, found) }); err != nil {
+	if o.indices && found.Done == found.Query.Count {
+		o.progress(o.io, "shares of variance by group:")
+		if err := o.drawing(o.io, p.Draws.Count, func(ctx context.Context, progress func(int)) error {
+			q := found.Query
+			q.Progress = progress
+			return found.FindShares(ctx, q)
+		}); err != nil {
+			return err
+		}
+	}
+	if err := o.deliver(o.io, p, func(out report.Output) error { return report.Spread(out, p, found) }); err != nil {
 		return err
 	}
 	if found.Done < found.Query.Count {
 		return errInterrupted
 	}
-	if s.strict && len(p.Warnings) > 0 {
+	if o.strict && len(p.Warnings) > 0 {
 		return errWarnings
 	}
 	return nil

@@ -18,6 +18,7 @@ type Input struct {
 	Doubt    draws.Doubt
 	Source   string
 	Seedling int // its index; -1 for the stand and the site
+	Group    Group
 	vary     func(c *change, x float64)
 }
 
@@ -152,14 +153,14 @@ func (l *inputList) site() {
 	p := l.p
 	if p.Ground.Slope > 0 {
 		t := math.Tan(p.Ground.Slope)
-		l.add(Input{Key: "site.slope", Label: "slope", Unit: "%", Doubt: around(100*t, 100*slopeError), Source: practice, Seedling: -1, vary: func(c *change, x float64) { c.slope = math.Atan(math.Max(0, x) / 100) }})
+		l.add(Input{Key: "site.slope", Label: "slope", Unit: "%", Doubt: around(100*t, 100*slopeError), Source: practice, Seedling: -1, Group: Site, vary: func(c *change, x float64) { c.slope = math.Atan(math.Max(0, x) / 100) }})
 		a := p.Ground.Aspect * 180 / math.Pi
-		l.add(Input{Key: "site.aspect", Label: "aspect", Unit: "deg", Doubt: around(a, aspectError), Source: practice, Seedling: -1, vary: func(c *change, x float64) { c.aspect = x * math.Pi / 180 }})
+		l.add(Input{Key: "site.aspect", Label: "aspect", Unit: "deg", Doubt: around(a, aspectError), Source: practice, Seedling: -1, Group: Site, vary: func(c *change, x float64) { c.aspect = x * math.Pi / 180 }})
 	}
-	l.add(Input{Key: "weather.radiation", Label: "mean radiation", Unit: "x normal", Doubt: about(1, radiationRange), Source: "normals, " + practice, Seedling: -1, vary: func(c *change, x float64) { c.radiation *= x }})
-	l.add(Input{Key: "weather.par_fraction", Label: "PAR in radiation", Unit: "1", Doubt: about(p.Par.Fraction, parRange), Source: "0.42 to 0.48, common practice", Seedling: -1,
+	l.add(Input{Key: "weather.radiation", Label: "mean radiation", Unit: "x normal", Doubt: about(1, radiationRange), Source: "normals, " + practice, Seedling: -1, Group: Site, vary: func(c *change, x float64) { c.radiation *= x }})
+	l.add(Input{Key: "weather.par_fraction", Label: "PAR in radiation", Unit: "1", Doubt: about(p.Par.Fraction, parRange), Source: "0.42 to 0.48, common practice", Seedling: -1, Group: Site,
 		vary: func(c *change, x float64) { c.radiation *= x / p.Par.Fraction }})
-	l.add(Input{Key: "weather.temperature", Label: "mean temperature", Unit: "K warmer", Doubt: around(0, warmthError), Source: "normals, " + practice, Seedling: -1, vary: func(c *change, x float64) { c.warmth = x }})
+	l.add(Input{Key: "weather.temperature", Label: "mean temperature", Unit: "K warmer", Doubt: around(0, warmthError), Source: "normals, " + practice, Seedling: -1, Group: Site, vary: func(c *change, x float64) { c.warmth = x }})
 }
 
 // labels of traits, and how a draw takes them.
@@ -186,12 +187,15 @@ func (l *inputList) seedling(i int) {
 	s := &l.p.Seedlings[i]
 	for _, r := range s.Ranges {
 		in := traitInputs[r.Trait]
-		best, unit := 1.0, "x best"
+		best, unit, group := 1.0, "x best", Body
+		if r.Trait <= scenarios.LeafMass {
+			group = Leaves
+		}
 		if r.Trait == scenarios.OwnLeafOut {
 			best, unit = 0, "days later"
 		}
 		l.add(Input{Key: fmt.Sprintf("seedlings[%d].%s", i, in.key), Label: in.label, Unit: unit, Doubt: draws.Doubt{Low: r.Low, Best: best, High: r.High},
-			Source: r.Source, Seedling: i, vary: func(c *change, x float64) { in.vary(&c.traits[i], x) }})
+			Source: r.Source, Seedling: i, Group: group, vary: func(c *change, x float64) { in.vary(&c.traits[i], x) }})
 	}
 }
 

@@ -44,7 +44,10 @@ type Spreads struct {
 	Weather []string // what the generator of years assumed
 	Rows    []SpreadRow
 	Choices []Choice
-	sample  *sample
+	// Shares are Sobol indices by groups of inputs, where they were asked for, from ShareRuns runs.
+	Shares    []GroupShare
+	ShareRuns int
+	sample    *sample
 }
 
 // world is a plan with everything that is not known for sure of it.

@@ -357,3 +357,34 @@ func TestDrawsAgainstFinerRuns(t *testing.T) {
 		t.Errorf("light off by %.2f points, net by %.3f g C at the 95th percentile", l.High, n.High)
 	}
 }
+
+// Sobol indices by group: each total is no less than what the group does alone, within errors, alone they add to no more than all, workers change nothing.
+func TestSharesByGroup(t *testing.T) {
+	shares := func(workers int) []GroupShare {
+		t.Helper()
+		q := SpreadQuery{Count: 400, Seed: 1, Workers: workers}
+		s, err := FindSpreads(context.Background(), small(t, "Maple"), q)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := s.FindShares(context.Background(), q); err != nil {
+			t.Fatal(err)
+		}
+		return s.Shares
+	}
+	one := shares(1)
+	if fmt.Sprint(one) != fmt.Sprint(shares(2)) || len(one) != int(groups) {
+		t.Fatalf("workers change the shares, or some are missing: %v", one)
+	}
+	sum, variance := 0.0, 0.0
+	for _, x := range one {
+		t.Logf("%s: alone %.2f +- %.2f, with others %.2f +- %.2f", x.Group, x.First.Value, x.First.Error, x.Total.Value, x.Total.Error)
+		if x.First.Value > x.Total.Value+3*math.Hypot(x.First.Error, x.Total.Error) || x.Total.Value < -3*x.Total.Error {
+			t.Errorf("%s: alone %v, with others %v", x.Group, x.First, x.Total)
+		}
+		sum, variance = sum+x.First.Value, variance+x.First.Error*x.First.Error
+	}
+	if sum > 1+3*math.Sqrt(variance) {
+		t.Errorf("alone they add to %.2f", sum)
+	}
+}

@@ -57,6 +57,7 @@ func Spread(o Output, plan *scenarios.Plan, s *decide.Spreads) error {
 	for i := range s.Choices {
 		choice(p, o, &s.Choices[i])
 	}
+	shares(p, o, s)
 	p.f("\n")
 	hang(p, "", "light: over the season, where it is most above the threshold. comfortable: draws in which a station inside is. like: treatments, by number, under which nine draws in ten do not agree where this seedling earns more: cannot separate. Margin: leaf-on light less threshold; | is where they meet.")
 	p.f("\n")
@@ -108,6 +109,23 @@ func choice(p *printer, o Output, c *decide.Choice) {
 	hang(p, "  ", fmt.Sprintf("What moves the margin, %s points, and its share (rank regression explains %.0f %%):", span(c.Margin, 0), 100*c.Fit))
 	for _, d := range c.Drivers[:min(len(c.Drivers), 6)] {
 		p.f("  %s\n", driverLine(d, c))
+	}
+}
+
+// shares prints the Sobol indices by group.
+func shares(p *printer, o Output, s *decide.Spreads) {
+	if len(s.Shares) == 0 {
+		return
+	}
+	p.f("\n")
+	hang(p, "", fmt.Sprintf("Shares of the margin's variance by groups of inputs, %d runs (Sobol indices, Saltelli's and Jansen's estimators), percent with standard error:", s.ShareRuns))
+	t := newTable("seedling", "group", "alone", "with others")
+	for _, x := range s.Shares {
+		text := func(v, e float64) string { return fmt.Sprintf("%.0f +- %.0f", 100*v, 100*e) }
+		t.AppendRow(table.Row{x.Species, x.Group.String(), text(x.First.Value, x.First.Error), text(x.Total.Value, x.Total.Error)})
+	}
+	if p.err == nil {
+		p.err = render(o.Out, t, 3, 4)
 	}
 }
 
