@@ -21,7 +21,7 @@ func NewSky(p *Plan) *Sky {
 	source, step := p.Weather, max(p.Sampling.Step, drawStep)
 	n, ok := source.(*weather.Normals)
 	if !ok {
-		n = source.Series(p.Site, p.Sampling.Step, p.Par).Normals()
+		n = source.Series(p.Site, p.Sampling.Step, p.Par).Normals(p.Par)
 	}
 	few := *n
 	few.DaysPerMonth = mapDays
@@ -74,10 +74,10 @@ func YearsOf(p *Plan) (*weather.Generator, error) {
 		}
 	}
 	s := p.Weather.Series(p.Site, p.Sampling.Step, p.Par)
-	if g, err := weather.FitGenerator(s.Daily(), p.Site); err == nil {
+	if g, err := weather.FitGenerator(s.Daily(p.Par), p.Site); err == nil {
 		return g, nil
 	}
-	return weather.GeneratorFromNormals(climate(s.Normals()), p.Site)
+	return weather.GeneratorFromNormals(climate(s.Normals(p.Par)), p.Site)
 }
 
 // climate is what normals tell a generator; of rain and of the spread of days they say nothing.
