@@ -146,6 +146,7 @@ const (
 	Respiration               // of leaves in the dark
 	Slope                     // initial, of the light response
 	LeafMass                  // per area
+	NeedleMass                // per area, respiration per mass held: needles of seedlings breathe so in the library
 	Organs                    // respiration of stem and root
 	Wood                      // mass of stem and root beside leaves
 	LeafAngle                 // chi of the seedling

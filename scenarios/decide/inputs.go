@@ -128,9 +128,10 @@ func (l *inputList) stand(c scenarios.Correction) {
 			d, source = draws.Doubt{Low: lai * c.Low / c.Factor, Best: lai, High: lai * c.High / c.Factor}, c.Source+", their 90 % interval"
 		}
 		l.add(Input{Key: "stand.lai", Label: "leaf area of the stand", Unit: "m2 m-2", Doubt: d, Source: source, Seedling: -1, vary: func(c *change, x float64) { c.leafArea = x / lai }})
-		omega := clumping(p.Stand.Layers)
-		l.add(Input{Key: "stand.clumping", Label: "clumping of its leaves", Unit: "1", Doubt: about(omega, clumpingRange), Source: practice, Seedling: -1,
-			vary: func(c *change, x float64) { c.clumping = x / omega }})
+		if omega := clumping(p.Stand.Layers); c.Source == "" { // readings tell leaf area and clumping as one
+			l.add(Input{Key: "stand.clumping", Label: "clumping of its leaves", Unit: "1", Doubt: about(omega, clumpingRange), Source: practice, Seedling: -1,
+				vary: func(c *change, x float64) { c.clumping = x / omega }})
+		}
 	}
 	if bushes := understoryArea(p); bushes > 0 {
 		l.add(Input{Key: "stand.understory.lai", Label: "leaf area under the trees", Unit: "m2 m-2", Doubt: about(bushes, bushRange), Source: practice, Seedling: -1,
@@ -169,9 +170,10 @@ var traitInputs = map[scenarios.Trait]struct {
 	vary       func(t *traitChange, x float64)
 }{
 	scenarios.Saturated:    {"leaf.amax", "light-saturated rate", func(t *traitChange, x float64) { t.leaf.Amax = x }},
-	scenarios.Respiration:  {"leaf.rd", "leaf respiration", func(t *traitChange, x float64) { t.leaf.Rd = x }},
+	scenarios.Respiration:  {"leaf.rd", "leaf respiration", func(t *traitChange, x float64) { t.leaf.Rd *= x }},
 	scenarios.Slope:        {"leaf.phi", "quantum yield", func(t *traitChange, x float64) { t.leaf.Phi = x }},
 	scenarios.LeafMass:     {"leaf.lma", "leaf mass per area", func(t *traitChange, x float64) { t.leaf.LMA = x }},
+	scenarios.NeedleMass:   {"leaf.lma", "leaf mass per area", func(t *traitChange, x float64) { t.leaf.LMA, t.leaf.Rd = x, t.leaf.Rd*x }},
 	scenarios.Organs:       {"respiration", "respiration of stem and root", func(t *traitChange, x float64) { t.organs = x }},
 	scenarios.Wood:         {"mass", "stem and root beside leaves", func(t *traitChange, x float64) { t.wood = x }},
 	scenarios.LeafAngle:    {"chi", "how flat leaves lie (chi)", func(t *traitChange, x float64) { t.angle = x }},
@@ -188,7 +190,7 @@ func (l *inputList) seedling(i int) {
 	for _, r := range s.Ranges {
 		in := traitInputs[r.Trait]
 		best, unit, group := 1.0, "x best", Body
-		if r.Trait <= scenarios.LeafMass {
+		if r.Trait <= scenarios.NeedleMass {
 			group = Leaves
 		}
 		if r.Trait == scenarios.OwnLeafOut {

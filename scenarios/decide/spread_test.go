@@ -7,6 +7,7 @@ import (
 	"math/rand/v2"
 	"slices"
 	"testing"
+	"time"
 
 	"shadeledger/radiation/weather"
 	"shadeledger/scenarios"
@@ -192,7 +193,7 @@ func TestInterruptedSpread(t *testing.T) {
 
 // The flip is where the class changes: just short of it the class is that of the best values, at it another one.
 func TestFlipHoldsForward(t *testing.T) {
-	p := small(t, "Red oak 2-0")
+	p := small(t, "White pine")
 	s, err := FindSpreads(context.Background(), p, SpreadQuery{Count: 120, Seed: 1, Workers: 2})
 	if err != nil {
 		t.Fatal(err)
@@ -228,6 +229,7 @@ func TestRangesCoverTheTruth(t *testing.T) {
 	base := small(t, "Maple")
 	base.Treatments = base.Treatments[1:]
 	base.Stations = []scenarios.Station{{Name: "centre"}}
+	base.Sampling.Step = time.Hour
 	corrected, _, err := scenarios.Corrected(base)
 	if err != nil {
 		t.Fatal(err)
@@ -245,7 +247,7 @@ func TestRangesCoverTheTruth(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		q := SpreadQuery{Count: 80, Seed: seed, Workers: 2}
+		q := SpreadQuery{Count: 160, Seed: seed, Workers: 2}
 		m, err := newSample(measured(s, from), q)
 		if err != nil {
 			t.Fatal(err)

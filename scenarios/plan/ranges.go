@@ -50,6 +50,9 @@ func (r *plantReader) ranges(s *scenarios.Seedling) {
 			x.Low, x.High = math.Min(v.Low/v.Value, 1/leastRange), math.Max(v.High/v.Value, leastRange)
 			x.Source = "species library: " + v.Source
 		}
+		if x.Trait == scenarios.LeafMass && r.species != nil && r.species.Needled() {
+			x.Trait = scenarios.NeedleMass
+		}
 		s.Ranges = append(s.Ranges, x)
 	}
 	if _, deciduous := s.Leaves.(leaf.Deciduous); deciduous {
