@@ -67,7 +67,7 @@ func (x *Spot) classAt(b ledger.BreakEven) {
 func YearsOf(p *Plan) (*weather.Generator, error) {
 	switch w := p.Weather.(type) {
 	case *weather.Normals:
-		return weather.GeneratorFromNormals(climate(w), p.Site)
+		return weather.GeneratorFromNormals(climate(p, w), p.Site)
 	case *weather.Daily:
 		if g, err := weather.FitGenerator(w.Rows, p.Site); err == nil {
 			return g, nil
@@ -77,14 +77,14 @@ func YearsOf(p *Plan) (*weather.Generator, error) {
 	if g, err := weather.FitGenerator(s.Daily(p.Par), p.Site); err == nil {
 		return g, nil
 	}
-	return weather.GeneratorFromNormals(climate(s.Normals(p.Par)), p.Site)
+	return weather.GeneratorFromNormals(climate(p, s.Normals(p.Par)), p.Site)
 }
 
-// climate is what normals tell a generator; of rain and of the spread of days they say nothing.
-func climate(n *weather.Normals) weather.Climate {
-	c := weather.Climate{Normals: n}
+// climate is what normals tell a generator, with the plan's monthly rain; of wet days and of the spread of days they say nothing.
+func climate(p *Plan, n *weather.Normals) weather.Climate {
+	c := weather.Climate{Normals: n, Rain: p.Water.Rain}
 	for m := range c.Rain {
-		c.Rain[m], c.WetDays[m], c.Spread[m] = math.NaN(), math.NaN(), math.NaN()
+		c.WetDays[m], c.Spread[m] = math.NaN(), math.NaN()
 	}
 	return c
 }
