@@ -125,18 +125,13 @@ const tried = 3
 func (s *sample) candidates(row int, ends []end, changes func(*drawnSpot) bool) (out []candidate) {
 	best := math.Abs(s.bestMargin(row))
 	for k := range s.inputs {
-		for above, at := range map[bool]*drawnSpot{false: &ends[k].low[row], true: &ends[k].high[row]} {
+		for i, at := range [2]*drawnSpot{&ends[k].low[row], &ends[k].high[row]} {
 			if changes(at) {
-				out = append(out, candidate{k, above, best / (best + math.Abs(at.margin()))})
+				out = append(out, candidate{k, i == 1, best / (best + math.Abs(at.margin()))})
 			}
 		}
 	}
-	sort.Slice(out, func(a, b int) bool {
-		if out[a].way != out[b].way {
-			return out[a].way < out[b].way
-		}
-		return out[a].input < out[b].input
-	})
+	sort.SliceStable(out, func(a, b int) bool { return out[a].way < out[b].way })
 	return out[:min(len(out), tried)]
 }
 
