@@ -74,10 +74,7 @@ get the 5th and 95th percentile.`,
 }
 
 func runBalance(o balanceOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

@@ -38,10 +38,7 @@ against it. Then all cautions: addressed, not applicable, to check or OPEN, as t
 }
 
 func runCautions(o cautionsOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

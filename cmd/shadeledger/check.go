@@ -40,10 +40,7 @@ same folder it gives the same results.`,
 }
 
 func runCheck(o checkOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

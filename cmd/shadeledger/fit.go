@@ -55,10 +55,7 @@ known point, quantity (ppfd or lux), above_shrubs. Without CSV the plan's own re
 }
 
 func runFitCanopy(o fitOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

@@ -47,10 +47,7 @@ The figures are of the plan's season; --by takes other periods: leaf-on, year, m
 }
 
 func runLight(o lightOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

@@ -35,6 +35,14 @@ func (e faultsError) Error() string {
 	return b.String()
 }
 
+// open reads the named plan, after a look at where output goes.
+func (s *settings) open(name string) (*scenarios.Plan, error) {
+	if err := s.checkOutput(); err != nil {
+		return nil, err
+	}
+	return loadPlan(name, s.set)
+}
+
 // loadPlan reads the named plan; "" is plan.yaml in the current folder if there is one, else the built-in example.
 func loadPlan(name string, set []string) (*scenarios.Plan, error) {
 	var p *scenarios.Plan

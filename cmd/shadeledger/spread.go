@@ -64,10 +64,7 @@ Ctrl-C ends the run: what was drawn by then is printed and marked, and the exit 
 var errInterrupted = errors.New("interrupted: the answer is that of fewer draws")
 
 func runSpread(o spreadOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

@@ -35,10 +35,7 @@ source. --format csv lists every class with height, crown and leaf area.`,
 }
 
 func runStand(o standOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

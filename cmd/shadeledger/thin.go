@@ -94,10 +94,7 @@ func (o *thinOptions) check(cmd *cobra.Command) error {
 }
 
 func runThin(o thinOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

@@ -40,10 +40,7 @@ ellipses and strips: the best and the worst bearing for each seedling.`,
 }
 
 func runWhere(o whereOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}

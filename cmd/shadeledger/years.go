@@ -43,10 +43,7 @@ beyond the horizon. Light is that of maps, a few weighted days a month. No other
 }
 
 func runYears(o yearsOptions) error {
-	if err := o.checkOutput(); err != nil {
-		return err
-	}
-	p, err := loadPlan(o.plan, o.set)
+	p, err := o.open(o.plan)
 	if err != nil {
 		return err
 	}
