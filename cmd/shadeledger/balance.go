@@ -92,7 +92,7 @@ func runBalance(o balanceOptions) error {
 	if doubts != nil && doubts.Spreads.Done < o.draws {
 		return errInterrupted
 	}
-	return o.verdict(r)
+	return o.verdict(r.Warnings)
 }
 
 // balanceDraws are fewer than those of spread, for an answer in seconds.

@@ -49,5 +49,5 @@ func runCautions(o cautionsOptions) error {
 	if err := o.deliver(o.io, p, func(out report.Output) error { return report.Cautions(out, r) }); err != nil {
 		return err
 	}
-	return o.verdict(r)
+	return o.verdict(r.Warnings)
 }

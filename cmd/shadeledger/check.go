@@ -57,8 +57,5 @@ func runCheck(o checkOptions) error {
 	if err := o.deliver(o.io, p, write); err != nil {
 		return err
 	}
-	if o.strict && len(p.Warnings) > 0 {
-		return errWarnings
-	}
-	return nil
+	return o.verdict(p.Warnings)
 }

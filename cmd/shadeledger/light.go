@@ -58,12 +58,12 @@ func runLight(o lightOptions) error {
 	if err := o.deliver(o.io, p, func(out report.Output) error { return report.Light(out, r) }); err != nil {
 		return err
 	}
-	return o.verdict(r)
+	return o.verdict(r.Warnings)
 }
 
 // verdict ends a run: under --strict, warnings are an error.
-func (s *settings) verdict(r *scenarios.Results) error {
-	if s.strict && len(r.Warnings) > 0 {
+func (s *settings) verdict(warnings []scenarios.Warning) error {
+	if s.strict && len(warnings) > 0 {
 		return errWarnings
 	}
 	return nil

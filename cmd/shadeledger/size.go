@@ -101,5 +101,5 @@ func runSize(o sizeOptions) error {
 	if o.ranges && t.Drawn < o.draws {
 		return errInterrupted
 	}
-	return nil
+	return o.verdict(p.Warnings)
 }

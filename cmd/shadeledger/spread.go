@@ -91,10 +91,7 @@ func runSpread(o spreadOptions) error {
 	if found.Done < found.Query.Count {
 		return errInterrupted
 	}
-	if o.strict && len(p.Warnings) > 0 {
-		return errWarnings
-	}
-	return nil
+	return o.verdict(p.Warnings)
 }
 
 // spread finds ranges; an interrupt ends the draws.

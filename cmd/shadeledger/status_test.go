@@ -66,6 +66,14 @@ func TestStrict(t *testing.T) {
 	call(t, 0, "keys")
 }
 
+// Every command that runs a plan keeps to --strict; the stand's height draws a warning.
+func TestStrictEverywhere(t *testing.T) {
+	set := []string{"--strict", "--quiet", "--format", "csv", "--set", "stand.height=70 m", "--set", "sampling.step=60 min", "--set", "sampling.grid=10 m", "--set", "years.horizon=1", "--set", "size.up_to=0.3 H"}
+	for _, command := range [][]string{{"check"}, {"stand"}, {"where"}, {"years"}, {"size", "--shape", "circle"}} {
+		call(t, 3, append(command, set...)...)
+	}
+}
+
 // firstSeedling is the name of the built-in example's first seedling.
 func firstSeedling(t *testing.T) string {
 	t.Helper()

@@ -99,7 +99,10 @@ func runThin(o thinOptions) error {
 		return err
 	}
 	if o.cut {
-		return o.deliver(o.io, p, func(out report.Output) error { return report.CutTrees(out, p) })
+		if err := o.deliver(o.io, p, func(out report.Output) error { return report.CutTrees(out, p) }); err != nil {
+			return err
+		}
+		return o.verdict(p.Warnings)
 	}
 	if o.layers {
 		r, err := scenarios.Run(p, scenarios.Options{Workers: o.workers, Depth: scenarios.Light, Gain: true})
@@ -109,7 +112,7 @@ func runThin(o thinOptions) error {
 		if err := o.deliver(o.io, p, func(out report.Output) error { return report.Layers(out, r, o.by) }); err != nil {
 			return err
 		}
-		return o.verdict(r)
+		return o.verdict(r.Warnings)
 	}
 	if !p.Stand.Cruised() {
 		return usagef("thin works on trees: give stand.stand_table or stand.basal_area in the plan")
@@ -129,7 +132,7 @@ func runThin(o thinOptions) error {
 	if err := o.deliver(o.io, p, func(out report.Output) error { return report.Thin(out, p, t, q) }); err != nil {
 		return err
 	}
-	return o.verdict(t.Results)
+	return o.verdict(t.Results.Warnings)
 }
 
 // runResidual answers how much may stay.
@@ -149,5 +152,8 @@ func runResidual(o thinOptions, p *scenarios.Plan, q decide.ThinQuery) error {
 	if err != nil {
 		return err
 	}
-	return o.deliver(o.io, p, func(out report.Output) error { return report.Residual(out, p, a, q, correction) })
+	if err := o.deliver(o.io, p, func(out report.Output) error { return report.Residual(out, p, a, q, correction) }); err != nil {
+		return err
+	}
+	return o.verdict(p.Warnings)
 }

@@ -51,5 +51,8 @@ func runWhere(o whereOptions) error {
 	if len(places.Shares) == 0 {
 		return usagef("the plan has no opening; places are found in openings")
 	}
-	return o.deliver(o.io, p, func(out report.Output) error { return report.Places(out, p, places) })
+	if err := o.deliver(o.io, p, func(out report.Output) error { return report.Places(out, p, places) }); err != nil {
+		return err
+	}
+	return o.verdict(p.Warnings)
 }

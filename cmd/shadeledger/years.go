@@ -55,5 +55,8 @@ func runYears(o yearsOptions) error {
 	if o.stations {
 		write = report.YearStations
 	}
-	return o.deliver(o.io, p, func(out report.Output) error { return write(out, p, f) })
+	if err := o.deliver(o.io, p, func(out report.Output) error { return write(out, p, f) }); err != nil {
+		return err
+	}
+	return o.verdict(p.Warnings)
 }
