@@ -143,46 +143,6 @@ func TestHypercubePrefixIsFair(t *testing.T) {
 	}
 }
 
-func TestRoots(t *testing.T) {
-	for name, c := range map[string]struct {
-		f          func(float64) float64
-		a, b, root float64
-	}{
-		"square root": {func(x float64) float64 { return x*x - 2 }, 0, 2, math.Sqrt2},
-		"falling":     {func(x float64) float64 { return 1 - math.Exp(x-1) }, -5, 9, 1},
-		"ends turned": {func(x float64) float64 { return x*x*x - 8 }, 10, 0, 2},
-		"flat":        {func(x float64) float64 { return math.Pow(x-0.3, 9) }, -1, 2, 0.3},
-		"jump":        {func(x float64) float64 { return math.Copysign(1, x-0.123) }, 0, 1, 0.123},
-		"infinite":    {func(x float64) float64 { return math.Log(x) }, 0, 3, 1},
-		"at an end":   {func(x float64) float64 { return x }, 0, 3, 0},
-	} {
-		calls := 0
-		z := Root(func(x float64) float64 { calls++; return c.f(x) }, c.a, c.b, 1e-9)
-		if !z.Converged || z.Evaluations != calls || calls > 110 {
-			t.Errorf("%s: %+v, %d calls", name, z, calls)
-		}
-		near(t, name, z.X, c.root, 1e-9)
-	}
-	if z := Root(func(x float64) float64 { return x*x - 2 }, 0, 2, 1e-9); z.Evaluations > 12 {
-		t.Errorf("a smooth root takes %d evaluations", z.Evaluations)
-	}
-	if z := Root(math.Exp, 0, 1, 1e-9); z.Converged || !math.IsNaN(z.X) || z.Evaluations != 2 {
-		t.Errorf("no root: %+v", z)
-	}
-	hole := func(x float64) float64 {
-		if math.Abs(x) < 0.9 {
-			return math.NaN()
-		}
-		return x
-	}
-	if z := Root(hole, -1, 1, 1e-9); z.Converged {
-		t.Errorf("a hole: %+v", z)
-	}
-	if z := Root(func(x float64) float64 { return x - 0.7 }, 0, 1e9, 0); !z.Converged {
-		t.Errorf("no tolerance: %+v", z)
-	}
-}
-
 func BenchmarkHypercube(b *testing.B) {
 	for b.Loop() {
 		Hypercube(2000, 60, 1)
