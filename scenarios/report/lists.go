@@ -54,7 +54,7 @@ var assumedColumns = []column[scenarios.Assumed]{
 
 // Check writes what was assumed in a sound plan, its warnings and its cautions.
 func Check(o Output, plan *scenarios.Plan) error {
-	n := notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
+	n := planNotes(plan)
 	switch o.Format {
 	case CSV:
 		if err := writeCSV(o.Out, assumedColumns, plan.Assumed); err != nil {

@@ -83,6 +83,11 @@ type notes struct {
 	named []string
 }
 
+// planNotes are the notes of a plan, before it is run.
+func planNotes(p *scenarios.Plan) notes {
+	return notes{plan: p, assumed: p.Assumed, warnings: p.Warnings}
+}
+
 func notesOf(r *scenarios.Results) notes {
 	return notes{plan: r.Plan, assumed: r.Assumed, warnings: r.Warnings, neutral: r.Neutral}
 }

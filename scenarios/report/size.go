@@ -53,7 +53,7 @@ func sizeColumns(height float64) []column[decide.SizeRow] {
 
 // Sizes writes the smallest openings.
 func Sizes(o Output, plan *scenarios.Plan, t *decide.Sizes) error {
-	n := notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
+	n := planNotes(plan)
 	H := plan.Stand.Height
 	if o.Format != Table {
 		return data(o, n, sizeColumns(H), t.Rows)

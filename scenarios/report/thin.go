@@ -131,7 +131,7 @@ func Residual(o Output, plan *scenarios.Plan, a *decide.Residual, q decide.ThinQ
 	if a.Results != nil {
 		n = notesOfThin(plan, a.Results, c)
 	} else {
-		n = notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
+		n = planNotes(plan)
 	}
 	rows := []residualRow{{plan: plan, answer: a}}
 	if o.Format != Table {
@@ -267,7 +267,7 @@ var cutColumns = []column[cutRow]{
 
 // CutTrees writes which trees each thinned treatment of a plan takes, by species and class.
 func CutTrees(o Output, plan *scenarios.Plan) error {
-	n := notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
+	n := planNotes(plan)
 	var rows []cutRow
 	for i := range plan.Treatments {
 		t := &plan.Treatments[i]

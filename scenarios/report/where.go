@@ -68,7 +68,7 @@ func placeRows(p *decide.Places) (out []placeRow) {
 
 // Places writes the plant-here zones of every opening.
 func Places(o Output, plan *scenarios.Plan, p *decide.Places) error {
-	n := notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
+	n := planNotes(plan)
 	if o.Format != Table {
 		return data(o, n, placeColumns, placeRows(p))
 	}

@@ -89,7 +89,7 @@ func yearLines(f *decide.Future) []yearLine {
 
 // Years writes how long every station keeps every seedling comfortable, and how tall it is by then.
 func Years(o Output, plan *scenarios.Plan, f *decide.Future) error {
-	n := notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
+	n := planNotes(plan)
 	if o.Format != Table {
 		return data(o, n, yearColumns, yearLines(f))
 	}
@@ -127,7 +127,7 @@ func YearStations(o Output, plan *scenarios.Plan, f *decide.Future) error {
 	if o.Format != Table {
 		return Years(o, plan, f)
 	}
-	n := notes{plan: plan, assumed: plan.Assumed, warnings: plan.Warnings}
+	n := planNotes(plan)
 	p := &printer{w: o.Out}
 	p.f("%s\n%s\n", Name(plan), seasonLine(plan))
 	t := newTable("treatment", "station", "seedling", "lost", "new stock", lengthUnit(o.Units), "over")
