@@ -31,7 +31,6 @@ func (t *Sizes) Range(ctx context.Context, p *scenarios.Plan, q SpreadQuery) err
 	found := make([][]int, q.Count) // by draw: the steps of every row; nil where it was not run
 	failed := make([]error, q.Count)
 	var done atomic.Int64
-	var most int
 	light.Share(q.Count, q.Workers, func(_, i int) {
 		if ctx.Err() != nil {
 			return
@@ -51,7 +50,7 @@ func (t *Sizes) Range(ctx context.Context, p *scenarios.Plan, q SpreadQuery) err
 		return nil
 	}
 	step := stepOfHeight * t.Plan.Stand.Height
-	most = int(math.Floor(t.Query.UpTo/step + 1e-9))
+	most := int(math.Floor(t.Query.UpTo/step + 1e-9))
 	for r := range t.Rows {
 		if row := &t.Rows[r]; row.Found { // draws look at fewer spots: they are moved to where the best values' own answer is
 			move := int(math.Round(row.Size/step)) - best[r]
