@@ -91,7 +91,7 @@ type inputList struct {
 // add takes the plan's own doubt of the key in place of a usual one. Inputs without doubt are left out.
 func (l *inputList) add(in Input) {
 	for _, d := range l.p.Doubts {
-		if d.Key != in.Key || d.Best == 0 {
+		if d.Key != in.Key || d.Best == 0 || in.Seedling >= 0 { // a seedling's ranges hold its plan's doubt already
 			continue
 		}
 		scale := in.Doubt.Best / d.Best // the plan's value in the input's own unit

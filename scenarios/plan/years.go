@@ -87,12 +87,20 @@ const usualDraws, usualSeed = 2000, 1
 func (r *reader) drawn(v val, p *scenarios.Plan) {
 	f := r.fields(v)
 	p.Draws = scenarios.Draws{Count: usualDraws, Seed: usualSeed}
-	for key, to := range map[string]func(float64){"count": func(x float64) { p.Draws.Count = int(x) }, "seed": func(x float64) { p.Draws.Seed = uint64(x) }} {
-		x, ok := r.number(f[key])
-		if ok && x != math.Trunc(x) {
-			r.fault(f[key], "", "a whole number")
-		} else if ok {
-			to(x)
-		}
+	if x, ok := r.whole(f["count"]); ok {
+		p.Draws.Count = int(x)
 	}
+	if x, ok := r.whole(f["seed"]); ok {
+		p.Draws.Seed = uint64(x)
+	}
+}
+
+// whole reads a whole number.
+func (r *reader) whole(v val) (float64, bool) {
+	x, ok := r.number(v)
+	if ok && x != math.Trunc(x) {
+		r.fault(v, "", "a whole number")
+		return 0, false
+	}
+	return x, ok
 }

@@ -59,7 +59,7 @@ func Spread(o Output, plan *scenarios.Plan, s *decide.Spreads) error {
 	}
 	shares(p, o, s)
 	p.f("\n")
-	hang(p, "", "light: over the season, where it is most above the threshold. comfortable: draws in which a station inside is. like: treatments, by number, under which nine draws in ten do not agree where this seedling earns more: cannot separate. Margin: leaf-on light less threshold; | is where they meet.")
+	hang(p, "", "light: over the season, where it is most above the threshold. comf.: share of draws in which a station inside is comfortable. like: treatments, by number, under which nine draws in ten do not agree where this seedling earns more: cannot separate. Margin: leaf-on light less threshold; | is where they meet.")
 	p.f("\n")
 	if p.err != nil {
 		return p.err
@@ -93,13 +93,13 @@ func spreadWarnings(s *decide.Spreads) (out []scenarios.Warning) {
 // choice prints one seedling.
 func choice(p *printer, o Output, c *decide.Choice) {
 	p.f("\n%s\n", c.Species)
-	t := newTable("", "treatment", "station", "light %", "net g C a year", "comfortable", "like")
+	t := newTable("treatment", "station", "light %", "net g C a year", "comf. %", "like")
 	for i := range c.Options {
 		x := &c.Options[i]
-		t.AppendRow(table.Row{i + 1, clip(x.Treatment, 16), x.Station, span(x.Light, 0), span(x.Net, 1), percent(x.Chance), letterList(c, x)})
+		t.AppendRow(table.Row{itoa(i+1) + " " + clip(x.Treatment, 13), x.Station, span(x.Light, 0), span(x.Net, 1), whole(100 * x.Chance), letterList(c, x)})
 	}
 	if p.err == nil {
-		p.err = render(o.Out, t, 1, 6)
+		p.err = render(o.Out, t, 5)
 	}
 	hang(p, "  ", verdict(c))
 	hang(p, "  ", flipLine(c, o)+" "+measureLine(c))

@@ -107,7 +107,7 @@ func Years(o Output, plan *scenarios.Plan, f *decide.Future) error {
 			shown = ""
 		}
 		last = r.Treatment
-		t.AppendRow(append(table.Row{shown, r.Species}, yearCells(o, f, r)...))
+		t.AppendRow(append(table.Row{clip(shown, 14), clip(r.Species, 13)}, yearCells(o, f, r)...))
 	}
 	if p.err == nil {
 		p.err = render(o.Out, t, 7, 8)
