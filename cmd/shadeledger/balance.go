@@ -104,7 +104,7 @@ func (o *balanceOptions) doubts(p *scenarios.Plan) (*report.Doubts, error) {
 		return nil, nil
 	}
 	p.Draws.Count = o.draws
-	s, err := o.spread(o.io, p)
+	s, err := o.spread(o.io, p, 0)
 	if err != nil {
 		return nil, err
 	}

@@ -20,7 +20,8 @@ type spreadOptions struct {
 	*settings
 	io      streams
 	plan    string
-	count   int // draws; 0 takes the plan's
+	count   int     // draws; 0 takes the plan's
+	year    float64 // after the cut
 	indices bool
 }
 
@@ -50,12 +51,16 @@ Ctrl-C ends the run: what was drawn by then is printed and marked, and the exit 
 			if cmd.Flags().Changed("draws") && (o.count < 100 || o.count > 100000) {
 				return usagef("--draws %d; it must be 100 to 100000", o.count)
 			}
+			if o.year < 0 || o.year > 60 {
+				return usagef("--year %g; it must be 0 to 60 years after the cut", o.year)
+			}
 			o.settings, o.plan = s, first(args)
 			return runSpread(o)
 		},
 	}
 	addPlanFlags(cmd)
 	cmd.Flags().BoolVar(&o.indices, "indices", false, "first-order and total Sobol indices by groups of inputs too, from as many runs again")
+	cmd.Flags().Float64Var(&o.year, "year", 0, "years after the cut: how fast crowns close is drawn too, for stock of the plan's size planted then")
 	cmd.Flags().IntVar(&o.count, "draws", 0, "draws, in place of the plan's draws.count")
 	return cmd
 }
@@ -71,7 +76,7 @@ func runSpread(o spreadOptions) error {
 	if o.count > 0 {
 		p.Draws.Count = o.count
 	}
-	found, err := o.spread(o.io, p)
+	found, err := o.spread(o.io, p, o.year)
 	if err != nil {
 		return err
 	}
@@ -95,9 +100,9 @@ func runSpread(o spreadOptions) error {
 }
 
 // spread finds ranges; an interrupt ends the draws.
-func (s *settings) spread(io streams, p *scenarios.Plan) (found *decide.Spreads, err error) {
+func (s *settings) spread(io streams, p *scenarios.Plan, year float64) (found *decide.Spreads, err error) {
 	err = s.drawing(io, p.Draws.Count, func(ctx context.Context, progress func(int)) error {
-		found, err = decide.FindSpreads(ctx, p, decide.SpreadQuery{Count: p.Draws.Count, Seed: p.Draws.Seed, Workers: s.workers, Progress: progress})
+		found, err = decide.FindSpreads(ctx, p, decide.SpreadQuery{Count: p.Draws.Count, Seed: p.Draws.Seed, Workers: s.workers, After: year, Progress: progress})
 		return err
 	})
 	return found, err

@@ -28,6 +28,7 @@ type change struct {
 	height, base                              float64 // m
 	crowns, leafOut, warmth                   float64 // m, days, K
 	slope, aspect                             float64 // rad
+	closing, regrowth                         float64 // speed of border crowns, years until leaves are back: factors
 	traits                                    []traitChange
 }
 
@@ -46,7 +47,7 @@ func (in Input) key() string {
 }
 
 func unchanged(p *scenarios.Plan) change {
-	c := change{leafArea: 1, clumping: 1, understory: 1, radiation: 1, height: p.Stand.Height, base: p.Stand.CrownBase, slope: p.Ground.Slope, aspect: p.Ground.Aspect}
+	c := change{leafArea: 1, clumping: 1, understory: 1, radiation: 1, closing: 1, regrowth: 1, height: p.Stand.Height, base: p.Stand.CrownBase, slope: p.Ground.Slope, aspect: p.Ground.Aspect}
 	for range p.Seedlings {
 		c.traits = append(c.traits, traitChange{leaf.Factors{Amax: 1, Rd: 1, Phi: 1, LMA: 1}, 1, 1, 1, 1, 1, 1, 1, 0})
 	}

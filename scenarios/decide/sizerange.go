@@ -19,7 +19,7 @@ const coarse = 5
 // Range finds the sizes again for draws of everything that is not known for sure, each in a generated year, and gives every row its 5th and 95th
 // percentile. A cancelled context keeps the draws that were done, at least leastDraws or none.
 func (t *Sizes) Range(ctx context.Context, p *scenarios.Plan, q SpreadQuery) error {
-	w, err := newWorld(p, q.Seed)
+	w, err := newWorld(p, q.Seed, 0)
 	if err != nil {
 		return err
 	}

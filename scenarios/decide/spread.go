@@ -19,6 +19,7 @@ type SpreadQuery struct {
 	Count    int
 	Seed     uint64
 	Workers  int
+	After    float64        // years after the cut that the draws are of, with stock of the plan's size; 0 is the first year
 	Progress func(done int) // called now and then; nil for none
 }
 
@@ -56,10 +57,11 @@ type world struct {
 	sky    *scenarios.Sky
 	years  *weather.Generator
 	seed   uint64
+	after  float64 // years after the cut
 	inputs []Input
 }
 
-func newWorld(p *scenarios.Plan, seed uint64) (*world, error) {
+func newWorld(p *scenarios.Plan, seed uint64, after float64) (*world, error) {
 	corrected, c, err := scenarios.Corrected(p)
 	if err != nil {
 		return nil, err
@@ -68,7 +70,11 @@ func newWorld(p *scenarios.Plan, seed uint64) (*world, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &world{p: corrected, sky: scenarios.NewSky(corrected), years: years, seed: seed, inputs: inputs(corrected, c)}, nil
+	w := &world{p: corrected, sky: scenarios.NewSky(corrected), years: years, seed: seed, after: after, inputs: inputs(corrected, c)}
+	if after > 0 {
+		w.inputs = append(w.inputs, closingInputs(corrected)...)
+	}
+	return w, nil
 }
 
 // drawn gives the inputs of every draw of a Latin hypercube.
@@ -92,7 +98,7 @@ func (w *world) mapper(x []float64, year [12]weather.MonthAnomaly) *scenarios.Ma
 		year[m].Radiation *= c.radiation
 		year[m].Temperature += c.warmth
 	}
-	return w.sky.Changed(year).Mapper(c.of(w.p))
+	return w.sky.Changed(year).Mapper(c.aged(c.of(w.p), w.after))
 }
 
 // sample holds what every draw gave.
@@ -149,11 +155,7 @@ func FindSpreads(ctx context.Context, p *scenarios.Plan, q SpreadQuery) (*Spread
 const leastDraws = 40
 
 func newSample(p *scenarios.Plan, q SpreadQuery) (*sample, error) {
-	full, err := scenarios.Run(p, scenarios.Options{Workers: q.Workers, Depth: scenarios.BreakEvens, By: scenarios.ByYear})
-	if err != nil {
-		return nil, err
-	}
-	w, err := newWorld(p, q.Seed)
+	w, err := newWorld(p, q.Seed, q.After)
 	if err != nil {
 		return nil, err
 	}
@@ -168,7 +170,9 @@ func newSample(p *scenarios.Plan, q SpreadQuery) (*sample, error) {
 	if err := s.bestSpots(); err != nil {
 		return nil, err
 	}
-	s.align(full)
+	if err := s.align(p, q); err != nil {
+		return nil, err
+	}
 	s.leads()
 	s.draw, s.finished = make([]drawn, q.Count), make([]bool, q.Count)
 	for i, x := range w.drawn(q.Count) {
@@ -204,13 +208,13 @@ func (s *sample) row(t, seedling, station int) int {
 // bestSpots runs the best values with every break-even.
 func (s *sample) bestSpots() error {
 	s.best = make([]scenarios.Spot, s.rows)
-	m := s.sky.Mapper(s.p)
+	m := s.mapper(s.bestInputs(), meanYear())
 	for t := range s.p.Treatments {
 		spots := make([][2]float64, len(s.at[t]))
 		for k, at := range s.at[t] {
 			spots[k] = [2]float64{at.X, at.Y}
 		}
-		found, err := m.Map(&s.p.Treatments[t], spots, scenarios.BreakEvens)
+		found, err := m.Map(&m.Plan().Treatments[t], spots, scenarios.BreakEvens)
 		if err != nil {
 			return err
 		}
@@ -221,14 +225,26 @@ func (s *sample) bestSpots() error {
 	return nil
 }
 
-// align finds the balance's own row for every row of the draws.
-func (s *sample) align(full *scenarios.Results) {
+// align finds the balance's own row for every row of the draws; of a later year the draws' own best values stand for it.
+func (s *sample) align(p *scenarios.Plan, q SpreadQuery) error {
+	s.full = make([]scenarios.BalanceRow, s.rows)
+	if s.after > 0 {
+		for r := range s.full {
+			x := &s.best[r]
+			s.full[r] = scenarios.BalanceRow{Light: x.Light, LightLeafOn: x.LightLeafOn, BreakEven: x.BreakEven, Class: x.Class}
+			s.full[r].Lines[ledger.Income] = x.Net
+		}
+		return nil
+	}
+	full, err := scenarios.Run(p, scenarios.Options{Workers: q.Workers, Depth: scenarios.BreakEvens, By: scenarios.ByYear})
+	if err != nil {
+		return err
+	}
 	place := map[[3]string]int{}
 	for i := range full.Balance {
 		r := &full.Balance[i]
 		place[[3]string{r.Treatment, r.Station, r.Species}] = i
 	}
-	s.full = make([]scenarios.BalanceRow, s.rows)
 	for t := range s.p.Treatments {
 		for i := range s.p.Seedlings {
 			for k, at := range s.at[t] {
@@ -236,6 +252,7 @@ func (s *sample) align(full *scenarios.Results) {
 			}
 		}
 	}
+	return nil
 }
 
 // leads finds each seedling's best station of each treatment: draws find their break-even there.
@@ -348,50 +365,4 @@ func seasonMean(p *scenarios.Plan, by [12]weather.MonthAnomaly) (out [2]float64)
 		m = (m + 1) % 12
 	}
 	return [2]float64{out[0] / n, out[1] / n}
-}
-
-// summary makes the ranges of every row.
-func (s *sample) summary() []SpreadRow {
-	out := make([]SpreadRow, s.rows)
-	for t := range s.p.Treatments {
-		for i := range s.p.Seedlings {
-			for k, at := range s.at[t] {
-				r := s.row(t, i, k)
-				out[r] = s.rangesOf(r)
-				out[r].Treatment, out[r].Station, out[r].Species = s.p.Treatments[t].Name, at.Name, s.p.Seedlings[i].Name
-				out[r].Class = s.full[r].Class
-			}
-		}
-	}
-	return out
-}
-
-func (s *sample) rangesOf(r int) (out SpreadRow) {
-	get := func(of func(*drawnSpot) float64) Range {
-		var v []float64
-		for i := range s.draw {
-			if s.finished[i] {
-				v = append(v, of(&s.draw[i].spots[r]))
-			}
-		}
-		x := draws.NewSpread(v)
-		return Range{x.Low, x.Median, x.High}
-	}
-	out.Light = get(func(x *drawnSpot) float64 { return x.light })
-	out.LeafOn = get(func(x *drawnSpot) float64 { return x.leafOn })
-	out.Net = get(func(x *drawnSpot) float64 { return x.net })
-	out.Ratio = get(func(x *drawnSpot) float64 { return x.ratio })
-	out.BreakEven = get(func(x *drawnSpot) float64 { return x.breakEven })
-	out.Threshold = get(func(x *drawnSpot) float64 { return x.threshold })
-	n := 0.0
-	for i := range s.draw {
-		if s.finished[i] {
-			out.Chance[s.draw[i].spots[r].class()]++
-			n++
-		}
-	}
-	for c := range out.Chance {
-		out.Chance[c] /= n
-	}
-	return out
 }

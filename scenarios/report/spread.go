@@ -70,6 +70,9 @@ func Spread(o Output, plan *scenarios.Plan, s *decide.Spreads) error {
 // drawsLine says how many draws stand behind the ranges.
 func drawsLine(s *decide.Spreads) string {
 	line := fmt.Sprintf("draws %d of %d, seed %d: %d inputs not known for sure, and a generated year each.", s.Done, s.Query.Count, s.Query.Seed, len(s.Inputs))
+	if s.Query.After > 0 {
+		line = fmt.Sprintf("Year %g after the cut, new stock of the plan's size; ", s.Query.After) + line
+	}
 	if s.Done < s.Query.Count {
 		line = "INTERRUPTED. " + line
 	}
