@@ -245,7 +245,7 @@ func (s *sizer) row(i int, name string, shape Shape, uncut bool) (SizeRow, error
 	row := SizeRow{Species: name, Shape: shape, Bearing: s.q.Bearing, Uncut: uncut, Smaller: nan, Upper: nan, Best: nan, Worst: nan, BestShare: nan, LeastGood: nan, Low: nan, High: nan, Missed: nan}
 	enough := func(k int) (bool, error) {
 		v, err := s.look(shape, k, s.q.Bearing)
-		return err == nil && v[i].share >= s.q.Share, err
+		return err == nil && v[i].share >= s.q.Share-rounding, err
 	}
 	k, err := smallest(s.least, s.most, enough)
 	if err != nil {
@@ -287,6 +287,9 @@ func (s *sizer) row(i int, name string, shape Shape, uncut bool) (SizeRow, error
 	row.Verdict = row.verdict(s.q)
 	return row, nil
 }
+
+// rounding of a share that is summed over spots.
+const rounding = 1e-9
 
 // smallest halves for the least k of low..high that is enough, taking what lies below it as not enough; high+1 where even the largest is not.
 func smallest(low, high int, enough func(int) (bool, error)) (int, error) {

@@ -169,3 +169,17 @@ func TestSizesOfAnyWorkersAndLimits(t *testing.T) {
 		}
 	}
 }
+
+// All of the ground can be asked for: a share that adds up to one but for rounding is one.
+func TestTheWholeOpeningCanBeComfortable(t *testing.T) {
+	p := sized(t)
+	s, err := FindSizes(p, SizeQuery{Share: 1, UpTo: 2 * p.Stand.Height, Shapes: []Shape{Round}, Workers: 2})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, r := range s.Rows {
+		if r.Species == "Maple" && !(r.Found && r.Share > 1-rounding) {
+			t.Errorf("%s: %s, share %g", r.Species, r.Verdict, r.Share)
+		}
+	}
+}

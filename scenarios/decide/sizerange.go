@@ -99,7 +99,7 @@ func (t *Sizes) steps(w *world, x []float64, year [12]weather.MonthAnomaly) ([]i
 		seedling := r / len(t.Query.Shapes)
 		out[r], err = smallestNear(int(math.Round(row.Size/(stepOfHeight*s.height))), s.least, s.most, func(k int) (bool, error) {
 			v, err := s.glance(row.Shape, k, row.Bearing)
-			return err == nil && v[seedling].share >= t.Query.Share, err
+			return err == nil && v[seedling].share >= t.Query.Share-rounding, err
 		})
 		if err != nil {
 			return nil, err

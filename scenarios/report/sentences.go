@@ -22,9 +22,18 @@ func (b *board) sentences(p *printer, u scenarios.Units) {
 			}
 		}
 		if parts != nil {
-			hang(p, "", b.work(t, u)+" "+strings.Join(parts, " "))
+			hang(p, "", b.work(t, u)+" "+strings.Join(parts, " ")+b.against(t))
 		}
 	}
+}
+
+// against names the conflicts of a treatment, limits of the owner and law among them.
+func (b *board) against(t int) string {
+	rules := b.marks.rows[b.results.Plan.Treatments[t].Name]
+	if rules == nil {
+		return ""
+	}
+	return " Speaks against it: " + strings.Join(rules, ", ") + " (shadeledger cautions)."
 }
 
 // work is what to cut.
@@ -91,7 +100,8 @@ func axis(φ float64) string {
 // expectation is where one seedling is to come up and for how long.
 func (b *board) expectation(t, seedling int) string {
 	name := b.results.Plan.Seedlings[seedling].Name
-	s := "Bring up " + name + " " + parts(b.cells[t][seedling]) + ": comfortable in " + percent(b.doubts.option(t, seedling).Chance) + " of the draws, for " + b.doubts.lasting(t, seedling)
+	s := "Bring up " + name + " " + parts(b.cells[t][seedling]) + ": in " + percent(b.doubts.option(t, seedling).Chance) +
+		" of the draws some spot inside is comfortable, the best one for " + b.doubts.lasting(t, seedling)
 	return s + "."
 }
 
